@@ -1,0 +1,99 @@
+"""Questions asked of the cells themselves: simple effects inside slices and differences of differences."""
+
+import numpy as np
+import pandas as pd
+from scipy import stats
+
+from analysis.adjustments import ADJUSTMENTS, Family
+from analysis.cells import Matrix, Vector
+from analysis.estimates import FREE_TOLERANCE, Estimates
+from analysis.families import Choices, Slice
+from analysis.model import Model
+
+SIMPLE_COLUMNS = ("factor", "within", "df", "residual_df", "ss", "f", "p", "p_adjusted")
+HOLM_INSTEAD = ("tukey", "dunnett")  # these two are made for other families than differences of differences
+
+
+def simple_effects(factor: str, slices: tuple[Slice, ...], model: Model) -> pd.DataFrame:
+    """Return the F test of one factor inside each level of the other, with the pooled error and Holm across the slices.
+
+    Source: Winer (1971), Statistical Principles in Experimental Design, section 5.2; Holm (1979), Scand. J. Statist. 6, 65-70.
+    """
+    rows = []
+    for part in slices:
+        ss, df = part.estimates.equality()
+        rows.append((factor, part.within, df, model.residual_df, model.strata.without_rounding(ss) if df else np.nan))
+    frame = pd.DataFrame(rows, columns=list(SIMPLE_COLUMNS[:5]))
+    ms = model.residual_ms if model.residual_ms > 0 else np.nan
+    df = frame["df"].to_numpy(float)
+    with np.errstate(divide="ignore", invalid="ignore"):
+        f = np.where(df > 0, frame["ss"].to_numpy(float) / df / ms, np.nan)
+    p = stats.f.sf(f, df, model.residual_df)
+    return frame.assign(f=f, p=p, p_adjusted=_holm(p))
+
+
+def _holm(p: Vector) -> Vector:
+    """Return Holm's step-down p-values of those that are defined."""
+    adjusted = np.full(p.size, np.nan)
+    known = np.flatnonzero(np.isfinite(p))
+    order = known[np.argsort(p[known], kind="stable")]
+    steps = p[order] * np.arange(order.size, 0, -1)
+    adjusted[order] = np.minimum(np.maximum.accumulate(steps), 1.0) if order.size else steps
+    return adjusted
+
+
+def interaction_contrasts(
+    cells: Estimates, rows: tuple[str, ...], columns: tuple[str, ...], model: Model, choices: Choices, dimension: int
+) -> pd.DataFrame:
+    """Return every difference of differences (r2c2 − r2c1) − (r1c2 − r1c1), with test and interval.
+
+    dimension is the number of degrees of freedom of the interaction, for Scheffé's method.
+    """
+    a, b = len(rows), len(columns)
+    (r1, r2), (c1, c2) = np.triu_indices(a, 1), np.triu_indices(b, 1)
+    row_pair, column_pair = (pick.ravel() for pick in np.meshgrid(np.arange(r1.size), np.arange(c1.size), indexing="ij"))
+    corners = [r[row_pair] * b + c[column_pair] for r, c in ((r2, c2), (r2, c1), (r1, c2), (r1, c1))]
+    difference, variance = _four_corners(cells, corners)
+    se = np.sqrt(variance * model.residual_ms)
+    with np.errstate(divide="ignore", invalid="ignore"):
+        t = np.where(se > 0, difference / se, np.nan)
+    reach = model.quantile(choices.confidence) * se
+    return pd.DataFrame(
+        {
+            "rows": [[rows[r1[i]], rows[r2[i]]] for i in row_pair],
+            "columns": [[columns[c1[j]], columns[c2[j]]] for j in column_pair],
+            "difference": difference,
+            "se": se,
+            "t": t,
+            "df": model.residual_df,
+            "p": 2 * stats.t.sf(np.abs(t), model.residual_df),
+            "p_adjusted": _adjusted_contrasts(t, dimension, model, choices),
+            "lower": difference - reach,
+            "upper": difference + reach,
+        }
+    )
+
+
+def _four_corners(cells: Estimates, corners: list[np.ndarray]) -> tuple[Vector, Vector]:
+    """Return (first − second) − (third − fourth) and its unit variance, NaN where it is not estimable."""
+    signs = (1.0, -1.0, -1.0, 1.0)
+    value = sum(sign * cells.value[at] for sign, at in zip(signs, corners, strict=True))
+    free = sum((sign * cells.free[at] for sign, at in zip(signs, corners, strict=True)), start=np.zeros((corners[0].size, cells.free.shape[1])))
+    variance: Matrix = np.zeros(corners[0].size)
+    for i, sign in enumerate(signs):
+        variance = variance + cells.unit_variance[corners[i]]
+        if cells.covariance.ndim == 2:
+            for j in range(i):
+                variance = variance + 2 * sign * signs[j] * cells.covariance[corners[i], corners[j]]
+    open_ = np.abs(free).max(axis=1, initial=0.0) >= FREE_TOLERANCE
+    return np.where(open_, np.nan, value), np.where(open_, np.nan, variance)
+
+
+def _adjusted_contrasts(t: Vector, dimension: int, model: Model, choices: Choices) -> Vector:
+    adjusted = np.full(t.size, np.nan)
+    known = np.flatnonzero(np.isfinite(t))
+    if known.size:
+        name = "holm" if choices.adjust in HOLM_INSTEAD else choices.adjust
+        family = Family(t[known], float(model.residual_df), known.size + 1, dimension, None, choices.confidence)
+        adjusted[known] = ADJUSTMENTS[name].adjust(family).p
+    return adjusted

@@ -1,0 +1,153 @@
+"""Families of comparisons from the fitted model: which means are compared, adjusted together, and what each comparison says."""
+
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass
+
+import numpy as np
+import pandas as pd
+from numpy.typing import NDArray
+from scipy import stats
+
+from analysis.adjustments import ADJUSTMENTS, Adjusted, Family
+from analysis.cells import Vector
+from analysis.estimates import Estimates
+from analysis.model import Model
+from analysis.verdicts import verdicts
+
+Indices = NDArray[np.intp]
+CELLS = "cells"
+MOST_COMPARISONS = 250_000  # a family larger than this is not written out
+COLUMNS = (
+    "left", "right", "within", "difference", "se", "df", "t", "p", "p_adjusted",
+    "lower", "upper", "lower_adjusted", "upper_adjusted", "verdict", "family_size",
+)  # fmt: skip
+
+
+@dataclass(frozen=True)
+class Choices:
+    """What a study decides about comparisons."""
+
+    adjust: str
+    confidence: float
+    matters: float | None  # on the analysed scale; None where none was given or the scale has no such difference
+
+
+@dataclass(frozen=True, eq=False)
+class Slice:
+    """Means that are compared with each other and adjusted together."""
+
+    labels: Sequence[object]  # a level, or [row, column] for cells
+    estimates: Estimates
+    control: int | None  # index of the level that the others are compared with, None for all pairs
+    within: str | None = None  # the level of the other factor, in a family of slices
+
+    def pairs(self) -> tuple[Indices, Indices]:
+        """Return the indices compared, left being the later level, or every other level against the control."""
+        k = len(self.labels)
+        if self.control is not None:
+            left = np.array([i for i in range(k) if i != self.control], dtype=np.intp)
+            return left, np.full(left.size, self.control, dtype=np.intp)
+        right, left = np.triu_indices(k, 1)
+        return left, right
+
+
+def within_name(factor: str, other: str) -> str:
+    """Return how the family of one factor's comparisons inside the levels of the other is called."""
+    return f"{factor} within {other}"
+
+
+def size_of(slices: Sequence[Slice]) -> int:
+    """Return how many comparisons a family writes out."""
+    return sum(len(s.labels) - 1 if s.control is not None else len(s.labels) * (len(s.labels) - 1) // 2 for s in slices)
+
+
+def family_frame(slices: Sequence[Slice], model: Model, choices: Choices) -> pd.DataFrame:
+    """Return the comparisons of a family, each slice adjusted on its own."""
+    frames = [_slice_frame(part, model, choices) for part in slices]
+    frames = [frame for frame in frames if len(frame)]
+    return pd.concat(frames, ignore_index=True) if frames else pd.DataFrame(columns=list(COLUMNS))
+
+
+def _slice_frame(part: Slice, model: Model, choices: Choices) -> pd.DataFrame:
+    left, right = part.pairs()
+    difference, unit_variance = part.estimates.differences(left, right)
+    se = np.sqrt(unit_variance * model.residual_ms)
+    with np.errstate(divide="ignore", invalid="ignore"):
+        t = np.where(se > 0, difference / se, np.nan)
+    p = 2 * stats.t.sf(np.abs(t), model.residual_df)
+    known = np.flatnonzero(np.isfinite(t))
+    adjusted = _adjusted(part, t[known], left[known], right[known], model, choices)
+    p_adjusted = np.full(t.size, np.nan)
+    p_adjusted[known] = adjusted.p
+    reach, wide = model.quantile(choices.confidence) * se, adjusted.critical * se
+    labels = np.empty(len(part.labels), dtype=object)
+    labels[:] = part.labels
+    return pd.DataFrame(
+        {
+            "left": labels[left],
+            "right": labels[right],
+            "within": part.within,
+            "difference": difference,
+            "se": se,
+            "df": model.residual_df,
+            "t": t,
+            "p": p,
+            "p_adjusted": p_adjusted,
+            "lower": difference - reach,
+            "upper": difference + reach,
+            "lower_adjusted": difference - wide,
+            "upper_adjusted": difference + wide,
+            "verdict": verdicts(difference - wide, difference + wide, choices.matters),
+            "family_size": known.size,
+        }
+    )
+
+
+def _adjusted(part: Slice, t: Vector, left: Indices, right: Indices, model: Model, choices: Choices) -> Adjusted:
+    """Return the adjusted p-values and the critical value of the comparisons that can be estimated."""
+    if t.size == 0:
+        return Adjusted(np.zeros(0), float("nan"))
+    groups = [g for g in part.estimates.comparable_groups() if g.size > 1]
+    correlation = None
+    if part.control is not None:
+        covariance = part.estimates.difference_covariance(left, right)
+        size = np.sqrt(np.diag(covariance))
+        correlation = covariance / np.outer(size, size)
+    family = Family(
+        t=t,
+        df=float(model.residual_df),
+        means=sum(g.size for g in groups),
+        dimension=sum(g.size - 1 for g in groups),
+        correlation=correlation,
+        confidence=choices.confidence,
+    )
+    return ADJUSTMENTS[choices.adjust].adjust(family)
+
+
+def slices_within(
+    estimates: Estimates, shape: tuple[int, int], axis: int, names: tuple[Sequence[str], Sequence[str]], control: int | None
+) -> tuple[Slice, ...]:
+    """Return the slices of one factor inside each level of the other; axis 0 compares rows inside columns, 1 columns inside rows."""
+    a, b = shape
+    index = np.arange(a * b).reshape(a, b)
+    lines = index.T if axis == 0 else index
+    compared, outer = names[axis], names[1 - axis]
+    return tuple(Slice(compared, estimates.at(line), control, level) for line, level in zip(lines, outer, strict=True))
+
+
+def families(
+    model: Model, full: Model, factors: tuple[str, str], levels: tuple[Sequence[str], Sequence[str]], control: Mapping[str, int] | None
+) -> dict[str, tuple[Slice, ...]]:
+    """Return the slices of every family by name; with a control, each other level against it and no family of cells."""
+    (row, column), (rows, columns) = factors, levels
+    pick = (lambda name: None) if control is None else control.__getitem__
+    shape = (len(rows), len(columns))
+    found: dict[str, tuple[Slice, ...]] = {
+        row: (Slice(rows, model.row_means, pick(row)),),
+        column: (Slice(columns, model.column_means, pick(column)),),
+    }
+    if control is None:
+        found[CELLS] = (Slice([[r, c] for r in rows for c in columns], full.cells, None),)
+    found[within_name(row, column)] = slices_within(full.cells, shape, 0, levels, pick(row))
+    found[within_name(column, row)] = slices_within(full.cells, shape, 1, levels, pick(column))
+    return found
