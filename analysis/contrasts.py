@@ -42,6 +42,12 @@ def _holm(p: Vector) -> Vector:
     return adjusted
 
 
+def count(shape: tuple[int, int]) -> int:
+    """Return how many differences of differences a layout of this shape has."""
+    a, b = shape
+    return a * (a - 1) * b * (b - 1) // 4
+
+
 def interaction_contrasts(
     cells: Estimates, rows: tuple[str, ...], columns: tuple[str, ...], model: Model, choices: Choices, dimension: int
 ) -> pd.DataFrame:

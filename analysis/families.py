@@ -12,6 +12,7 @@ from analysis.adjustments import ADJUSTMENTS, Adjusted, Family
 from analysis.cells import Vector
 from analysis.estimates import Estimates
 from analysis.model import Model
+from analysis.scales import Scale
 from analysis.verdicts import verdicts
 
 Indices = NDArray[np.intp]
@@ -122,6 +123,15 @@ def _adjusted(part: Slice, t: Vector, left: Indices, right: Indices, model: Mode
         confidence=choices.confidence,
     )
     return ADJUSTMENTS[choices.adjust].adjust(family)
+
+
+def told(scale: Scale, frame: pd.DataFrame) -> pd.DataFrame:
+    """Add a column `told` in original units: ratios with both intervals where differences are ratios, nothing where they are neither."""
+    if not scale.tells_ratios:
+        return frame
+    names = {"estimate": "difference", **{end: end for end in ("lower", "upper", "lower_adjusted", "upper_adjusted")}}
+    ratios = {name: scale.back(frame[column].to_numpy(float)) for name, column in names.items()}
+    return frame.assign(told=[dict(zip(ratios, row, strict=True)) for row in zip(*ratios.values(), strict=True)])
 
 
 def slices_within(

@@ -175,3 +175,10 @@ class FactorsGoTogether(Refusal):
             f"Columns “{row}” and “{column}” go together level by level, so their effects cannot be told apart: choose another "
             f"column as one of the factors."
         )
+
+
+class UnreadableChoice(Refusal):
+    """A choice in the shell that cannot be read."""
+
+    def __init__(self, what: str) -> None:
+        super().__init__(f"The choices cannot be read: {what}; `python -m analysis --help` lists them.")

@@ -1,0 +1,301 @@
+"""Everything computed from one study, each part when it is first asked for."""
+
+import importlib.metadata
+import platform
+from collections.abc import Mapping
+from dataclasses import dataclass
+from functools import cached_property
+from typing import Any
+
+import numpy as np
+import pandas as pd
+
+from analysis import anova, answers, checking, contrasts, design, families, lettering, means, plain
+from analysis.answers import Answer
+from analysis.cells import Strata, cells_of, strata_of
+from analysis.design import Design
+from analysis.families import Choices, Slice
+from analysis.layout import lay_out
+from analysis.model import Model, Surfaces
+from analysis.observations import Observations
+from analysis.refusals import UnknownLevel
+from analysis.study import Study
+
+VERSION = "0.1.0"
+LIBRARIES = ("numpy", "pandas", "scipy", "statsmodels")
+PARTS = (
+    "design", "cells", "tables", "tables_additive", "used", "fit", "effects", "marginal_means", "additive_means", "comparisons",
+    "simple_effects", "interaction_contrasts", "letters", "checks", "doubts", "holds", "answers", "versions",
+)  # fmt: skip
+
+
+@dataclass(frozen=True, eq=False)
+class Findings:
+    """The answers to a study: every attribute named in PARTS, lists of rows as pandas frames."""
+
+    study: Study
+    layout: Design
+
+    def __repr__(self) -> str:
+        return f"Findings({self.study!r})"
+
+    @property
+    def observed(self) -> Observations:
+        """The analysed observations."""
+        return self.layout.observed
+
+    @property
+    def model(self) -> Model:
+        """The model analysed."""
+        return self.layout.analysed
+
+    @property
+    def names(self) -> anova.Names:
+        """What the terms are called."""
+        return anova.Names(*self.study.factors, self.study.block)
+
+    @cached_property
+    def tables(self) -> Mapping[str, pd.DataFrame]:
+        """The tables of the model analysed."""
+        return anova.tables(self.model, self.names, self.study.confidence)
+
+    @cached_property
+    def tables_additive(self) -> Mapping[str, pd.DataFrame] | None:
+        """The tables of the model without interaction; None where it leaves no residual."""
+        if self.layout.additive.residual_df < 1:
+            return None
+        return anova.tables(self.layout.additive, self.names, self.study.confidence)
+
+    @cached_property
+    def used(self) -> Mapping[str, str]:
+        """Which table the answers read, and why."""
+        return answers.table_used(self.layout, self.tables)
+
+    @cached_property
+    def used_table(self) -> pd.DataFrame:
+        """The table that the answers read."""
+        return self.tables[self.used["table"]]
+
+    @cached_property
+    def fit(self) -> Mapping[str, Any]:
+        """How well the model analysed fits."""
+        r2, adjusted = anova.r_squared(self.model)
+        ms = self.model.residual_ms
+        return {
+            "r2": r2,
+            "adjusted_r2": adjusted,
+            "residual_df": self.model.residual_df,
+            "residual_ms": ms,
+            "sigma": float(np.sqrt(ms)),
+            "scale": self.study.scale,
+        }
+
+    @cached_property
+    def cells(self) -> pd.DataFrame:
+        """One row a cell, empty ones included."""
+        return means.cell_frame(self.observed, self.layout.cells, self.layout.full, self.model, self.study.confidence)
+
+    @cached_property
+    def marginal_means(self) -> Mapping[str, pd.DataFrame]:
+        """Equal-weight means of each factor."""
+        return {
+            factor.name: means.margin_frame(factor, axis, self.observed, self.layout.cells, self.model, self.study.confidence)
+            for factor, axis in ((self.observed.row, 1), (self.observed.column, 0))
+        }
+
+    @cached_property
+    def effects(self) -> Mapping[str, Any]:
+        """Effects that sum to zero."""
+        return means.effects(self.observed, self.model)
+
+    @cached_property
+    def additive_means(self) -> pd.DataFrame | None:
+        """Cell means fitted without interaction; None where that model leaves no residual."""
+        if self.layout.additive.residual_df < 1:
+            return None
+        return means.additive_frame(self.observed, self.layout.additive, self.study.confidence)
+
+    @cached_property
+    def choices(self) -> Choices:
+        """What the study decides about comparisons."""
+        matters = self.study.matters if self.observed.scale.is_identity else None
+        return Choices(self.study.adjust, self.study.confidence, matters)
+
+    @cached_property
+    def control(self) -> Mapping[str, int] | None:
+        """Index of the control level of each factor where comparisons are made with a control, else None."""
+        if self.study.adjust != "dunnett":
+            return None
+        return {factor.name: _control_index(self.study, factor.name, factor.levels) for factor in (self.observed.row, self.observed.column)}
+
+    @cached_property
+    def families(self) -> Mapping[str, tuple[Slice, ...]]:
+        """The means that each family compares."""
+        levels = (self.observed.row.levels, self.observed.column.levels)
+        return families.families(self.model, self.layout.full, self.study.factors, levels, self.control)
+
+    @cached_property
+    def comparisons(self) -> Mapping[str, pd.DataFrame | None]:
+        """The comparisons of each family; None for a family too large to write out."""
+        return {name: self._family(slices) for name, slices in self.families.items()}
+
+    def _too_large(self) -> list[str]:
+        """Return what holds too many comparisons to be written out."""
+        large = [name for name, slices in self.families.items() if families.size_of(slices) > families.MOST_COMPARISONS]
+        return large if contrasts.count(self.observed.shape) <= families.MOST_COMPARISONS else [*large, "differences of differences"]
+
+    def _family(self, slices: tuple[Slice, ...]) -> pd.DataFrame | None:
+        if families.size_of(slices) > families.MOST_COMPARISONS:
+            return None
+        return families.told(self.observed.scale, families.family_frame(slices, self.model, self.choices))
+
+    @cached_property
+    def simple_effects(self) -> pd.DataFrame:
+        """F tests of each factor inside each level of the other."""
+        row, column = self.study.factors
+        both = ((row, families.within_name(row, column)), (column, families.within_name(column, row)))
+        return pd.concat([contrasts.simple_effects(name, self.families[family], self.model) for name, family in both], ignore_index=True)
+
+    @cached_property
+    def interaction_contrasts(self) -> pd.DataFrame | None:
+        """All differences of differences; None where there are too many to write out."""
+        if contrasts.count(self.observed.shape) > families.MOST_COMPARISONS:
+            return None
+        dimension = self.layout.full.parameters - self.layout.additive.parameters
+        levels = (self.observed.row.levels, self.observed.column.levels)
+        return contrasts.interaction_contrasts(self.layout.full.cells, *levels, self.model, self.choices, dimension)
+
+    @cached_property
+    def letters(self) -> Mapping[str, Mapping[str, str]] | None:
+        """Compact letter display of each family at the adjusted level; None against a control."""
+        if self.control is not None:
+            return None
+        return lettering.letters_of(self.families, self.comparisons, 1 - self.study.confidence)
+
+    @cached_property
+    def checks(self) -> Mapping[str, Any]:
+        """Checks of the model on its residuals."""
+        return checking.checks(self.layout, self.study.confidence)
+
+    @property
+    def doubts(self) -> None:
+        """Not computed yet."""
+        return None
+
+    @property
+    def holds(self) -> None:
+        """Not computed yet."""
+        return None
+
+    @cached_property
+    def answers(self) -> tuple[Answer, ...]:
+        """The three questions in words."""
+        return answers.three_answers(
+            answers.Evidence(
+                layout=self.layout,
+                study=self.study,
+                table=self.used_table,
+                comparisons=self.comparisons,
+                simple_effects=self.simple_effects,
+                interaction_contrasts=self.interaction_contrasts,
+                marginal_means=self.marginal_means,
+            )
+        )
+
+    @cached_property
+    def observations(self) -> pd.DataFrame:
+        """One row an analysed observation: its cell, value, fitted value and residual on the analysed scale, and its file row."""
+        observed, strata = self.observed, self.layout.strata
+        fitted = means.fitted_values(observed, strata, self.model)
+        block = None if observed.block is None else np.array(observed.block.levels, dtype=object)[observed.block.codes]
+        return pd.DataFrame(
+            {
+                "row": np.array(observed.row.levels, dtype=object)[observed.row.codes],
+                "column": np.array(observed.column.levels, dtype=object)[observed.column.codes],
+                "block": block,
+                "value": observed.values,
+                "fitted": fitted + observed.pivot,
+                "residual": observed.offsets - fitted,
+                "file_row": observed.file_rows,
+            }
+        )
+
+    @cached_property
+    def design(self) -> Mapping[str, Any]:
+        """The layout as the object tells it."""
+        observed, layout = self.observed, self.layout
+        return {
+            "response": observed.response,
+            "row_factor": observed.row.name,
+            "column_factor": observed.column.name,
+            "block": None if observed.block is None else observed.block.name,
+            "row_levels": list(observed.row.levels),
+            "column_levels": list(observed.column.levels),
+            "counts": layout.cells.n.tolist(),
+            "balanced": layout.balanced,
+            "empty_cells": [list(cell) for cell in layout.empty_cells],
+            "connected": layout.connected,
+            "observations": observed.readings,
+            "left_out": [{"row": entry.row, "why": entry.why} for entry in observed.left_out],
+            "notes": [*observed.notes, *design.notes(layout), *self._undefined()],
+        }
+
+    def _undefined(self) -> list[str]:
+        """Return the reason for every part of the object that is not defined for this study."""
+        reasons = {
+            "The model without interaction leaves no residual here, so its tables and means are not given.": self.tables_additive is None,
+            "The model analysed has no interaction, so there are no interaction effects to list.": not self.model.interaction,
+            "The model fits every observation exactly, so there is no chance variation to test against: no F, t or p is given.": (
+                self.model.residual_ms == 0
+            ),
+            "Comparisons are made with a control, so there is no family of all cells and there are no letters.": self.control is not None,
+            "The smallest difference that matters is in units of the response and is not applied on another scale.": (
+                self.study.matters is not None and self.choices.matters is None
+            ),
+            "Doubts and the table of other defensible analyses are not computed yet, so doubts and holds are empty.": True,
+        }
+        large = [f"The family “{name}” holds too many comparisons to be written out one by one." for name in self._too_large()]
+        return [*(sentence for sentence, applies in reasons.items() if applies), *large]
+
+    @property
+    def versions(self) -> Mapping[str, str]:
+        """Versions of what computed this."""
+        libraries = {name: importlib.metadata.version(name) for name in LIBRARIES}
+        return {"crossgrain": VERSION, "python": platform.python_version(), **libraries}
+
+    def to_dict(self) -> dict[str, Any]:
+        """Return the whole object in plain values: no NaN, None where something is undefined."""
+        return {name: plain.plain(getattr(self, name)) for name in PARTS}
+
+
+def analyse(study: Study) -> Findings:
+    """Return the findings of a study; cheap, since each part is computed when it is first asked for.
+
+    Raises a Refusal where the table or the choices cannot be analysed. A factor with one level is analysed as it is: the
+    one-way case.
+    """
+    observed = lay_out(study)
+    strata = strata_of(observed)
+    found = Findings(study, _design(study, observed, strata))
+    design.refuse_unusable(found.layout)
+    return found
+
+
+def _design(study: Study, observed: Observations, strata: Strata) -> Design:
+    surfaces = Surfaces(strata)
+    return Design(
+        observed=observed,
+        strata=strata,
+        cells=cells_of(strata),
+        full=Model(surfaces, interaction=True),
+        additive=Model(surfaces, interaction=False),
+        wants_interaction=study.model == "full",
+    )
+
+
+def _control_index(study: Study, factor: str, levels: tuple[str, ...]) -> int:
+    """Return the index of a factor's control level, the first one where none was chosen."""
+    chosen = study.control.get(factor, levels[0])
+    if chosen not in levels:
+        raise UnknownLevel(factor, chosen, levels)
+    return levels.index(chosen)

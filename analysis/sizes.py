@@ -1,0 +1,56 @@
+"""How large the largest difference in a family is, and what the family as a whole says of sizes that matter."""
+
+from dataclasses import dataclass
+
+import numpy as np
+import pandas as pd
+
+from analysis import verdicts
+from analysis.scales import Scale
+
+SMALL_ENOUGH = (verdicts.SMALL, verdicts.NONE_THAT_MATTERS)
+
+
+@dataclass(frozen=True)
+class Size:
+    """The largest difference of a family, told in original units (a ratio where the scale tells ratios)."""
+
+    effect: float
+    se: float  # on the analysed scale
+    df: float
+    lower: float
+    upper: float
+    verdict: str  # the most decided verdict in the family
+    all_small: bool  # every comparison lies inside ±the smallest difference that matters
+
+
+def largest(frame: pd.DataFrame | None, scale: Scale) -> Size | None:
+    """Return the size of the largest difference of a family with its adjusted interval, or None where nothing is estimable."""
+    if frame is None or frame["difference"].dropna().empty:
+        return None
+    known = frame.dropna(subset=["difference"])
+    at = known.loc[known["difference"].abs().idxmax()]
+    return _size(at, "lower_adjusted", "upper_adjusted", known["verdict"].tolist(), scale)
+
+
+def largest_contrast(frame: pd.DataFrame | None, matters: float | None, scale: Scale) -> Size | None:
+    """Return the size of the largest difference of differences with its own (unadjusted) interval."""
+    if frame is None or frame["difference"].dropna().empty:
+        return None
+    known = frame.dropna(subset=["difference"])
+    limit = matters if scale.is_identity else None
+    found = verdicts.verdicts(known["lower"].to_numpy(float), known["upper"].to_numpy(float), limit)
+    at = known.loc[known["difference"].abs().idxmax()]
+    return _size(at, "lower", "upper", found.tolist(), scale)
+
+
+def _size(at: pd.Series, lower: str, upper: str, found: list[str], scale: Scale) -> Size:
+    """Return a size with a positive effect, the ends of its interval turned with it, in original units for ratios."""
+    ends = np.array([at["difference"], at[lower], at[upper]], dtype=float)
+    if ends[0] < 0:
+        ends = -ends[[0, 2, 1]]
+    if scale.tells_ratios:
+        ends = scale.back(ends)
+    strongest = next((v for v in (verdicts.LARGER, verdicts.DIFFERS, verdicts.SMALL) if v in found), found[0])
+    small = all(v in SMALL_ENOUGH for v in found)
+    return Size(float(ends[0]), float(at["se"]), float(at["df"]), float(ends[1]), float(ends[2]), strongest, small)
