@@ -68,10 +68,16 @@ class Answer:
 def table_used(layout: Design, tables: Mapping[str, pd.DataFrame]) -> dict[str, str]:
     """Return which table the answers read, and why in one sentence."""
     if not layout.analysed.interaction:
-        return {"table": "type_2", "why": "Without the interaction Type II and Type III ask the same question: each factor after the other."}
+        return {
+            "table": "type_2",
+            "why": "Without the interaction Type II and Type III ask the same question: each factor after the other.",
+        }
     row, column = layout.observed.row.name, layout.observed.column.name
     if not all(anova.is_defined(tables["type_3"], term) for term in (row, column)):
-        return {"table": "type_2", "why": "Some combinations hold no observation, so Type III is not defined for the factors: each is judged after the other."}
+        return {
+            "table": "type_2",
+            "why": "Some combinations hold no observation, so Type III is not defined for the factors: each is judged after the other.",
+        }
     if layout.balanced:
         return {"table": "type_3", "why": "The design is balanced, so all types give the same table."}
     return {"table": "type_3", "why": "Cells are unequal: Type III compares equal-weight means, as if every combination counted the same."}
@@ -130,7 +136,13 @@ def factor_answer(evidence: Evidence, factor: str, other: str, depends: bool) ->
     question = f"Does {factor} matter?"
     tested = evidence.tested(factor)
     if tested is None:
-        return Answer(question, NOT_TESTED, f"Cannot be told: {factor} cannot be tested in this layout.", "No test: see the notes on the design.", factor)
+        return Answer(
+            question,
+            NOT_TESTED,
+            f"Cannot be told: {factor} cannot be tested in this layout.",
+            "No test: see the notes on the design.",
+            factor,
+        )
     size = largest(evidence.comparisons[factor], evidence.layout.observed.scale)
     if depends:
         verdict, sentence = _inside(evidence, factor, other)
@@ -173,8 +185,8 @@ def _matters(evidence: Evidence, factor: str, size: Size | None) -> tuple[str, s
     means = evidence.marginal_means[factor].dropna(subset=["mean"])
     if size is None or size.verdict == verdicts.UNDECIDED or means.empty:
         return verdict, f"{_capital(factor)} makes a difference overall, though no two of its levels can be told apart one by one."
-    high = means.loc[means["mean"].idxmax(), "level"]
-    low = means.loc[means["mean"].idxmin(), "level"]
+    levels, values = means["level"].tolist(), means["mean"].to_numpy(float)
+    high, low = levels[int(values.argmax())], levels[int(values.argmin())]
     return verdict, (
         f"{_capital(factor)} matters: {evidence.layout.observed.response} is highest with {_levels(factor, [high])} "
         f"and lowest with {_levels(factor, [low])}."

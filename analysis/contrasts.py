@@ -25,10 +25,10 @@ def simple_effects(factor: str, slices: tuple[Slice, ...], model: Model) -> pd.D
         rows.append((factor, part.within, df, model.residual_df, model.strata.without_rounding(ss) if df else np.nan))
     frame = pd.DataFrame(rows, columns=list(SIMPLE_COLUMNS[:5]))
     ms = model.residual_ms if model.residual_ms > 0 else np.nan
-    df = frame["df"].to_numpy(float)
+    dfs = frame["df"].to_numpy(float)
     with np.errstate(divide="ignore", invalid="ignore"):
-        f = np.where(df > 0, frame["ss"].to_numpy(float) / df / ms, np.nan)
-    p = stats.f.sf(f, df, model.residual_df)
+        f = np.where(dfs > 0, frame["ss"].to_numpy(float) / dfs / ms, np.nan)
+    p = stats.f.sf(f, dfs, model.residual_df)
     return frame.assign(f=f, p=p, p_adjusted=_holm(p))
 
 
@@ -84,7 +84,9 @@ def _four_corners(cells: Estimates, corners: list[np.ndarray]) -> tuple[Vector, 
     """Return (first − second) − (third − fourth) and its unit variance, NaN where it is not estimable."""
     signs = (1.0, -1.0, -1.0, 1.0)
     value = sum(sign * cells.value[at] for sign, at in zip(signs, corners, strict=True))
-    free = sum((sign * cells.free[at] for sign, at in zip(signs, corners, strict=True)), start=np.zeros((corners[0].size, cells.free.shape[1])))
+    free = sum(
+        (sign * cells.free[at] for sign, at in zip(signs, corners, strict=True)), start=np.zeros((corners[0].size, cells.free.shape[1]))
+    )
     variance: Matrix = np.zeros(corners[0].size)
     for i, sign in enumerate(signs):
         variance = variance + cells.unit_variance[corners[i]]

@@ -78,7 +78,9 @@ def refuse_unusable(design: Design) -> None:
     _refuse_aliases(design)
     model = design.analysed
     if model.residual_df < 2:
-        raise TooFewObservations(observed.size, model.parameters, "full" if model.interaction else "additive", observed.readings > observed.size)
+        raise TooFewObservations(
+            observed.size, model.parameters, "full" if model.interaction else "additive", observed.readings > observed.size
+        )
 
 
 def refuse_one_level(observed: Observations) -> None:
@@ -167,7 +169,9 @@ def _units(design: Design) -> tuple[str, ...]:
         return ()
     df = design.analysed.residual_df
     before = observed.readings - design.analysed.parameters
-    return (f"Residual degrees of freedom: {df} with the unit as the observation; {before} if every reading had been counted as independent.",)
+    return (
+        f"Residual degrees of freedom: {df} with the unit as the observation; {before} if every reading had been counted as independent.",
+    )
 
 
 def counts_told(design: Design) -> str:

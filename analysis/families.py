@@ -131,7 +131,8 @@ def told(scale: Scale, frame: pd.DataFrame) -> pd.DataFrame:
         return frame
     names = {"estimate": "difference", **{end: end for end in ("lower", "upper", "lower_adjusted", "upper_adjusted")}}
     ratios = {name: scale.back(frame[column].to_numpy(float)) for name, column in names.items()}
-    return frame.assign(told=[dict(zip(ratios, row, strict=True)) for row in zip(*ratios.values(), strict=True)])
+    rows = [dict(zip(ratios, row, strict=True)) for row in zip(*ratios.values(), strict=True)]
+    return frame.assign(told=pd.Series(rows, index=frame.index, dtype=object))
 
 
 def slices_within(

@@ -10,7 +10,7 @@ from typing import Any
 import numpy as np
 import pandas as pd
 
-from analysis import anova, answers, checking, contrasts, design, families, lettering, means, plain
+from analysis import anova, answers, checking, contrasts, design, families, lettering, means, plain, second_route
 from analysis.answers import Answer
 from analysis.cells import Strata, cells_of, strata_of
 from analysis.design import Design
@@ -56,8 +56,10 @@ class Findings:
 
     @cached_property
     def tables(self) -> Mapping[str, pd.DataFrame]:
-        """The tables of the model analysed."""
-        return anova.tables(self.model, self.names, self.study.confidence)
+        """The tables of the model analysed; raises TwoRoutesDisagree where a second computation does not confirm them."""
+        tables = anova.tables(self.model, self.names, self.study.confidence)
+        second_route.confirm(self.observed, self.model.interaction, self.names, tables)
+        return tables
 
     @cached_property
     def tables_additive(self) -> Mapping[str, pd.DataFrame] | None:

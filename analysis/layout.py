@@ -65,9 +65,7 @@ def _kept(name: str, levels: Levels, asked: object) -> tuple[int, ...] | None:
     return tuple(place[level] for level in wanted)
 
 
-def _usable(
-    table: Table, response: Response, parts: Mapping[str, Levels], kept: Kept
-) -> tuple[NDArray[np.bool_], tuple[LeftOut, ...]]:
+def _usable(table: Table, response: Response, parts: Mapping[str, Levels], kept: Kept) -> tuple[NDArray[np.bool_], tuple[LeftOut, ...]]:
     """Return which table rows are analysed, and the first reason that applies to each that is not."""
     usable = np.isfinite(response.values)
     reasons = list(response.missing)
@@ -78,7 +76,7 @@ def _usable(
         codes = kept[name]
         if codes is not None:
             other = usable & ~np.isin(levels.codes, codes)
-            reasons += [LeftOut(int(table.file_rows[i]), _not_kept(name, levels, i)) for i in np.flatnonzero(other)]
+            reasons += [LeftOut(int(table.file_rows[i]), _not_kept(name, levels, int(i))) for i in np.flatnonzero(other)]
             usable &= ~other
     return usable, tuple(reasons)
 

@@ -26,11 +26,13 @@ def told(scale: Scale, frame: pd.DataFrame, centre: str) -> pd.DataFrame:
     """Add a column `told` with the estimate and its interval in original units; a standard error is never back-transformed."""
     if scale.is_identity:
         return frame
-    ends = {name: scale.back(frame[column].to_numpy(float)) for name, column in (("estimate", centre), ("lower", "lower"), ("upper", "upper"))}
+    ends = {
+        name: scale.back(frame[column].to_numpy(float)) for name, column in (("estimate", centre), ("lower", "lower"), ("upper", "upper"))
+    }
     if scale.reverses:
         ends["lower"], ends["upper"] = ends["upper"], ends["lower"]
     rows = [dict(zip(ends, values, strict=True)) for values in zip(*ends.values(), strict=True)]
-    return frame.assign(told=rows)
+    return frame.assign(told=pd.Series(rows, index=frame.index, dtype=object))
 
 
 def cell_frame(observed: Observations, cells: Cells, full: Model, analysed: Model, confidence: float) -> pd.DataFrame:
@@ -128,4 +130,4 @@ def stratum_of(observed: Observations, strata: Strata) -> NDArray[np.intp]:
     place = np.zeros(strata.cells * blocks, dtype=np.intp)
     place[strata.cell * blocks + strata.block] = np.arange(strata.n.size)
     key = observed.row.codes.astype(np.intp) * b + observed.column.codes
-    return place[key if observed.block is None else key * blocks + observed.block.codes]
+    return np.asarray(place[key if observed.block is None else key * blocks + observed.block.codes])

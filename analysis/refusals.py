@@ -131,7 +131,9 @@ class ConstantResponse(Refusal):
     """A response that never varies."""
 
     def __init__(self, response: str, value: str, rows: int) -> None:
-        super().__init__(f"“{response}” is {value} in all {rows} usable rows, so there is no variation to explain: choose another response.")
+        super().__init__(
+            f"“{response}” is {value} in all {rows} usable rows, so there is no variation to explain: choose another response."
+        )
 
 
 class TooFewObservations(Refusal):
@@ -182,3 +184,13 @@ class UnreadableChoice(Refusal):
 
     def __init__(self, what: str) -> None:
         super().__init__(f"The choices cannot be read: {what}; `python -m analysis --help` lists them.")
+
+
+class TwoRoutesDisagree(Refusal):
+    """A table that a second computation does not confirm."""
+
+    def __init__(self, term: str) -> None:
+        super().__init__(
+            f"Two independent computations disagree on “{term}”, so the result is withheld: please report this table, since it "
+            f"shows a fault in the program."
+        )

@@ -52,9 +52,9 @@ def main(arguments: Sequence[str]) -> int:
     try:
         answer = answer_to(parser().parse_args(arguments))
     except Refusal as refusal:
-        print(refusal, file=sys.stderr)
+        sys.stderr.write(f"{refusal}\n")
         return 2
-    print(answer)
+    sys.stdout.write(f"{answer}\n")
     return 0
 
 
@@ -103,7 +103,7 @@ def _assignment(text: str) -> tuple[str, list[str]]:
     A doubled quote inside quotes stands for one quote.
     """
     name, levels, current, quoted, named = "", [""], 0, False, False
-    for i, mark in enumerate(text):
+    for mark in text:
         if mark == '"':
             quoted = not quoted
         elif mark == "=" and not quoted and not named:

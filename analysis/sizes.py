@@ -29,7 +29,7 @@ def largest(frame: pd.DataFrame | None, scale: Scale) -> Size | None:
     if frame is None or frame["difference"].dropna().empty:
         return None
     known = frame.dropna(subset=["difference"])
-    at = known.loc[known["difference"].abs().idxmax()]
+    at = known.iloc[int(known["difference"].abs().to_numpy(float).argmax())]
     return _size(at, "lower_adjusted", "upper_adjusted", known["verdict"].tolist(), scale)
 
 
@@ -40,7 +40,7 @@ def largest_contrast(frame: pd.DataFrame | None, matters: float | None, scale: S
     known = frame.dropna(subset=["difference"])
     limit = matters if scale.is_identity else None
     found = verdicts.verdicts(known["lower"].to_numpy(float), known["upper"].to_numpy(float), limit)
-    at = known.loc[known["difference"].abs().idxmax()]
+    at = known.iloc[int(known["difference"].abs().to_numpy(float).argmax())]
     return _size(at, "lower", "upper", found.tolist(), scale)
 
 

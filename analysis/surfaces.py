@@ -52,7 +52,7 @@ class Surface:
     def swept_n(self) -> Vector:
         """Counts by level of the eliminated factor."""
         codes, size = self._swept_codes
-        return np.bincount(codes, weights=self.strata.n, minlength=size)
+        return np.asarray(np.bincount(codes, weights=self.strata.n, minlength=size), dtype=float)
 
     def _swept_mean(self, values: Matrix) -> Matrix:
         """Return count-weighted means of columns of values by level of the eliminated factor, 0 where it has none."""
@@ -103,7 +103,7 @@ class Surface:
         (left, a), (right, b) = (codes_of(self.strata, name) for name in (str(self.swept), self.others[0]))
         parts = connected_parts(left, right, a, b)
         # A level of the eliminated factor without observations is a part of its own, but not one of these equations.
-        return int(len(set(parts[a:])))
+        return len(set(parts[a:].tolist()))
 
     @cached_property
     def rank(self) -> int:
@@ -111,7 +111,7 @@ class Surface:
         filled = int(np.count_nonzero(self.swept_n))
         if not self.others:
             return filled
-        return filled + self._equations.shape[0] - self._solution[1].shape[1]
+        return filled + int(self._equations.shape[0]) - int(self._solution[1].shape[1])
 
     @cached_property
     def _remaining(self) -> Vector:
@@ -157,7 +157,7 @@ class Surface:
 
     def leverage(self) -> Vector:
         """Return the leverage of one observation in each stratum: the unit variance of its fitted value."""
-        codes, size = self._swept_codes
+        codes, _ = self._swept_codes
         if not self.others:
             return np.asarray(1.0 / self.swept_n[codes])
         inverse, _ = self._solution

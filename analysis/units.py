@@ -21,9 +21,7 @@ def averaged_to_units(observed: Observations, name: str, units: Levels, rows: ND
     cell = observed.row.codes * observed.column.size + observed.column.codes
     reused = _labels_reused(observed, name, units, label, cell)
     stratum = cell if observed.block is None else cell * observed.block.size + observed.block.codes
-    _, first, unit, readings = np.unique(
-        stratum * len(units.labels) + label, return_index=True, return_inverse=True, return_counts=True
-    )
+    _, first, unit, readings = np.unique(stratum * len(units.labels) + label, return_index=True, return_inverse=True, return_counts=True)
     order = np.argsort(first, kind="stable")  # units in the order in which the file first shows them
     means = np.bincount(unit, weights=observed.offsets) / readings
     chosen = first[order]
@@ -57,7 +55,9 @@ def _labels_reused(observed: Observations, name: str, units: Levels, label: NDAr
 def _notes(name: str, readings: NDArray[np.intp], reused: bool) -> list[str]:
     notes = [f"{int(readings.sum())} readings were averaged to {readings.size} units of “{name}” first: the unit is the observation."]
     if readings.min() != readings.max():
-        notes.append(f"The units of “{name}” have between {readings.min()} and {readings.max()} readings; each unit counts once all the same.")
+        notes.append(
+            f"The units of “{name}” have between {readings.min()} and {readings.max()} readings; each unit counts once all the same."
+        )
     if reused:
         notes.append(f"Every cell uses the same labels in “{name}”, so a label counts as another unit in each cell.")
     return notes
