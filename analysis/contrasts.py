@@ -1,5 +1,8 @@
 """Questions asked of the cells themselves: simple effects inside slices and differences of differences."""
 
+from collections.abc import Mapping
+from dataclasses import dataclass
+
 import numpy as np
 import pandas as pd
 from scipy import stats
@@ -9,6 +12,8 @@ from analysis.cells import Matrix, Vector
 from analysis.estimates import FREE_TOLERANCE, Estimates
 from analysis.families import Choices, Slice
 from analysis.model import Model
+from analysis.observations import Observations
+from analysis.refusals import NotEstimable, UnknownLevel
 
 SIMPLE_COLUMNS = ("factor", "within", "df", "residual_df", "ss", "f", "p", "p_adjusted")
 HOLM_INSTEAD = ("tukey", "dunnett")  # these two are made for other families than differences of differences
@@ -30,6 +35,39 @@ def simple_effects(factor: str, slices: tuple[Slice, ...], model: Model) -> pd.D
         f = np.where(dfs > 0, frame["ss"].to_numpy(float) / dfs / ms, np.nan)
     p = stats.f.sf(f, dfs, model.residual_df)
     return frame.assign(f=f, p=p, p_adjusted=_holm(p))
+
+
+@dataclass(frozen=True)
+class Contrast:
+    """A weighted combination of cell means; the estimate is on the analysed scale, from the pivot where weights sum to 0."""
+
+    estimate: float
+    se: float
+    df: int
+    t: float
+    p: float
+    lower: float
+    upper: float
+
+
+def contrast(
+    weights: Mapping[tuple[str, str], float], observed: Observations, cells: Estimates, model: Model, confidence: float
+) -> Contrast:
+    """Return a contrast of cells given by the weight of each (row, column); cells that are not named weigh nothing."""
+    vector = np.zeros(cells.value.size)
+    for (row, column), weight in weights.items():
+        for level, factor in ((row, observed.row), (column, observed.column)):
+            if level not in factor.levels:
+                raise UnknownLevel(factor.name, level, factor.levels)
+        vector[observed.row.levels.index(row) * observed.column.size + observed.column.levels.index(column)] = weight
+    one = cells.combined(vector[None, :])
+    if not one.estimable[0]:
+        raise NotEstimable([f"{row} × {column}" for (row, column), weight in weights.items() if weight])
+    value = float(one.value[0]) + float(vector.sum()) * observed.pivot
+    se = float(np.sqrt(one.unit_variance[0] * model.residual_ms))
+    t = value / se if se > 0 else float("nan")
+    reach = model.quantile(confidence) * se
+    return Contrast(value, se, model.residual_df, t, 2 * float(stats.t.sf(abs(t), model.residual_df)), value - reach, value + reach)
 
 
 def _holm(p: Vector) -> Vector:

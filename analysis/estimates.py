@@ -26,7 +26,7 @@ class Estimates:
     @cached_property
     def estimable(self) -> NDArray[np.bool_]:
         """Which estimates the layout determines."""
-        return np.abs(self.free).max(axis=1, initial=0.0) < FREE_TOLERANCE
+        return np.asarray(np.abs(self.free).max(axis=1, initial=0.0) < FREE_TOLERANCE)
 
     @cached_property
     def unit_variance(self) -> Vector:
@@ -86,6 +86,16 @@ class Estimates:
         first = self.covariance[0]
         among = self.covariance[1:, 1:] - first[1:][None, :] - first[1:][:, None] + first[0]
         return float(contrasts @ np.linalg.solve(among, contrasts))
+
+    def nought(self) -> tuple[float, int]:
+        """Return the sum of squares and degrees of freedom of the hypothesis that all estimates are zero.
+
+        NaN where one is not estimable. Source: general linear hypothesis, Searle (1971), Linear Models, section 3.6.
+        """
+        if not self.estimable.all():
+            return float("nan"), self.value.size
+        covariance = np.diag(self.covariance) if self.covariance.ndim == 1 else self.covariance
+        return float(self.value @ np.linalg.solve(covariance, self.value)), self.value.size
 
     def comparable_groups(self) -> list[NDArray[np.intp]]:
         """Return the estimates grouped by what they leave open: differences inside a group are estimable."""

@@ -2,6 +2,7 @@
 
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
+from functools import cached_property
 
 import numpy as np
 import pandas as pd
@@ -38,9 +39,15 @@ class Slice:
     """Means that are compared with each other and adjusted together."""
 
     labels: Sequence[object]  # a level, or [row, column] for cells
-    estimates: Estimates
+    whole: Estimates  # the fit that the means come from
+    where: Indices  # which of its estimates they are
     control: int | None  # index of the level that the others are compared with, None for all pairs
     within: str | None = None  # the level of the other factor, in a family of slices
+
+    @cached_property
+    def estimates(self) -> Estimates:
+        """The means compared."""
+        return self.whole.at(self.where)
 
     def pairs(self) -> tuple[Indices, Indices]:
         """Return the indices compared, left being the later level, or every other level against the control."""
@@ -143,7 +150,11 @@ def slices_within(
     index = np.arange(a * b).reshape(a, b)
     lines = index.T if axis == 0 else index
     compared, outer = names[axis], names[1 - axis]
-    return tuple(Slice(compared, estimates.at(line), control, level) for line, level in zip(lines, outer, strict=True))
+    return tuple(Slice(compared, estimates, line, control, level) for line, level in zip(lines, outer, strict=True))
+
+
+def _all_of(labels: Sequence[object], estimates: Estimates, control: int | None) -> Slice:
+    return Slice(labels, estimates, np.arange(len(labels)), control)
 
 
 def families(
@@ -154,11 +165,11 @@ def families(
     pick = (lambda name: None) if control is None else control.__getitem__
     shape = (len(rows), len(columns))
     found: dict[str, tuple[Slice, ...]] = {
-        row: (Slice(rows, model.row_means, pick(row)),),
-        column: (Slice(columns, model.column_means, pick(column)),),
+        row: (_all_of(rows, model.row_means, pick(row)),),
+        column: (_all_of(columns, model.column_means, pick(column)),),
     }
     if control is None:
-        found[CELLS] = (Slice([[r, c] for r in rows for c in columns], full.cells, None),)
+        found[CELLS] = (_all_of([[r, c] for r in rows for c in columns], full.cells, None),)
     found[within_name(row, column)] = slices_within(full.cells, shape, 0, levels, pick(row))
     found[within_name(column, row)] = slices_within(full.cells, shape, 1, levels, pick(column))
     return found

@@ -10,7 +10,7 @@ from typing import Any
 import numpy as np
 import pandas as pd
 
-from analysis import anova, answers, checking, contrasts, design, families, lettering, means, plain, second_route
+from analysis import anova, answers, checking, contrasts, design, families, lettering, means, plain, second_route, trends
 from analysis.answers import Answer
 from analysis.cells import Strata, cells_of, strata_of
 from analysis.design import Design
@@ -166,6 +166,24 @@ class Findings:
         dimension = self.layout.full.parameters - self.layout.additive.parameters
         levels = (self.observed.row.levels, self.observed.column.levels)
         return contrasts.interaction_contrasts(self.layout.full.cells, *levels, self.model, self.choices, dimension)
+
+    @cached_property
+    def trends(self) -> pd.DataFrame:
+        """Straight trend, curvature and departure of every factor whose levels are amounts; empty where neither's are."""
+        row, column = self.observed.row, self.observed.column
+        frames = [pd.DataFrame(columns=list(trends.COLUMNS))]
+        for factor, other, overall in ((row, column, self.model.row_means), (column, row, self.model.column_means)):
+            if factor.amounts is not None and factor.size > 1:
+                slices = self.families[families.within_name(factor.name, other.name)]
+                frames.append(trends.trends(factor.name, factor.amounts, overall, slices, self.model, self.study.confidence))
+        return frames[0] if len(frames) == 1 else pd.concat(frames[1:], ignore_index=True)
+
+    def contrast(self, weights: Mapping[tuple[str, str], float]) -> contrasts.Contrast:
+        """Return any weighted combination of cell means, with test and interval; weights are keyed by (row, column) levels.
+
+        Raises UnknownLevel for a cell that is not there and NotEstimable where the layout leaves the combination open.
+        """
+        return contrasts.contrast(weights, self.observed, self.layout.full.cells, self.model, self.study.confidence)
 
     @cached_property
     def letters(self) -> Mapping[str, Mapping[str, str]] | None:

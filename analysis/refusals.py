@@ -194,3 +194,13 @@ class TwoRoutesDisagree(Refusal):
             f"Two independent computations disagree on “{term}”, so the result is withheld: please report this table, since it "
             f"shows a fault in the program."
         )
+
+
+class NotEstimable(Refusal):
+    """A combination of cells that the layout does not determine."""
+
+    def __init__(self, cells: Sequence[str]) -> None:
+        super().__init__(
+            f"The combination of {', '.join(cells[:6])} cannot be estimated, because the layout lacks observations that it needs: "
+            f"choose filled cells that are connected."
+        )
