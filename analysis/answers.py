@@ -8,8 +8,8 @@ import pandas as pd
 from analysis import anova, verdicts
 from analysis.design import Design
 from analysis.families import within_name
-from analysis.rounding import measured, p_value, percent, significant
-from analysis.sizes import Size, largest, largest_contrast
+from analysis.rounding import measured, p_value, percent, percent_number, significant
+from analysis.sizes import Size, largest, largest_contrast, turns
 from analysis.study import Study
 
 NOT_TESTED = "not_tested"
@@ -118,10 +118,14 @@ def _interaction_untested(evidence: Evidence) -> tuple[str, str]:
 
 def _depends(evidence: Evidence, size: Size | None) -> tuple[str, str]:
     row, column = evidence.study.factors
-    sentence = f"Yes: what {column} does depends on {row}."
-    if size is not None and size.verdict == verdicts.SMALL:
-        return verdicts.SMALL, f"{sentence[:-1]}, but by less than what matters."
-    return (verdicts.DIFFERS if size is None or size.verdict != verdicts.LARGER else verdicts.LARGER), sentence
+    sentence = f"Yes: what {column} does depends on {row}"
+    if size is not None and size.all_small:
+        return verdicts.SMALL, f"{sentence}, but by less than what matters."
+    verdict = verdicts.LARGER if size is not None and size.verdict == verdicts.LARGER else verdicts.DIFFERS
+    turned = [factor for factor, other in ((column, row), (row, column)) if turns(evidence.comparisons[within_name(factor, other)])]
+    if turned:
+        return verdict, f"{sentence}, and the order of the levels of {' and of '.join(turned)} changes."
+    return verdict, f"{sentence}."
 
 
 def _not_shown_to_depend(evidence: Evidence, size: Size | None) -> tuple[str, str]:
@@ -208,7 +212,7 @@ def _statistic(evidence: Evidence, tested: pd.Series, term: str, size: Size | No
         what = "largest difference of differences" if term == anova.INTERACTION else "largest difference"
         ends = f"{measured(size.lower, size.se)} to {measured(size.upper, size.se)}"
         words.append(f"{what} {measured(size.effect, size.se)}{evidence.unit} ({ends})")
-    low, high = percent(tested["partial_eta2_lower"]), percent(tested["partial_eta2_upper"])
+    low, high = percent_number(tested["partial_eta2_lower"]), percent(tested["partial_eta2_upper"])
     words.append(f"explains {percent(tested['partial_eta2'])} of what the other terms leave open ({low} to {high})")
     return " · ".join(words)
 

@@ -59,6 +59,12 @@ def p_number(p: float | None) -> str:
     return f"{p:.3f}" if p < 0.0995 else f"{p:.2f}"
 
 
+def percent_number(share: float | None) -> str:
+    """Write a share between 0 and 1 as the whole number of percent alone, where the sign follows later."""
+    return NOT_KNOWN if share is None or not math.isfinite(share) else fixed(100 * share, 0)
+
+
 def percent(share: float | None) -> str:
     """Write a share between 0 and 1 as whole percent."""
-    return NOT_KNOWN if share is None or not math.isfinite(share) else f"{fixed(100 * share, 0)}{NARROW_SPACE}%"
+    number = percent_number(share)
+    return number if number == NOT_KNOWN else f"{number}{NARROW_SPACE}%"

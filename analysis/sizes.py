@@ -54,3 +54,12 @@ def _size(at: pd.Series, lower: str, upper: str, found: list[str], scale: Scale)
     strongest = next((v for v in (verdicts.LARGER, verdicts.DIFFERS, verdicts.SMALL) if v in found), found[0])
     small = all(v in SMALL_ENOUGH for v in found)
     return Size(float(ends[0]), float(at["se"]), float(at["df"]), float(ends[1]), float(ends[2]), strongest, small)
+
+
+def turns(frame: pd.DataFrame | None) -> bool:
+    """Return whether some pair of levels is decided to differ one way inside one slice and the other way inside another."""
+    if frame is None:
+        return False
+    decided = frame[frame["verdict"].isin((verdicts.LARGER, verdicts.DIFFERS, verdicts.SMALL))]
+    ways = decided.assign(way=decided["difference"] > 0).groupby(["left", "right"], sort=False)["way"].nunique()
+    return bool((ways > 1).any())
