@@ -1,0 +1,47 @@
+"""How a value inside the object is named: keys joined by "/", where "key=value&key=value" picks the row of a list."""
+
+from collections.abc import Iterator, Mapping
+from typing import Any
+
+NAMING = (("row", "column"), ("left", "right", "within"), ("factor", "within"), ("rows", "columns"), ("term",), ("level",))
+
+
+def at(whole: Any, path: str) -> Any:
+    """Return the value under a path; raises LookupError naming the step that leads nowhere."""
+    for step in path.split("/"):
+        whole = one(whole, step) if isinstance(whole, list) else whole[step]
+    return whole
+
+
+def one(rows: list[dict[str, Any]], step: str) -> dict[str, Any]:
+    """The row of a list that fits every key=value."""
+    wanted = dict(part.split("=", 1) for part in step.split("&"))
+    found = [row for row in rows if all(word(row[key]) == value for key, value in wanted.items())]
+    if len(found) != 1:
+        raise LookupError(f"{len(found)} rows for {step}")
+    return found[0]
+
+
+def word(value: Any) -> str:
+    """A label as a path writes it: a pair as two words with a comma."""
+    return ",".join(map(str, value)) if isinstance(value, list | tuple) else str(value)
+
+
+def leaves(whole: Any, path: str = "") -> Iterator[tuple[str, Any]]:
+    """Every value with its path; rows of lists go by what names them, else by their place."""
+    if isinstance(whole, Mapping):
+        for key, part in whole.items():
+            yield from leaves(part, f"{path}/{key}" if path else str(key))
+    elif isinstance(whole, list):
+        for place, row in enumerate(whole):
+            yield from leaves(row, f"{path}/{name_of(row) or place}")
+    else:
+        yield path, whole
+
+
+def name_of(row: Any) -> str | None:
+    """What names a row among the others of its list."""
+    if not isinstance(row, Mapping):
+        return None
+    keys = next((keys for keys in NAMING if all(key in row for key in keys)), None)
+    return None if keys is None else "&".join(f"{key}={word(row[key])}" for key in keys)
