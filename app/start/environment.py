@@ -21,6 +21,12 @@ ROOT = Path(__file__).resolve().parents[2]
 APP_PINS = ROOT / "requirements.txt"
 TEST_PINS = ROOT / "tests" / "requirements.txt"
 
+DROPPED = (
+    "PYTHONHOME",
+    "PYTHONSAFEPATH",
+    "PYTHONDONTWRITEBYTECODE",  # a start that compiles every package again takes ten seconds instead of two
+)
+
 Install = Callable[[Path, Sequence[Path], Path], None]  # (the environment's Python, the files of pins, the log to write)
 
 
@@ -129,7 +135,7 @@ def _write_stamp(environment: Environment, text: str) -> None:
 
 def variables() -> dict[str, str]:
     """Return the variables for a process in the environment: the checkout is importable, a user's own packages are not."""
-    kept = {name: value for name, value in os.environ.items() if name not in ("PYTHONHOME", "PYTHONSAFEPATH")}
+    kept = {name: value for name, value in os.environ.items() if name not in DROPPED}
     return kept | {"PYTHONPATH": str(ROOT), "PYTHONNOUSERSITE": "1"}
 
 
