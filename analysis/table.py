@@ -1,7 +1,5 @@
 """What a table is once it has been read: its columns, where its rows stood in the file, and what the reader decided."""
 
-import difflib
-from collections.abc import Sequence
 from dataclasses import dataclass
 from functools import cached_property
 from typing import Protocol
@@ -158,9 +156,9 @@ class Table:
         return {column.name: column for column in self.columns}
 
     def column(self, name: str) -> Column:
-        """Return the column of this name; raises UnknownColumn, which suggests the nearest one."""
+        """Return the column of this name; raises UnknownColumn, which names the nearest one."""
         if name not in self._by_name:
-            raise refusals.UnknownColumn(name, nearest(name, self.names), self.names)
+            raise refusals.UnknownColumn(name, self.names)
         return self._by_name[name]
 
     def preview(self, n: int = 20) -> pd.DataFrame:
@@ -170,13 +168,6 @@ class Table:
 
     def __repr__(self) -> str:
         return f"Table({self.name!r}, {self.rows} rows, {len(self.columns)} columns)"
-
-
-def nearest(word: str, candidates: Sequence[str]) -> str | None:
-    """Return the candidate most like a word, capitals aside, or None where nothing comes near."""
-    folded = {candidate.casefold(): candidate for candidate in reversed(candidates)}
-    found = difflib.get_close_matches(word.casefold(), list(folded), n=1, cutoff=0.5)
-    return folded[found[0]] if found else None
 
 
 def frozen(array: npt.NDArray[np.float64]) -> Floats:

@@ -1,0 +1,149 @@
+"""How delimited text becomes records and columns: quickly where every line is regular, carefully where one is not."""
+
+import csv
+import io
+from collections.abc import Iterator, Sequence
+from dataclasses import dataclass
+from functools import cached_property
+from itertools import islice
+
+import numpy as np
+import pyarrow as pa
+import pyarrow.compute as pc
+from pyarrow import csv as arrow_csv
+
+from analysis import refusals
+from analysis.reading import spaces
+from analysis.reading.records import HEAD, Body, Found, Record, trimmed
+from analysis.table import Rows
+
+LONGEST_CELL = 32_767  # characters, the most that a spreadsheet holds in a cell
+_END = "\x03"  # a last record of our own; where it is swallowed, a quotation mark was left open
+_CHUNK = 50_000  # records turned into columns at a time
+_BLOCK = 1 << 22  # bytes that Arrow parses at a time
+
+
+@dataclass(frozen=True, eq=False)
+class Delimited:
+    """A text file (UTF-8, \\n line ends) with its separator."""
+
+    data: bytes
+    delimiter: str
+    found: Found
+    declared: int = 0  # lines at the start that only name the separator
+
+    @cached_property
+    def head(self) -> Sequence[Record]:
+        """The first records, those that only name the separator taken as blank."""
+        records = islice(self._records(self._start_text()), HEAD)
+        return tuple(Record(row, () if row <= self.declared else trimmed([spaces.tidy(cell) for cell in cells])) for row, cells in records)
+
+    def _start_text(self) -> str:
+        """Enough of the file for its head, up to the end of a line."""
+        limit = 64 * HEAD * 200
+        if len(self.data) <= limit:
+            return self.data.decode("utf-8")
+        end = self.data.rfind(b"\n", 0, limit)
+        return self.data[: end if end > 0 else limit].decode("utf-8", errors="ignore")
+
+    def _records(self, text: str) -> Iterator[tuple[int, list[str]]]:
+        """Every record with its row number; raises UnclosedQuote or CellTooLong with the row where it happens."""
+        row = 0
+        reader = csv.reader(
+            io.StringIO(text + "\n" + _END, newline="\n"), delimiter=self.delimiter, strict=True, skipinitialspace=self._spaced_quotes
+        )
+        try:
+            for cells in reader:
+                row += 1
+                if cells == [_END]:
+                    return
+                yield row, cells
+        except csv.Error as error:
+            self._refuse(row + 1, text, error)
+        raise refusals.UnclosedQuote(row)
+
+    @cached_property
+    def _spaced_quotes(self) -> bool:
+        """Whether quotation marks follow the separator after a space."""
+        return f'{self.delimiter} "'.encode() in self.data
+
+    def _refuse(self, row: int, text: str, error: csv.Error) -> None:
+        if "field larger" in str(error) and text.count('"') % 2 == 0:
+            raise refusals.CellTooLong(row, LONGEST_CELL) from error
+        raise refusals.UnclosedQuote(row) from error
+
+    def body(self, start: int, width: int) -> Body:
+        """The columns from record number start on; raises TooManyFields, UnclosedQuote or CellTooLong."""
+        quick = self._quick(start, width)
+        columns, rows = quick if quick is not None else self._careful(start, width)
+        for column in columns:
+            self._refuse_long(column, rows)
+        blank: tuple[None, ...] = (None,) * width
+        return Body(columns, rows, blank, blank)
+
+    def _refuse_long(self, column: pa.StringArray, rows: Rows) -> None:
+        if len(column) and pc.max(pc.binary_length(column)).as_py() > LONGEST_CELL:
+            long = np.flatnonzero(pc.greater(pc.utf8_length(column), LONGEST_CELL).to_numpy(zero_copy_only=False))
+            if long.size:
+                raise refusals.CellTooLong(int(rows[long[0]]), LONGEST_CELL)
+
+    def _quick(self, start: int, width: int) -> tuple[tuple[pa.StringArray, ...], Rows] | None:
+        """Let Arrow parse the lines below the header; None unless each is one record of the full width."""
+        offset = self._offset(start)
+        if (
+            offset is None
+            or self._spaced_quotes
+            or self.data.count(b'"') % 2
+            or len(self.delimiter.encode()) > 1
+            or not self.data[offset:].strip()
+        ):
+            return None
+        lines = self.data.count(b"\n", offset) + (not self.data.endswith(b"\n"))
+        names = [str(index) for index in range(width)]
+        try:
+            table = arrow_csv.read_csv(
+                pa.BufferReader(pa.py_buffer(self.data).slice(offset)),
+                read_options=arrow_csv.ReadOptions(column_names=names, block_size=_BLOCK),
+                parse_options=arrow_csv.ParseOptions(delimiter=self.delimiter),
+                convert_options=arrow_csv.ConvertOptions(column_types=dict.fromkeys(names, pa.string()), strings_can_be_null=False),
+            )
+        except pa.ArrowInvalid:
+            return None
+        if table.num_rows != lines:
+            return None
+        columns = tuple(table.column(index).combine_chunks() for index in range(width))
+        return columns, np.arange(start + 1, start + 1 + lines, dtype=np.int64)
+
+    def _offset(self, start: int) -> int | None:
+        """Where record number start begins, or None where a record before it runs over several lines."""
+        offset = 0
+        for _ in range(start):
+            end = self.data.find(b"\n", offset)
+            if end < 0 or self.data.count(b'"', offset, end) % 2:
+                return None
+            offset = end + 1
+        return offset
+
+    def _careful(self, start: int, width: int) -> tuple[tuple[pa.StringArray, ...], Rows]:
+        """Read record by record: short rows are filled with blanks, blank ones passed over, wide ones refused."""
+        parts: list[list[pa.StringArray]] = [[] for _ in range(width)]
+        numbers: list[int] = []
+        records = islice(self._records(self.data.decode("utf-8")), start, None)
+        while chunk := list(islice(records, _CHUNK)):
+            filled = [(row, _fitted(row, cells, width)) for row, cells in chunk if any(cells)]
+            numbers.extend(row for row, _ in filled)
+            for part, texts in zip(parts, zip(*(cells for _, cells in filled), strict=True), strict=False):
+                part.append(pa.array(texts, pa.string()))
+        columns = tuple(pa.concat_arrays(part) if part else pa.array([], pa.string()) for part in parts)
+        return columns, np.array(numbers, dtype=np.int64)
+
+
+def _fitted(row: int, cells: list[str], width: int) -> list[str]:
+    """Bring a row to the width of the header; raises TooManyFields where filled cells would be lost."""
+    if len(cells) == width:
+        return cells
+    if len(cells) < width:
+        return cells + [""] * (width - len(cells))
+    if any(not spaces.is_blank(cell) for cell in cells[width:]):
+        raise refusals.TooManyFields(row, len(trimmed(cells)), width)
+    return cells[:width]

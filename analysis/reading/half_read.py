@@ -1,0 +1,78 @@
+"""A response half read: its cells, the values found so far, and the texts that are not plain numbers."""
+
+from collections.abc import Sequence
+from dataclasses import dataclass, field
+from functools import cached_property
+
+import numpy as np
+import numpy.typing as npt
+import pyarrow as pa
+
+from analysis.reading import marks, missing
+from analysis.reading.numerals import Numeral
+from analysis.table import Floats, Rows
+
+
+@dataclass(frozen=True, eq=False)
+class Written:
+    """The cells of a column on their way to being measurements; one entry for each row of the table."""
+
+    name: str
+    texts: pa.StringArray
+    numbers: Floats | None
+    rows: Rows
+    unit: str | None
+    comma_separated: bool
+
+
+@dataclass(frozen=True, eq=False)
+class Odd:
+    """Cells that are not plain numbers: each different text once, and where it stands."""
+
+    where: npt.NDArray[np.intp]  # rows of the table
+    codes: npt.NDArray[np.intp]  # for each of those rows, the index of its text
+    texts: tuple[str, ...]  # tidy
+    numerals: tuple[Numeral | None, ...]
+
+    @cached_property
+    def first(self) -> npt.NDArray[np.intp]:
+        """For each text, the first row of the table that holds it."""
+        first = np.zeros(len(self.texts), dtype=np.intp)
+        first[self.codes[::-1]] = self.where[::-1]
+        return first
+
+    def rows_of(self, chosen: npt.NDArray[np.bool_]) -> npt.NDArray[np.intp]:
+        """Rows of the table whose text is chosen (a mask over texts)."""
+        return self.where[chosen[self.codes]]
+
+    def mask(self, chosen: Sequence[bool]) -> npt.NDArray[np.bool_]:
+        """A mask over texts."""
+        return np.array(chosen, dtype=bool).reshape(len(self.texts))
+
+
+@dataclass(eq=False)
+class Reading:
+    """A column half read: values so far and why others are missing."""
+
+    written: Written
+    plain: npt.NDArray[np.bool_]
+    values: Floats
+    odd: Odd
+    decided: marks.Marks = field(default_factory=marks.Marks)
+
+    @cached_property
+    def is_number(self) -> npt.NDArray[np.bool_]:
+        """Which of the odd texts are numbers after all."""
+        return self.odd.mask([numeral is not None and not numeral.bound for numeral in self.odd.numerals])
+
+    @cached_property
+    def is_limit(self) -> npt.NDArray[np.bool_]:
+        """Which of the odd texts name a detection limit."""
+        bounds = [numeral is not None and bool(numeral.bound) for numeral in self.odd.numerals]
+        return self.odd.mask([bound or missing.is_beyond_limit(text) for bound, text in zip(bounds, self.odd.texts, strict=True)])
+
+    @cached_property
+    def is_text(self) -> npt.NDArray[np.bool_]:
+        """Which of the odd texts are neither numbers, limits, missing words nor infinite."""
+        known = [not text or missing.is_missing(text) or missing.is_infinite(text) for text in self.odd.texts]
+        return ~(self.odd.mask(known) | self.is_number | self.is_limit)

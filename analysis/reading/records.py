@@ -1,0 +1,76 @@
+"""What every kind of file is turned into first: records of cells at the head, then columns of text with row numbers."""
+
+from collections.abc import Sequence
+from dataclasses import dataclass, field
+from typing import Protocol
+
+import pyarrow as pa
+
+from analysis.table import Decision, Floats, Rows
+
+HEAD = 200  # records looked at to find the header
+
+
+@dataclass(frozen=True)
+class Record:
+    """One line of the file, or one row of a sheet."""
+
+    row: int  # its number as a spreadsheet shows it
+    cells: tuple[str, ...]  # tidy text, "" where blank, without blank cells at the end
+
+    @property
+    def filled(self) -> int:
+        """How many cells are not blank."""
+        return sum(bool(cell) for cell in self.cells)
+
+
+@dataclass(frozen=True)
+class Span:
+    """A merged range of cells, all numbers inclusive; columns count from 0, rows as a spreadsheet shows them."""
+
+    first_row: int
+    last_row: int
+    first_column: int
+    last_column: int
+
+
+@dataclass(frozen=True, eq=False)
+class Body:
+    """The rows below the header; every column has one entry for each of them."""
+
+    columns: tuple[pa.StringArray, ...]
+    rows: Rows
+    numbers: tuple[Floats | None, ...]  # the values of number cells, where the file holds values and not text
+    units: tuple[str | None, ...]
+
+
+@dataclass(frozen=True)
+class Found:
+    """What a file turned out to be, before its header is looked for."""
+
+    decisions: tuple[Decision, ...] = ()
+    comma_separated: bool = False
+    spans: tuple[Span, ...] = field(default=())
+
+
+class Source(Protocol):
+    """A file of any kind that gives its first records, and the columns below the header once that is known."""
+
+    @property
+    def found(self) -> Found:
+        """What was decided about the file."""
+
+    @property
+    def head(self) -> Sequence[Record]:
+        """The first records, blank ones included."""
+
+    def body(self, start: int, width: int) -> Body:
+        """The columns from record number start (counted from 0) on; raises TooManyFields where a row is wider."""
+
+
+def trimmed(cells: Sequence[str]) -> tuple[str, ...]:
+    """Drop the blank cells at the end of a row."""
+    end = len(cells)
+    while end and not cells[end - 1]:
+        end -= 1
+    return tuple(cells[:end])

@@ -1,0 +1,90 @@
+"""How a column of text is read as levels: which texts are one level, their natural order, and a note on each decision."""
+
+from collections.abc import Iterator, Sequence
+from dataclasses import dataclass
+from decimal import Decimal
+
+import numpy as np
+import pyarrow as pa
+
+from analysis.reading import level_order, look_alikes, marks, missing, numerals, spaces
+from analysis.reading.numerals import Numeral
+from analysis.reading.words import several
+from analysis.table import Codes, Levels
+
+Identity = tuple[str, Decimal | str, str]
+
+
+@dataclass(frozen=True)
+class Level:
+    """One level: as it was written first, and its number and unit where it is one."""
+
+    label: str
+    amount: Decimal | None
+    unit: str
+
+
+def read(name: str, texts: pa.StringArray, comma_separated: bool) -> Levels:
+    """Read a column of text as levels; only an empty cell is missing, and any text that is a number is that number."""
+    encoded = texts.dictionary_encode()
+    raw: list[str] = encoded.dictionary.to_pylist()
+    tidy = spaces.tidy_array(encoded.dictionary).to_pylist()
+    levels, place = _distinct(tidy, comma_separated)
+    order = _order(levels)
+    rank = np.full(len(levels) + 1, -1, dtype=np.intp)  # the last entry serves the blank, whose place is -1
+    rank[order] = np.arange(len(levels))
+    codes: Codes = (
+        rank[np.asarray(place, dtype=np.intp)][encoded.indices.to_numpy(zero_copy_only=False)] if raw else np.empty(0, dtype=np.intp)
+    )
+    codes.flags.writeable = False
+    ordered = [levels[index] for index in order]
+    notes = tuple(_notes(name, raw, tidy, tuple(level.label for level in ordered)))
+    return Levels(codes, tuple(level.label for level in ordered), _amounts(ordered), notes)
+
+
+def _distinct(texts: Sequence[str], comma_separated: bool) -> tuple[list[Level], list[int]]:
+    """Return the different levels in the order of the file, and for each text the place of its level (-1 for blank)."""
+    found = [numerals.find(text) for text in texts]
+    decided = marks.decide((numeral.shape for numeral in found if numeral is not None), comma_separated)
+    places: dict[Identity, int] = {}
+    levels: list[Level] = []
+    place = []
+    for text, numeral in zip(texts, found, strict=True):
+        level = _level(text, numeral, decided)
+        identity: Identity = ("number", level.amount, level.unit) if level.amount is not None else ("text", text, "")
+        if text and identity not in places:
+            places[identity] = len(levels)
+            levels.append(level)
+        place.append(places[identity] if text else -1)
+    return levels, place
+
+
+def _level(text: str, numeral: Numeral | None, decided: marks.Marks) -> Level:
+    if numeral is None or numeral.bound or numeral.footnote or abs(numeral.exponent) > 400:
+        return Level(text, None, "")
+    return Level(text, Decimal(numeral.plain(decided.comma, decided.point)), numeral.unit)
+
+
+def _order(levels: Sequence[Level]) -> list[int]:
+    """Numbers of one unit by value, everything else by its words."""
+    amounts = [level.amount for level in levels if level.amount is not None]
+    if len(amounts) == len(levels) and len({level.unit for level in levels} - {""}) <= 1:
+        return sorted(range(len(levels)), key=lambda index: amounts[index])
+    return level_order.natural([level.label for level in levels])
+
+
+def _amounts(levels: Sequence[Level]) -> tuple[float, ...] | None:
+    amounts = tuple(float(level.amount) for level in levels if level.amount is not None)
+    one_unit = len({level.unit for level in levels} - {""}) <= 1
+    return amounts if levels and len(amounts) == len(levels) and one_unit else None
+
+
+def _notes(name: str, raw: Sequence[str], tidy: Sequence[str], labels: Sequence[str]) -> Iterator[str]:
+    changed = sum(before != after for before, after in zip(raw, tidy, strict=True) if after)
+    if changed:
+        yield f"Column “{name}”: white space in and around its levels was trimmed."
+    words = [label for label in labels if missing.is_missing(label)]
+    if words:
+        kept = f"{several(words)} kept as {'a level' if len(words) == 1 else 'levels'}"
+        yield f"Column “{name}”: {kept}, because only an empty cell is missing in a factor."
+    yield from look_alikes.notes(name, labels)
