@@ -241,7 +241,8 @@ class FileTooLarge(Refusal):
 
     def __init__(self, size: int, limit: int) -> None:
         super().__init__(
-            f"The file holds {size / 2**20:,.0f} MiB and the limit is {limit / 2**20:,.0f} MiB: leave out columns that are not needed, or bring a data frame."
+            f"The file holds {size / 2**20:,.0f} MiB and the limit is {limit / 2**20:,.0f} MiB: leave out columns that are not "
+            "needed, or bring a data frame."
         )
 
 
@@ -259,7 +260,8 @@ class NoNumericColumn(Refusal):
     def __init__(self, columns: int, rows: int) -> None:
         super().__init__(
             f"The table has no numeric column: none of the cells in its {columns} column{'' if columns == 1 else 's'} and {rows} "
-            f"row{'' if rows == 1 else 's'} is a number, and a response is needed to analyse; check that this is the right file, sheet and separator."
+            f"row{'' if rows == 1 else 's'} is a number, and a response is needed to analyse; check that this is the right "
+            "file, sheet and separator."
         )
 
 
@@ -274,7 +276,10 @@ class DamagedFile(Refusal):
     """A file of a known kind that cannot be read to its end."""
 
     def __init__(self, what: str) -> None:
-        super().__init__(f"The {what} is damaged or cut short and cannot be read: open it where it was made, save it anew and bring that file.")
+        super().__init__(
+            f"The {what} is damaged or cut short and cannot be read: open it where it was made, save it anew and bring that "
+            "file."
+        )
 
 
 class Encrypted(Refusal):
@@ -288,7 +293,10 @@ class UnpacksTooLarge(Refusal):
     """A compressed file that unpacks beyond the limit."""
 
     def __init__(self, limit: int) -> None:
-        super().__init__(f"The workbook unpacks to more than the limit of {limit // 2**20} MiB: save only the sheet with the data, or save it as .csv.")
+        super().__init__(
+            f"The workbook unpacks to more than the limit of {limit // 2**20} MiB: save only the sheet with the data, or save "
+            "it as .csv."
+        )
 
 
 class TooManyCellsInSheet(Refusal):
@@ -296,7 +304,8 @@ class TooManyCellsInSheet(Refusal):
 
     def __init__(self, sheet: str, rows: int, columns: int) -> None:
         super().__init__(
-            f"The sheet “{sheet[:60]}” spans {rows:,} rows × {columns:,} columns, more than can be read: delete stray cells far below or beside the table."
+            f"The sheet “{sheet[:60]}” spans {rows:,} rows × {columns:,} columns, more than can be read: delete stray cells "
+            "far below or beside the table."
         )
 
 
@@ -326,7 +335,10 @@ class NulBytes(Refusal):
 
     def __init__(self, row: int) -> None:
         self.row = row
-        super().__init__(f"Row {row} holds NUL bytes, which no text table has: the file is damaged or of another kind; save it anew as .csv or .xlsx.")
+        super().__init__(
+            f"Row {row} holds NUL bytes, which no text table has: the file is damaged or of another kind; save it anew as .csv "
+            "or .xlsx."
+        )
 
 
 class UnclosedQuote(Refusal):
@@ -334,7 +346,10 @@ class UnclosedQuote(Refusal):
 
     def __init__(self, row: int) -> None:
         self.row = row
-        super().__init__(f"An unclosed quotation mark was found in row {row}, so that the cells after it run together: close or remove it there.")
+        super().__init__(
+            f"An unclosed quotation mark was found in row {row}, so that the cells after it run together: close or remove it "
+            "there."
+        )
 
 
 class CellTooLong(Refusal):
@@ -342,7 +357,10 @@ class CellTooLong(Refusal):
 
     def __init__(self, row: int, limit: int) -> None:
         self.row = row
-        super().__init__(f"A cell in row {row} is longer than {limit:,} characters: shorten it, or check the separator and the quotation marks.")
+        super().__init__(
+            f"A cell in row {row} is longer than {limit:,} characters: shorten it, or check the separator and the quotation "
+            "marks."
+        )
 
 
 class TooManyFields(Refusal):
@@ -351,7 +369,8 @@ class TooManyFields(Refusal):
     def __init__(self, row: int, fields: int, names: int) -> None:
         self.row = row
         super().__init__(
-            f"Row {row} has {fields} filled fields and the header only {names}: name the further columns, or put quotation marks around cells "
+            f"Row {row} has {fields} filled fields and the header only {names}: name the further columns, or put quotation "
+            "marks around cells "
             f"that hold the separator (a decimal comma, perhaps)."
         )
 
@@ -381,7 +400,8 @@ class ResponseIsText(Refusal):
         self.rows = tuple(row for _, row in first)
         told = ", ".join(f"“{text[:40]}” (row {row})" for text, row in first)
         super().__init__(
-            f"Column “{column[:60]}” holds text in {text_rows} of its {rows} rows, such as {told}: choose a column of numbers as the response."
+            f"Column “{column[:60]}” holds text in {text_rows} of its {rows} rows, such as {told}: choose a column of numbers "
+            "as the response."
         )
 
 
