@@ -19,7 +19,10 @@ OPTIONS = (
     "--no-compile",  # Python compiles what is imported; compiling every module of every package takes longer than the rest
     "--retries=3",
 )
-FETCHED = re.compile(r"^\s*(?:Downloading|Using cached|Processing) (?:\S*/)?([\w.]+)-([\w.!+]+)-[^ ]+\.whl(?: \((\d[^)]*)\))?(?: \(from .*)?$")
+FETCHED = re.compile(
+    r"^\s*(?:Downloading|Using cached|Processing) (?:\S*/)?(?P<name>[\w.]+)-(?P<version>[\w.!+]+)-[^ ]+\.whl"
+    r"(?: \((?P<size>\d[^)]*)\))?(?: \(from .*)?$"
+)
 INSTALLING = "Installing collected packages: "
 UNREACHABLE = ("Retrying (", "ConnectionError", "NewConnectionError", "NameResolutionError", "ProxyError", "ConnectTimeoutError")
 

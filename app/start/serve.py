@@ -40,8 +40,11 @@ def main(arguments: Sequence[str]) -> None:
 
 
 def keep_to_this_machine() -> None:
-    """Stop the one call by which Streamlit asks a server outside for this machine's public address."""
-    net_util.get_external_ip = lambda: None
+    """Stop Streamlit from finding out this machine's addresses: for one it asks a server outside, for the other it points a socket there.
+
+    It does so when a page of another origin knocks, to see whether the origin is the machine itself. Without them the page is refused.
+    """
+    net_util.get_external_ip = net_util.get_internal_ip = lambda: None
 
 
 def command(port: int) -> list[str]:
