@@ -1,0 +1,84 @@
+"""The slides of a study: one for each board, the claim as title, the table or figure below it, its evidence, and the notes."""
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+from pptx.slide import Slide
+from pptx.util import Pt
+
+from analysis.findings import Findings
+from app.boards import Board
+from app.exports import chart, fit, master, plot, tables
+from app.look import DESK, SLIDE
+
+DRESSES = {
+    "question": tables.Dress(strong=0, tiles=True),
+    "answers": tables.Dress(strong=1, every_row=True),
+    "comparisons": tables.Dress(strong=2, ordered_by="largest"),
+}
+
+
+@dataclass(frozen=True)
+class Shown:
+    """What stands on a slide beside its claim, and how that differs from the whole."""
+
+    rule: str  # where rows or columns were left away
+    shortened: tuple[tuple[str, str], ...]
+
+
+def inks() -> master.Inks:
+    """Return the colours of the deck."""
+    colours = (DESK.paper, DESK.panel, DESK.shades[0], SLIDE.ink, SLIDE.quiet, DESK.rule, SLIDE.accent)
+    return master.Inks(*(colour.lstrip("#") for colour in colours), levels=tuple(hue.lstrip("#") for hue in SLIDE.hues))
+
+
+def build(boards: Sequence[Board], findings: Findings) -> bytes:
+    """Return the slides as a .pptx file, 16:9, one slide for each board, the same bytes for the same findings."""
+    deck, for_table, for_chart = master.empty_deck()
+    for board in boards:
+        layout = for_chart if board.figure else for_table
+        slide = deck.slides.add_slide(layout)
+        _claim(slide, board)
+        shown = _content(slide, board, findings)
+        _evidence(slide, board, shown)
+        master.number(slide, layout)
+        slide.notes_slide.notes_text_frame.text = _notes(board, shown)
+    return master.saved(deck, boards[0].claim if boards else "", inks())
+
+
+def _claim(slide: Slide, board: Board) -> None:
+    """Write the claim as the slide's title, in the largest type that lets it fit."""
+    wide, tall = master.CLAIM.wide / tables.BOLD, master.CLAIM.tall
+    points = fit.largest_type(board.claim, master.CLAIM_SIZES, wide, tall)
+    slide.shapes.title.text_frame.text = fit.shorten(board.claim, points, wide, fit.lines_in(tall, points))
+    slide.shapes.title.text_frame.paragraphs[0].runs[0].font.size = Pt(points)
+
+
+def _content(slide: Slide, board: Board, findings: Findings) -> Shown:
+    """Put the figure or the table on a slide."""
+    place = next(shape for shape in slide.placeholders if shape.placeholder_format.idx == master.CONTENT)
+    if board.figure:
+        drawn = plot.plan(findings)
+        master.describe(chart.add(place, drawn, inks()), board.kind.capitalize(), board.alt)
+        return Shown("", drawn.shortened)
+    if board.table is None or board.table.empty:
+        place.element.getparent().remove(place.element)
+        return Shown("", ())
+    dress = DRESSES.get(board.kind, tables.Dress())
+    content = tables.fitted(board.table, dress)
+    master.describe(tables.add(place, content, dress, inks()), board.kind.capitalize(), board.alt)
+    return Shown(content.cut, content.shortened)
+
+
+def _evidence(slide: Slide, board: Board, shown: Shown) -> None:
+    """Write the line of evidence; what was left away is said first."""
+    text = " · ".join(filter(None, (shown.rule and f"Shown: {shown.rule}; the workbook holds all", board.evidence)))
+    place = next(shape for shape in slide.placeholders if shape.placeholder_format.idx == master.WORDS)
+    lines = fit.lines_in(master.EVIDENCE.tall, master.SMALLEST)
+    place.text_frame.text = fit.shorten(text, master.SMALLEST, master.EVIDENCE.wide, lines)
+
+
+def _notes(board: Board, shown: Shown) -> str:
+    """Return the speaker notes, with the whole of everything that stands shortened on the slide."""
+    whole = "\n".join(f"On the slide “{short}” stands for “{text}”." for short, text in shown.shortened)
+    return "\n\n".join(filter(None, (board.claim, board.evidence, whole, board.notes)))
