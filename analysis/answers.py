@@ -3,12 +3,13 @@
 from collections.abc import Mapping
 from dataclasses import dataclass
 
+import numpy as np
 import pandas as pd
 
 from analysis import anova, verdicts
 from analysis.design import Design
 from analysis.families import within_name
-from analysis.rounding import measured, p_value, percent, percent_number, significant
+from analysis.rounding import measured, p_value, percent, percent_number, signed, significant
 from analysis.sizes import Size, largest, largest_contrast, turns
 from analysis.study import Study
 
@@ -26,6 +27,7 @@ class Evidence:
     simple_effects: pd.DataFrame
     interaction_contrasts: pd.DataFrame | None
     marginal_means: Mapping[str, pd.DataFrame]
+    cells: pd.DataFrame
 
     @property
     def alpha(self) -> float:
@@ -122,10 +124,36 @@ def _depends(evidence: Evidence, size: Size | None) -> tuple[str, str]:
     if size is not None and size.all_small:
         return verdicts.SMALL, f"{sentence}, but by less than what matters."
     verdict = verdicts.LARGER if size is not None and size.verdict == verdicts.LARGER else verdicts.DIFFERS
+    example = _example(evidence)
     turned = [factor for factor, other in ((column, row), (row, column)) if turns(evidence.comparisons[within_name(factor, other)])]
     if turned:
-        return verdict, f"{sentence}, and the order of the levels of {' and of '.join(turned)} changes."
-    return verdict, f"{sentence}."
+        return verdict, f"{sentence}, and the order of the levels of {' and of '.join(turned)} changes{example}."
+    return verdict, f"{sentence}{example}."
+
+
+def _example(evidence: Evidence) -> str:
+    """Show the largest difference of differences by the two changes that it is made of, where the scale can tell them."""
+    contrasts, scale = evidence.interaction_contrasts, evidence.layout.observed.scale
+    if contrasts is None or not (scale.is_identity or scale.tells_ratios) or contrasts["difference"].isna().all():
+        return ""
+    at = contrasts.iloc[int(contrasts["difference"].abs().fillna(0).to_numpy(float).argmax())]
+    (r1, r2), (c1, c2) = at["rows"], at["columns"]
+    row, column = evidence.study.factors
+    changes = [_change(evidence, r, c1, c2) for r in (r1, r2)]
+    how = "changes by the factor" if scale.tells_ratios else "changes by"
+    told = f"{changes[0]} with {_levels(row, [r1])} and {changes[1]} with {_levels(row, [r2])}"
+    return f": from {_levels(column, [c1])} to {_levels(column, [c2])} {evidence.layout.observed.response} {how} {told}"
+
+
+def _change(evidence: Evidence, row: str, first: str, second: str) -> str:
+    """Write how the estimate of one row changes between two columns."""
+    mine = evidence.cells[evidence.cells["row"] == row].set_index("column")
+    change = float(mine.at[second, "estimate"]) - float(mine.at[first, "estimate"])
+    scale = evidence.layout.observed.scale
+    if scale.tells_ratios:
+        return significant(float(scale.back(np.array(change))))
+    se = float(np.hypot(float(mine.at[second, "se"]), float(mine.at[first, "se"])))
+    return f"{signed(change, se)}{evidence.unit}"
 
 
 def _not_shown_to_depend(evidence: Evidence, size: Size | None) -> tuple[str, str]:
@@ -147,7 +175,7 @@ def factor_answer(evidence: Evidence, factor: str, other: str, depends: bool) ->
             "No test: see the notes on the design.",
             factor,
         )
-    size = largest(evidence.comparisons[factor], evidence.layout.observed.scale)
+    size = largest(evidence.comparisons[factor], evidence.layout.observed.scale, factor)
     if depends:
         verdict, sentence = _inside(evidence, factor, other)
     elif tested["p"] < evidence.alpha:
@@ -187,14 +215,30 @@ def _matters(evidence: Evidence, factor: str, size: Size | None) -> tuple[str, s
         return verdicts.SMALL, f"{_capital(factor)} makes a difference, but one too small to matter."
     verdict = verdicts.LARGER if size is not None and size.verdict == verdicts.LARGER else verdicts.DIFFERS
     means = evidence.marginal_means[factor].dropna(subset=["mean"])
-    if size is None or size.verdict == verdicts.UNDECIDED or means.empty:
+    if size is None or means.empty:
+        return (
+            verdict,
+            f"{_capital(factor)} matters, judged beside the other factor; its means cannot be averaged while combinations are missing.",
+        )
+    if size.verdict == verdicts.UNDECIDED:
         return verdict, f"{_capital(factor)} makes a difference overall, though no two of its levels can be told apart one by one."
     levels, values = means["level"].tolist(), means["mean"].to_numpy(float)
     high, low = levels[int(values.argmax())], levels[int(values.argmin())]
-    return verdict, (
-        f"{_capital(factor)} matters: {evidence.layout.observed.response} is highest with {_levels(factor, [high])} "
-        f"and lowest with {_levels(factor, [low])}."
-    )
+    return verdict, f"{_capital(factor)} matters: {_highest(evidence, size, _levels(factor, [high]), _levels(factor, [low]))}."
+
+
+def _highest(evidence: Evidence, size: Size, high: str, low: str) -> str:
+    """Say by how much the highest mean lies above the lowest, where the scale can tell it and that pair is compared."""
+    observed = evidence.layout.observed
+    if {high, low} != {_levels(size.factor, [level]) for level in size.levels} or not (
+        observed.scale.is_identity or observed.scale.tells_ratios
+    ):
+        return f"{observed.response} is highest with {high} and lowest with {low}"
+    if observed.scale.tells_ratios:
+        ratio = f"{significant(size.effect)} times ({significant(size.lower)} to {significant(size.upper)})"
+        return f"{observed.response} is {ratio} as high with {high} as with {low}"
+    difference = f"{measured(size.effect, size.se)}{evidence.unit} ({measured(size.lower, size.se)} to {measured(size.upper, size.se)})"
+    return f"{observed.response} is {difference} higher with {high} than with {low}"
 
 
 def _not_shown(evidence: Evidence, factor: str, size: Size | None) -> tuple[str, str]:

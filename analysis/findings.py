@@ -219,6 +219,7 @@ class Findings:
                 simple_effects=self.simple_effects,
                 interaction_contrasts=self.interaction_contrasts,
                 marginal_means=self.marginal_means,
+                cells=self.cells,
             )
         )
 

@@ -33,6 +33,13 @@ def measured(value: float | None, spread: float | None) -> str:
     return fixed(value, decimals_for(spread))
 
 
+def signed(value: float | None, spread: float | None) -> str:
+    """Write a change with its sign, plus as well as minus, and the digits that its standard error supports."""
+    text = measured(value, spread)
+    above_zero = value is not None and value > 0 and any(digit in "123456789" for digit in text)
+    return f"+{text}" if above_zero else text
+
+
 def significant(value: float | None, digits: int = 3) -> str:
     """Write a number without a standard error of its own (F, t, a ratio) with a count of significant digits."""
     if value is None or not math.isfinite(value):

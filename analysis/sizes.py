@@ -21,16 +21,18 @@ class Size:
     lower: float
     upper: float
     verdict: str  # the most decided verdict in the family
+    factor: str  # whose levels are compared; empty for differences of differences
+    levels: tuple[str, ...]  # the two compared
     all_small: bool  # every comparison lies inside ±the smallest difference that matters
 
 
-def largest(frame: pd.DataFrame | None, scale: Scale) -> Size | None:
+def largest(frame: pd.DataFrame | None, scale: Scale, factor: str) -> Size | None:
     """Return the size of the largest difference of a family with its adjusted interval, or None where nothing is estimable."""
     if frame is None or frame["difference"].dropna().empty:
         return None
     known = frame.dropna(subset=["difference"])
     at = known.iloc[int(known["difference"].abs().to_numpy(float).argmax())]
-    return _size(at, "lower_adjusted", "upper_adjusted", known["verdict"].tolist(), scale)
+    return _size(at, ("lower_adjusted", "upper_adjusted"), known["verdict"].tolist(), scale, factor, (str(at["left"]), str(at["right"])))
 
 
 def largest_contrast(frame: pd.DataFrame | None, matters: float | None, scale: Scale) -> Size | None:
@@ -41,19 +43,20 @@ def largest_contrast(frame: pd.DataFrame | None, matters: float | None, scale: S
     limit = matters if scale.is_identity else None
     found = verdicts.verdicts(known["lower"].to_numpy(float), known["upper"].to_numpy(float), limit)
     at = known.iloc[int(known["difference"].abs().to_numpy(float).argmax())]
-    return _size(at, "lower", "upper", found.tolist(), scale)
+    return _size(at, ("lower", "upper"), found.tolist(), scale, "", ())
 
 
-def _size(at: pd.Series, lower: str, upper: str, found: list[str], scale: Scale) -> Size:
+def _size(at: pd.Series, names: tuple[str, str], found: list[str], scale: Scale, factor: str, levels: tuple[str, ...]) -> Size:
     """Return a size with a positive effect, the ends of its interval turned with it, in original units for ratios."""
-    ends = np.array([at["difference"], at[lower], at[upper]], dtype=float)
+    ends = np.array([at["difference"], at[names[0]], at[names[1]]], dtype=float)
     if ends[0] < 0:
         ends = -ends[[0, 2, 1]]
     if scale.tells_ratios:
         ends = scale.back(ends)
     strongest = next((v for v in (verdicts.LARGER, verdicts.DIFFERS, verdicts.SMALL) if v in found), found[0])
     small = all(v in SMALL_ENOUGH for v in found)
-    return Size(float(ends[0]), float(at["se"]), float(at["df"]), float(ends[1]), float(ends[2]), strongest, small)
+    effect, lower, upper = ends.tolist()
+    return Size(effect, float(at["se"]), float(at["df"]), lower, upper, strongest, factor, levels, small)
 
 
 def turns(frame: pd.DataFrame | None) -> bool:
