@@ -1,0 +1,178 @@
+"""The open study and its history: the only module that knows the session, so that undo and page changes cannot disagree."""
+
+from collections.abc import Callable, Mapping
+from dataclasses import dataclass, replace
+from pathlib import Path
+from typing import Any
+
+import streamlit as st
+
+from analysis import analyse, read_table
+from analysis.findings import Findings
+from analysis.refusals import Refusal
+from analysis.roles import guess_roles
+from analysis.study import ROLES, Study
+from analysis.table import Table
+from app import samples
+
+HISTORY = 200  # studies kept for undo
+STATE = "desk"  # the one entry of the session that matters; widgets are views of it
+
+
+@dataclass(frozen=True, eq=False)
+class State:
+    """All that a session remembers."""
+
+    study: Study | None = None
+    past: tuple[Study | None, ...] = ()
+    future: tuple[Study | None, ...] = ()
+    complaint: str | None = None  # why the last file or choice was not taken
+    views: Mapping[str, Any] | None = None  # what is looked at, which no analysis depends on
+
+
+def _state() -> State:
+    return st.session_state.get(STATE) or State()
+
+
+def _remember(**changes: Any) -> None:
+    st.session_state[STATE] = replace(_state(), **changes)
+
+
+def study() -> Study | None:
+    """Return the open study, or None before the first table."""
+    return _state().study
+
+
+def complaint() -> str | None:
+    """Return the sentence of the last refusal, until something is taken again."""
+    return _state().complaint
+
+
+def open_study(new: Study | None) -> None:
+    """Make a study the open one; the one before can be had back by undo."""
+    now = _state()
+    _remember(study=new, past=(*now.past, now.study)[-HISTORY:], future=(), complaint=None)
+
+
+def change(**fields: Any) -> None:
+    """Replace fields of the open study; a choice that is refused leaves it as it was, with the sentence to show."""
+    now = study()
+    if now is None or all(getattr(now, name) == value for name, value in fields.items()):
+        return
+    try:
+        open_study(replace(now, **fields))
+    except Refusal as refusal:
+        _remember(complaint=str(refusal))
+
+
+def assign(role: str, column: str | None) -> None:
+    """Give a column a role; a role that held the column before takes over what this role held."""
+    now = study()
+    if now is None:
+        return
+    held_by = [other for other in ROLES if other != role and column is not None and getattr(now, other) == column]
+    change(**{role: column, **{other: getattr(now, role) for other in held_by}})
+
+
+def undo() -> None:
+    """Go back to the study before the last change."""
+    now = _state()
+    if now.past:
+        _remember(study=now.past[-1], past=now.past[:-1], future=(now.study, *now.future), complaint=None)
+
+
+def redo() -> None:
+    """Take back the last undo."""
+    now = _state()
+    if now.future:
+        _remember(study=now.future[0], past=(*now.past, now.study), future=now.future[1:], complaint=None)
+
+
+def can_undo() -> bool:
+    """Return whether there is a study to go back to."""
+    return bool(_state().past)
+
+
+def can_redo() -> bool:
+    """Return whether an undo can be taken back."""
+    return bool(_state().future)
+
+
+def bind(key: str, field: str, take: Callable[[Any], Any] = lambda value: value) -> dict[str, Any]:
+    """Tie a widget to a field of the open study: the study is the truth, the widget a view of it."""
+    st.session_state[key] = getattr(study(), field)
+    return {"key": key, "on_change": lambda: change(**{field: take(st.session_state[key])})}
+
+
+def bind_role(key: str, role: str) -> dict[str, Any]:
+    """Tie a select box to the role of a column."""
+    st.session_state[key] = getattr(study(), role)
+    return {"key": key, "on_change": lambda: assign(role, st.session_state[key])}
+
+
+def bind_view(key: str, options: list[Any]) -> dict[str, Any]:
+    """Tie a widget to what is looked at, which no result depends on; the first option until another is chosen."""
+    kept = (_state().views or {}).get(key)
+    st.session_state[key] = kept if kept in options else options[0]
+    return {"key": key, "on_change": lambda: _remember(views={**(_state().views or {}), key: st.session_state[key]})}
+
+
+def bind_upload(key: str) -> dict[str, Any]:
+    """Tie an uploader to the desk: a file is read once, in its callback, and is not needed afterwards."""
+    return {"key": key, "on_change": lambda: _take_upload(key)}
+
+
+def bind_sample(key: str) -> dict[str, Any]:
+    """Tie the choice of samples to the desk: choosing one opens it."""
+    now = study()
+    name = None if now is None else now.table.name
+    st.session_state[key] = next((sample.file for sample in samples.SAMPLES if Path(sample.file).name == name), None)
+    return {"key": key, "on_change": lambda: _take_sample(st.session_state[key])}
+
+
+def _take_upload(key: str) -> None:
+    file = st.session_state[key]
+    if file is not None:
+        bring(file.getvalue(), file.name)
+
+
+def _take_sample(file: str | None) -> None:
+    if file is not None:
+        bring(samples.path_of(file).read_bytes(), file)
+
+
+def bring(content: bytes, name: str) -> None:
+    """Read a file and open a study of it with the roles that its columns suggest; a refusal leaves the open study as it is."""
+    try:
+        table = read_table(content, name=name)
+        roles = guess_roles(table)
+        open_study(Study(table, roles.response, roles.row_factor, roles.column_factor, roles.block, roles.unit))
+    except Refusal as refusal:
+        _remember(complaint=str(refusal))
+
+
+@st.cache_resource(max_entries=64, show_spinner=False)
+def _findings(fingerprint: str, _study: Study) -> Findings:
+    return analyse(_study)
+
+
+def findings() -> Findings | Refusal | None:
+    """Return what the open study comes to, the refusal where it cannot be analysed, None where nothing is open."""
+    now = study()
+    if now is None:
+        return None
+    try:
+        return _findings(now.fingerprint, now)
+    except Refusal as refusal:
+        return refusal
+
+
+@st.cache_resource(max_entries=16, show_spinner=False)
+def _reasons(fingerprint: str, _table: Table) -> Mapping[str, str]:
+    return guess_roles(_table).reasons
+
+
+def reasons() -> Mapping[str, str]:
+    """Return why each column of the open table got the role that was suggested for it, by column."""
+    now = study()
+    return {} if now is None else _reasons(now.table.fingerprint, now.table)

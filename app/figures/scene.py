@@ -1,0 +1,70 @@
+"""What an interaction figure shows: which levels are lines, the means of the model analysed, the observations drawn."""
+
+from dataclasses import dataclass
+from functools import cached_property
+
+import numpy as np
+import pandas as pd
+
+from analysis.findings import Findings
+from app.figures import placing
+
+
+@dataclass(frozen=True, eq=False)
+class Scene:
+    """The findings as the figure needs them; levels of the row factor are lines, those of the column factor run along the axis."""
+
+    findings: Findings
+
+    @cached_property
+    def rows(self) -> tuple[str, ...]:
+        """Levels drawn as lines."""
+        return tuple(self.findings.design["row_levels"])
+
+    @cached_property
+    def columns(self) -> tuple[str, ...]:
+        """Levels along the axis."""
+        return tuple(self.findings.design["column_levels"])
+
+    @cached_property
+    def means(self) -> pd.DataFrame:
+        """One line per cell: row, column, n, estimate, se, lower and upper of the model analysed."""
+        cells, additive = self.findings.cells, self.findings.additive_means
+        if self.findings.study.model == "full" or additive is None:
+            return cells
+        return additive.rename(columns={"mean": "estimate"}).merge(cells[["row", "column", "n"]], on=["row", "column"], how="left")
+
+    @cached_property
+    def observations(self) -> pd.DataFrame:
+        """The observations drawn, thinned where a cell holds very many."""
+        cells = self.findings.observations.groupby(["row", "column"], sort=False, observed=True)
+        return pd.concat([placing.thinned(points) for _, points in cells])
+
+    @property
+    def is_thinned(self) -> bool:
+        """Whether some observations are not drawn."""
+        return len(self.observations) < len(self.findings.observations)
+
+    @cached_property
+    def offsets(self) -> placing.Positions:
+        """How far each line stands from the place of its column level."""
+        return placing.dodge(len(self.rows))
+
+    @property
+    def label_place(self) -> float:
+        """Where the names of the lines begin: just right of the last cluster of points."""
+        return len(self.columns) - 1 + len(self.rows) / 2 * placing.step(len(self.rows)) + 0.05
+
+    def line_of(self, level: str) -> pd.DataFrame:
+        """Return the means of one line in the order of the axis."""
+        of_level = self.means[self.means["row"] == level]
+        return of_level.set_index("column").reindex(list(self.columns)).reset_index()
+
+    @cached_property
+    def reach(self) -> tuple[float, float]:
+        """Lowest and highest value drawn, with a little air."""
+        bars = self.means[["lower", "upper", "estimate"]].to_numpy(float).ravel()
+        drawn = np.concatenate([self.observations["value"].to_numpy(float), bars])
+        low, high = float(np.nanmin(drawn)), float(np.nanmax(drawn))
+        air = 0.05 * (high - low) or 1.0
+        return low - air, high + air

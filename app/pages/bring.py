@@ -1,0 +1,3 @@
+from app.stations import bring
+
+bring.show()

@@ -1,0 +1,3 @@
+from app.stations import lay_out
+
+lay_out.show()

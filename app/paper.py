@@ -1,0 +1,109 @@
+"""How sentences and tables are set on the page: small pieces of HTML in which every name is inert text."""
+
+import html
+from collections.abc import Iterable, Sequence
+from dataclasses import dataclass
+
+from app.look import Look
+
+
+@dataclass(frozen=True)
+class Sheet:
+    """A table as it is read: a heading for each column and rows of text, the first column naming the row."""
+
+    caption: str  # for someone who does not see the table
+    columns: Sequence[str]
+    rows: Sequence[Sequence[str]]
+    words: frozenset[int] = frozenset({0})  # columns of words, set to the left; the others are numbers, set to the right
+    foot: int = 0  # rows at the end that sum the others up
+
+
+def variables(look: Look) -> str:
+    """Return the style sheet that hands a look's colours to the page."""
+    colours = {name: getattr(look, name) for name in ("paper", "panel", "ink", "quiet", "rule", "accent")}
+    told = "".join(f"--{name}:{colour};" for name, colour in {**colours, "shade": look.shades[0], "deep": look.shades[1]}.items())
+    return f"<style>:root{{{told}}}</style>"
+
+
+def safe(text: object) -> str:
+    """Return text that no browser takes for markup."""
+    return html.escape(str(text))
+
+
+def heading(text: str, aside: str = "") -> str:
+    """Return the heading of a station, with a quieter part beside it."""
+    beside = f" <span class='aside'>{safe(aside)}</span>" if aside else ""
+    return f"<h1 class='station'>{safe(text)}{beside}</h1>"
+
+
+def question(text: str) -> str:
+    """Return the heading of one part of a station."""
+    return f"<h2 class='question'>{safe(text)}</h2>"
+
+
+def answer(sentence: str, statistic: str, decided: bool) -> str:
+    """Return one answer: the sentence, and beneath it the statistic."""
+    kind = "decided" if decided else "open"
+    return f"<section class='answer {kind}'><p class='sentence'>{safe(sentence)}</p><p class='statistic'>{safe(statistic)}</p></section>"
+
+
+def notice(sentence: str) -> str:
+    """Return a sentence that needs the user."""
+    return f"<p class='notice' role='alert'>{safe(sentence)}</p>"
+
+
+def caption(text: str) -> str:
+    """Return the small print of a figure or table."""
+    return f"<p class='caption'>{safe(text)}</p>"
+
+
+def text(sentence: str) -> str:
+    """Return a paragraph."""
+    return f"<p class='text'>{safe(sentence)}</p>"
+
+
+def bullets(sentences: Iterable[str]) -> str:
+    """Return sentences one below the other."""
+    return f"<ul class='bullets'>{''.join(f'<li>{safe(sentence)}</li>' for sentence in sentences)}</ul>"
+
+
+def empty(steps: Sequence[str]) -> str:
+    """Return the road ahead, for a page with nothing on it yet."""
+    told = "".join(f"<li><b>{safe(name)}</b>{safe(rest)}</li>" for name, _, rest in (step.partition(":") for step in steps))
+    return f"<ol class='road'>{told}</ol>"
+
+
+def story(boards: Iterable[tuple[str, str]]) -> str:
+    """Return the claims of a story in order, each with its line of evidence."""
+    told = "".join(f"<li><b>{safe(claim)}</b><span>{safe(evidence)}</span></li>" for claim, evidence in boards)
+    return f"<ol class='story'>{told}</ol>"
+
+
+def status(sentence: str) -> str:
+    """Return the words beside undo and redo."""
+    return f"<p class='status'>{safe(sentence)}</p>"
+
+
+def levels(factor: str, counts: Sequence[tuple[str, int]]) -> str:
+    """Return a factor's levels in their order, each with its count."""
+    told = "".join(f"<li>{safe(level)} <span>{count}</span></li>" for level, count in counts)
+    return f"<div class='levels'><h3>{safe(factor)}</h3><ul>{told}</ul></div>"
+
+
+def table(sheet: Sheet) -> str:
+    """Return a table with headings that a screen reader can follow."""
+    head = "".join(f"<th scope='col'{_side(sheet, k)}>{safe(name)}</th>" for k, name in enumerate(sheet.columns))
+    first_foot = len(sheet.rows) - sheet.foot
+    body = "".join(_row(sheet, row, k >= first_foot) for k, row in enumerate(sheet.rows))
+    inner = f"<caption>{safe(sheet.caption)}</caption><thead><tr>{head}</tr></thead><tbody>{body}</tbody>"
+    return f"<div class='sheet' tabindex='0' role='region' aria-label='{safe(sheet.caption)}'><table>{inner}</table></div>"
+
+
+def _row(sheet: Sheet, row: Sequence[str], is_foot: bool) -> str:
+    name, *cells = row
+    told = "".join(f"<td{_side(sheet, k)}>{safe(cell)}</td>" for k, cell in enumerate(cells, start=1))
+    return f"<tr{' class=foot' if is_foot else ''}><th scope='row'>{safe(name)}</th>{told}</tr>"
+
+
+def _side(sheet: Sheet, column: int) -> str:
+    return "" if column in sheet.words else " class='number'"

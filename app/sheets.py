@@ -1,0 +1,144 @@
+"""The tables of the screen: analysis of variance, cell means with margins, comparisons, influence, rows left out."""
+
+from collections.abc import Mapping, Sequence
+from typing import Any
+
+import numpy as np
+import pandas as pd
+
+from analysis.findings import Findings
+from analysis.rounding import NOT_KNOWN, fixed, measured, p_number, percent, significant
+from app import checks_told, records, tabled, words
+from app.paper import Sheet
+
+MOST_ROWS = 500  # of a table on screen; the workbook holds all
+MOST_CASES = 8  # observations listed as the most influential
+
+
+def anova(findings: Findings, table: pd.DataFrame) -> Sheet:
+    """Return one analysis of variance, a row for each question, with the share of variation and its interval."""
+    columns = (
+        "term",
+        "df",
+        "sum of squares",
+        "mean square",
+        "F",
+        "p",
+        "partial η²",
+        f"{percent(findings.study.confidence)} interval",
+        "partial ω²",
+    )
+    rows = [
+        (
+            str(r.term),
+            fixed(r.df, 0),
+            significant(r.ss, 5),
+            significant(r.ms, 4),
+            significant(r.f) if _known(r.f) else "",
+            p_number(r.p) if _known(r.f) else "",
+            fixed(r.partial_eta2, 2) if _known(r.f) else "",
+            f"{fixed(r.partial_eta2_lower, 2)} to {fixed(r.partial_eta2_upper, 2)}" if _known(r.f) else "",
+            fixed(r.partial_omega2, 2) if _known(r.f) else "",
+        )
+        for r in records.lines(table)
+    ]
+    return Sheet("Analysis of variance", columns, rows, foot=2)
+
+
+def _known(value: Any) -> bool:
+    return value is not None and bool(np.isfinite(value))
+
+
+def cell_means(findings: Findings) -> Sheet:
+    """Return estimates by row and column with their intervals, margins of equal weight at the ends, and the grand mean."""
+    design = findings.design
+    row, column = design["row_factor"], design["column_factor"]
+    by_cell = {(c.row, c.column): c for c in records.lines(findings.cells)}
+    margin = {factor: {m.level: m for m in records.lines(findings.marginal_means[factor])} for factor in (row, column)}
+    rows = [
+        (level, *(_estimate(by_cell[level, c]) for c in design["column_levels"]), _mean(margin[row][level]))
+        for level in design["row_levels"]
+    ]
+    spread = findings.marginal_means[row]["se"].min()
+    last = ("mean", *(_mean(margin[column][c]) for c in design["column_levels"]), measured(findings.effects["grand_mean"], spread))
+    return Sheet(
+        f"Cell means of {words.response_label(findings)} with {words.intervals(findings)}",
+        (f"{row} ╲ {column}", *design["column_levels"], "mean"),
+        (*rows, last),
+        foot=1,
+    )
+
+
+def _estimate(cell: Any) -> str:
+    return words.EMPTY if cell.n == 0 else words.with_interval(cell.estimate, cell.lower, cell.upper, cell.se)
+
+
+def _mean(level: Any) -> str:
+    return words.with_interval(level.mean, level.lower, level.upper, level.se) if level.estimable else NOT_KNOWN
+
+
+def comparisons(findings: Findings, family: str) -> Sheet:
+    """Return a family's differences with adjusted interval, adjusted p and what it says, in the order of the figure."""
+    frame = records.family(findings, family)
+    sliced = frame["within"].notna().any()
+    rows = [
+        (
+            tabled.pair(c.left, c.right, findings.observed.scale.tells_ratios),
+            *((str(c.within),) if sliced else ()),
+            tabled.size(c),
+            significant(c.t),
+            p_number(c.p),
+            p_number(c.p_adjusted),
+            words.VERDICTS[c.verdict],
+        )
+        for c in records.lines(frame.head(MOST_ROWS))
+    ]
+    columns = ("compared", *(("within",) if sliced else ()), tabled.difference_head(findings), "t", "p", "p adjusted", "reading")
+    return Sheet(
+        f"Comparisons, {words.family(family, findings.study.factors)}",
+        columns,
+        rows,
+        frozenset({0, len(columns) - 1} | ({1} if sliced else set())),
+    )
+
+
+def letters(findings: Findings, family: str) -> Sheet | None:
+    """Return the levels of a family with their letters, or None where there are none."""
+    found = None if findings.letters is None else findings.letters.get(family)
+    if not found:
+        return None
+    return Sheet("Letters: levels that share one are not decided to differ", ("level", "letters"), list(found.items()), frozenset({0, 1}))
+
+
+def influence(findings: Findings) -> Sheet | None:
+    """Return the observations that carry most of the answer, by Cook's distance; None where that is not defined."""
+    known = checks_told.influence(findings)
+    if known.empty:
+        return None
+    frame = known.nlargest(MOST_CASES, "cook")
+    columns = ("row", "fitted", "residual", "studentised", "leverage", "Cook")
+    spread = findings.fit["sigma"]
+    rows = [
+        (
+            str(c.row),
+            measured(c.fitted, spread),
+            measured(c.residual, spread),
+            fixed(c.student_external, 2),
+            fixed(c.leverage, 2),
+            significant(c.cook, 2),
+        )
+        for c in records.lines(frame)
+    ]
+    return Sheet("The most influential observations: row of the file, studentised residual, Cook’s distance", columns, rows)
+
+
+def left_out(entries: Sequence[Mapping[str, Any]]) -> Sheet:
+    """Return the rows that take no part, each with its reason."""
+    rows = [(str(entry["row"]), str(entry["why"])) for entry in entries[:MOST_ROWS]]
+    return Sheet("Rows left out", ("row of the file", "reason"), rows, frozenset({0, 1}))
+
+
+def preview(frame: pd.DataFrame) -> Sheet:
+    """Return the first rows as they were read, each with its number in the file."""
+    rows = [(str(number), *row) for number, row in zip(frame.index, frame.itertuples(index=False), strict=True)]
+    return Sheet("First rows as read", ("row", *(str(name) for name in frame.columns)), rows, frozenset(range(len(frame.columns) + 1)))

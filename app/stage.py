@@ -1,0 +1,45 @@
+"""What all stations share: the open findings or the sentence that stands in their place, figures with caption and description."""
+
+import plotly.graph_objects as go
+import streamlit as st
+
+from analysis.findings import Findings
+from analysis.refusals import Refusal
+from app import desk, look, paper, words
+
+PLAIN = {"displayModeBar": False}
+WITH_CAMERA = {"displayModeBar": True, "displaylogo": False, "modeBarButtons": [["toImage"]]}
+
+
+def at_hand() -> look.Look:
+    """Return the look that suits the browser's light or dark theme."""
+    return look.NIGHT if st.context.theme.type == "dark" else look.DESK
+
+
+def findings(title: str) -> Findings | None:
+    """Return the open findings; where there are none, show the station's title and the one thing to do next."""
+    found = desk.findings()
+    if isinstance(found, Findings):
+        return found
+    st.html(paper.heading(title))
+    if isinstance(found, Refusal):
+        st.html(paper.notice(str(found)))
+        st.page_link("pages/lay_out.py", label=words.TO_LAY_OUT, icon=":material/arrow_back:")
+    else:
+        st.html(paper.text(words.NOTHING_OPEN))
+        st.page_link("pages/bring.py", label=words.TO_BRING, icon=":material/arrow_back:")
+    return None
+
+
+def complaint() -> None:
+    """Show why the last file or choice was not taken, until something is taken again."""
+    sentence = desk.complaint()
+    if sentence:
+        st.html(paper.notice(sentence))
+
+
+def figure(drawn: go.Figure, key: str, caption: str, alt: str, camera: bool = False) -> None:
+    """Show a figure with its description for screen readers and its caption beneath; with a camera it can be saved from where it stands."""
+    st.plotly_chart(drawn, key=key, theme=None, width="stretch", config=WITH_CAMERA if camera else PLAIN, alt=alt)
+    if caption:
+        st.html(paper.caption(caption))

@@ -1,0 +1,266 @@
+"""The words of the screen, each in one place: names of choices, labels of columns, and short phrases about a study."""
+
+from collections.abc import Mapping, Sequence
+from types import MappingProxyType
+from typing import Any
+
+import numpy as np
+from numpy.typing import NDArray
+
+from analysis.adjustments import ADJUSTMENTS
+from analysis.findings import Findings
+from analysis.rounding import decimals_for, fixed, measured, percent, significant
+from analysis.study import Study
+from app import records
+
+EMPTY = "empty"
+NONE = "none"
+MODELS: Mapping[str, str] = MappingProxyType({"full": "With interaction", "additive": "Without"})
+SCALES: Mapping[str, str] = MappingProxyType({"none": "As measured", "log": "Logarithm", "sqrt": "Square root", "reciprocal": "Reciprocal"})
+CONFIDENCES = (0.90, 0.95, 0.99)
+MODEL, SCALE, CONFIDENCE, MATTERS = "Model", "Scale", "Confidence", "Difference that matters"
+MATTERS_HELP = (
+    "The smallest difference that matters, in units of the response. With it, a small difference can be told from an open question."
+)
+NOT_GIVEN = "not given"
+ADJUST, FAMILY, LETTERS = "Adjusted by", "What is compared", "Letters for a figure or table"
+DROP, SAMPLE = "Drop a file here or browse for one", "Or look around with an invented experiment"
+CHOOSE = "choose a column"
+ROLES: Mapping[str, str] = MappingProxyType(
+    {
+        "response": "What was measured",
+        "row_factor": "First factor",
+        "column_factor": "Second factor",
+        "block": "Block, if any",
+        "unit": "Unit, if measured more than once",
+    }
+)
+ROLE_MEANS: Mapping[str, str] = MappingProxyType(
+    {
+        "response": "a column of numbers",
+        "row_factor": "drawn as rows and as lines",
+        "column_factor": "drawn as columns and along the axis",
+        "block": "a bench, a day, a batch: allowed for, not tested",
+        "unit": "readings of one unit are averaged before anything else",
+    }
+)
+CHOSEN = "chosen by you"
+NOTHING_OPEN = "There is no table yet."
+TO_BRING, TO_LAY_OUT = "Bring one", "Choose columns at Lay out"
+NOTHING_DECIDED = "Nothing: the file could be read in one way only."
+NO_ADDITIVE = "The model without interaction leaves no residual here."
+ADDITIVE_TABLE = "The model without interaction: what the interaction would explain is counted as chance. Type II sums of squares."
+FAMILY_TOO_LARGE = "This family holds too many comparisons to be written out; compare within one factor instead."
+FAMILY_EMPTY = "There is nothing to compare in this family."
+WHAT_FOLLOWS = (
+    "Bring: a table from a spreadsheet or a text file.",
+    "Lay out: say which column was measured and which two were varied.",
+    "Answer: does each factor matter, and does one depend on the other?",
+    "Compare: which differ, and by how much.",
+    "Doubt: whether the numbers may be believed.",
+    "Tell: slides, figures and tables to take away.",
+)
+VERDICTS: Mapping[str, str] = MappingProxyType(
+    {
+        "larger_than_matters": "larger than matters",
+        "differs": "differs",
+        "differs_but_small": "differs, but too little to matter",
+        "no_difference_that_matters": "no difference that matters",
+        "undecided": "undecided",
+    }
+)
+COLUMNS: Mapping[str, str] = MappingProxyType(
+    {
+        "ss": "sum of squares", "ms": "mean square", "f": "F", "partial_eta2": "partial η²", "partial_omega2": "partial ω²", "se": "s.e.",
+        "p_adjusted": "p adjusted", "verdict": "reading", "student_external": "studentised residual", "cook": "Cook’s distance",
+    }
+)  # fmt: skip
+TABLES: Mapping[str, str] = MappingProxyType(
+    {"type_1": "Type I", "type_1_column_first": "Type I", "type_2": "Type II", "type_3": "Type III"}
+)
+POINT_HOVER = "%{customdata[0]} · %{customdata[1]}<br>%{y}<br>row %{customdata[2]} of the file<extra></extra>"
+
+
+def mean_hover(confidence: float) -> str:
+    """Return what hovering over a mean tells."""
+    return (
+        "%{customdata[0]} · %{customdata[1]}<br>mean %{customdata[2]}, n %{customdata[5]}"
+        f"<br>{percent(confidence)} interval %{{customdata[3]}} to %{{customdata[4]}}<extra></extra>"
+    )
+
+
+def response_label(findings: Findings) -> str:
+    """Return the response with its unit and the scale it is analysed on, as an axis names it."""
+    study = findings.study
+    unit = unit_of(study)
+    scale = "" if study.scale == "none" else f", {scale_name(study.scale).lower()}"
+    return f"{study.response}{f' ({unit})' if unit else ''}{scale}"
+
+
+def unit_of(study: Study) -> str | None:
+    """Return the unit of the response, None where the file names none or the name of the column already does."""
+    unit = study.table.column(str(study.response)).unit
+    return None if unit is None or unit in str(study.response) else unit
+
+
+def scale_name(scale: str) -> str:
+    """Return what a scale is called."""
+    return SCALES.get(scale, scale.replace("power=", "power "))
+
+
+def unit_word(findings: Findings) -> str:
+    """Return what one analysed value is."""
+    return "observation" if findings.study.unit is None else f"mean of one {findings.study.unit}"
+
+
+def units_word(findings: Findings) -> str:
+    """Return what several analysed values are."""
+    return "observations" if findings.study.unit is None else f"means, one for each {findings.study.unit}"
+
+
+def of_model(findings: Findings) -> str:
+    """Return the words that tell a means' model where it is not the plain cell means."""
+    if findings.study.model == "additive":
+        return " of the model without interaction"
+    return "" if findings.study.block is None else f", averaged over {findings.study.block} with equal weight,"
+
+
+def intervals(findings: Findings) -> str:
+    """Return what the bars are."""
+    return f"{percent(findings.study.confidence)} confidence intervals"
+
+
+def n_per_cell(findings: Findings) -> str:
+    """Return how many values the filled cells hold."""
+    filled = findings.cells["n"][findings.cells["n"] > 0]
+    low, high = int(filled.min()), int(filled.max())
+    return f"n = {low} in each cell" if low == high else f"n = {low} to {high} in a cell"
+
+
+def with_interval(value: float, lower: float, upper: float, se: float) -> str:
+    """Return a number with its interval, all with the digits that its standard error supports."""
+    return f"{measured(value, se)} ({measured(lower, se)} to {measured(upper, se)})"
+
+
+def spread(sd: float | None, se: float | None) -> str:
+    """Return a standard deviation with one digit more than the mean it stands beside, or nothing where it is not defined."""
+    return "" if sd is None or not np.isfinite(sd) else fixed(sd, decimals_for(sd if se is None or not np.isfinite(se) else se))
+
+
+def count_word(n: int, counts: NDArray[np.int_]) -> str:
+    """Return what a cell's count needs said beside it."""
+    if n == 0:
+        return EMPTY
+    if n == 1:
+        return "single"
+    filled = counts[counts > 0]
+    if filled.min() == filled.max():
+        return ""
+    return {int(filled.min()): "fewest", int(filled.max()): "most"}.get(n, "")
+
+
+def cell_name(cell: object) -> str:
+    """Return the name of one side of a comparison: a level, or the two levels of a cell."""
+    return str(cell) if isinstance(cell, str) else ", ".join(str(part) for part in cell)  # type: ignore[attr-defined]
+
+
+def family(name: str, factors: Sequence[str]) -> str:
+    """Return which question a family of comparisons asks."""
+    row, column = factors
+    questions = {
+        row: f"{row}, averaged over {column}",
+        column: f"{column}, averaged over {row}",
+        f"{row} within {column}": f"{row}, within each {column}",
+        f"{column} within {row}": f"{column}, within each {row}",
+        "cells": "every combination with every other",
+    }
+    return questions.get(name, name)
+
+
+def statistic(f: float, df1: float, df2: float) -> str:
+    """Return an F as it is told in a sentence."""
+    return f"F({fixed(df1, 0)}, {fixed(df2, 0)}) = {significant(f)}"
+
+
+def literal(text: Any) -> str:
+    """Return text that Streamlit's Markdown shows as it is."""
+    return "".join(f"\\{letter}" if letter in "\\`*_{}[]()#+-.!|$:~<>^=" else letter for letter in str(text))
+
+
+def adjusted_by(findings: Findings) -> str:
+    """Return how p-values and intervals are adjusted, in words."""
+    return ADJUSTMENTS[findings.study.adjust].word
+
+
+def family_size(findings: Findings, name: str) -> str:
+    """Return how many comparisons are adjusted together."""
+    sizes = records.family(findings, name)["family_size"]
+    each = " in each slice" if " within " in name and name not in findings.study.factors else ""
+    counts = sorted({int(size) for size in sizes})
+    return f"{' or '.join(str(c) for c in counts)} comparison{'' if counts == [1] else 's'}{each}"
+
+
+def counted(count: int, thing: str) -> str:
+    """Return a count with its noun."""
+    return f"{fixed(count, 0)} {thing}{'' if count == 1 else 's'}"
+
+
+def percent_told(share: float) -> str:
+    """Return a share as percent, with decimals only where it needs them."""
+    return f"{share * 100:g} %"
+
+
+def open_table(study: Study | None) -> str:
+    """Return which table is open."""
+    return "" if study is None else f"{study.table.name} · {counted(study.table.rows, 'row')}"
+
+
+def rows_shown(shown: int, rows: int, columns: int) -> str:
+    """Return how much of a table a preview shows."""
+    return f"{'All' if shown == rows else f'The first {shown} of'} {counted(rows, 'row')}, {counted(columns, 'column')}."
+
+
+def reckoning(analysed: int | None, left_out: int) -> str:
+    """Return the account of the rows: each one is analysed or left out."""
+    if analysed is None:
+        return f"{counted(left_out, 'row')} left out so far; the full account follows once the columns have their roles."
+    return f"{counted(analysed + left_out, 'row')} in the file: {fixed(analysed, 0)} analysed, {fixed(left_out, 0)} left out."
+
+
+def layout_sentence(findings: Findings) -> str:
+    """Return the size of the design in words."""
+    design = findings.design
+    rows = f"{len(design['row_levels'])} levels of {design['row_factor']}"
+    columns = f"{len(design['column_levels'])} of {design['column_factor']}"
+    return f"{rows} × {columns}, {counted(len(findings.observations), 'observation')}"
+
+
+def balance(findings: Findings) -> str:
+    """Return whether the cells are filled alike."""
+    design = findings.design
+    if design["empty_cells"]:
+        empty = [f"{row} with {column}" for row, column in design["empty_cells"]]
+        named = "; ".join(empty[:4]) + ("" if len(empty) <= 4 else f" and {len(empty) - 4} more")
+        return f"{counted(len(empty), 'combination')} without an observation: {named}. What can still be answered is answered."
+    if design["balanced"]:
+        return f"Balanced: {n_per_cell(findings)}, so every way of splitting the sums of squares agrees."
+    return f"Every combination was observed, but not equally often: {n_per_cell(findings)}."
+
+
+def margins(findings: Findings) -> str:
+    """Return what stands in the table of cell means."""
+    return (
+        f"Estimates of the model with {intervals(findings)}. The margins give every combination the same weight; "
+        "with unequal cells they differ from the plain averages of the observations."
+    )
+
+
+def table_used(findings: Findings) -> str:
+    """Return which sums of squares the table holds, and why."""
+    fit = f"Residual standard deviation {significant(findings.fit['sigma'])}, R² {percent(findings.fit['r2'])}."
+    return f"{TABLES[findings.used['table']]} sums of squares. {findings.used['why']} {fit}"
+
+
+def family_told(findings: Findings, name: str) -> str:
+    """Return how many comparisons a family holds and how they are adjusted."""
+    return f"{family_size(findings, name)}, adjusted together ({adjusted_by(findings)})"
