@@ -10,6 +10,7 @@ from types import MappingProxyType
 import numpy as np
 
 from analysis import refusals
+from analysis.reading import words
 from analysis.table import Codes, Column, Levels, Response, Table
 
 _SAMPLE = 5000  # rows looked at before a long column is read as a whole
@@ -22,11 +23,6 @@ _UNIT = re.compile(
 )
 _ORDER = re.compile(
     r"\b(order|sequence|row|position|no|nr|number|index|obs|observation|leaf|leaves|reading|subsample|technical|time)\b", re.IGNORECASE
-)
-_RESPONSE = re.compile(
-    r"\b(yield|response|y|value|weight|mass|height|length|count|score|growth|conc\w*|rate|result|measure\w*|outcome|biomass|gain|"
-    r"strength|activity|absorbance|od|survival|loss|content|ratio|area|volume|diameter|width|titre|titer)\b",
-    re.IGNORECASE,
 )
 
 
@@ -131,7 +127,7 @@ def _response_score(look: Look) -> float:
     if look.response is None:
         return -9.0
     score = 2.0 * min(1.0, look.count / max(1, look.rows)) + 1.5 * look.has_decimals + 0.1 * look.place
-    score += 1.5 * (look.named(_RESPONSE) or look.column.unit is not None)
+    score += 1.5 * (look.named(words.MEASURED) or look.column.unit is not None)
     score -= 2.0 * (look.named(_BLOCK) or look.named(_UNIT) or look.named(_ORDER))
     return score - 3.0 * look.is_running_number - 2.0 * (look.could_be_factor and look.is_balanced)
 
@@ -198,7 +194,7 @@ def _reasons(response: Look | None, factors: Sequence[Look], block: Look | None,
     reasons: dict[str, str] = {}
     if response is not None:
         what = "decimal numbers" if response.has_decimals else "numbers"
-        named = ", named like a measurement" if response.named(_RESPONSE) else ""
+        named = ", named like a measurement" if response.named(words.MEASURED) else ""
         reasons[response.column.name] = f"{what}, {response.count} different{named}"
     for look in factors:
         kind = "numbers" if look.levels.amounts is not None else "levels"

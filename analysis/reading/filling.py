@@ -10,10 +10,10 @@ from analysis.reading import footers
 from analysis.reading.records import Span
 from analysis.table import Rows
 
-Source = npt.NDArray[np.intp]
+Fill = npt.NDArray[np.intp] | None  # for each row, the row whose cell stands for it
 
 
-def by_merged(column: int, rows: Rows, spans: Sequence[Span]) -> Source | None:
+def by_merged(column: int, rows: Rows, spans: Sequence[Span]) -> Fill:
     """For each row, the row whose cell covers it by a merged range of this column; None where no range does."""
     source = np.arange(rows.size, dtype=np.intp)
     for span in spans:
@@ -24,7 +24,7 @@ def by_merged(column: int, rows: Rows, spans: Sequence[Span]) -> Source | None:
     return source if (source != np.arange(rows.size)).any() else None
 
 
-def by_blocks(texts: pa.StringArray) -> Source | None:
+def by_blocks(texts: pa.StringArray) -> Fill:
     """For each row, the row that names its block, where every block starts with its level and leaves the rest blank.
 
     None where a row that stands alone, or a blank first row, shows that blanks are simply empty.

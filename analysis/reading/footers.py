@@ -73,7 +73,7 @@ def taken(body: Body, kept: Mask) -> Body:
     chosen = pa.array(kept)
     columns = tuple(column.filter(chosen) for column in body.columns)
     numbers = tuple(None if values is None else values[kept] for values in body.numbers)
-    return Body(columns, body.rows[kept], numbers, body.units)
+    return Body(columns, body.rows[kept], numbers, body.units, body.dates)
 
 
 def _all_blank(body: Body, first: int) -> Mask:

@@ -7,10 +7,10 @@ import pandas as pd
 
 from analysis import refusals
 from analysis.reading import names, value_cells
-from analysis.table import Column, Decision, Table
+from analysis.table import Column, Table
 
 
-def read(frame: pd.DataFrame, name: str, decisions: tuple[Decision, ...] = ()) -> Table:
+def read(frame: pd.DataFrame, name: str) -> Table:
     """Take a frame as a table; later changes of the frame do not reach it.
 
     Raises EmptyFile without columns, HeaderWithoutRows without rows, NoNumericColumn where no column holds numbers.
@@ -25,7 +25,7 @@ def read(frame: pd.DataFrame, name: str, decisions: tuple[Decision, ...] = ()) -
     if not any(_holds_numbers(column) for column in columns):
         raise refusals.NoNumericColumn(len(columns), len(frame))
     rows = np.arange(1, len(frame) + 1, dtype=np.int64)
-    return Table(name, columns, rows, (), (*decisions, *naming), fingerprint(columns))
+    return Table(name, columns, rows, (), naming, fingerprint(columns))
 
 
 def _name(label: object) -> str:

@@ -36,8 +36,8 @@ class Heading:
         return tuple(f"{over} {under}".strip() for over, under in zip(self.spanning, self.cells, strict=True))
 
 
-def find(head: Sequence[Record], found: Found) -> Heading:
-    """Find the header among the first records of a file; raises HeaderWithoutRows and EmptyFile."""
+def find(head: Sequence[Record], found: Found, layout: str = "auto") -> Heading:
+    """Find the header among the first records of a file, which a grid always has; raises HeaderWithoutRows and EmptyFile."""
     places = [index for index, record in enumerate(head) if record.filled]
     if not places:
         raise refusals.EmptyFile()
@@ -46,6 +46,8 @@ def find(head: Sequence[Record], found: Found) -> Heading:
     if not places:
         raise refusals.HeaderWithoutRows(())
     at = _header_place(head, places)
+    if at is None and layout == "grid":
+        at = places[0]
     if at is None:
         return _without_header(head, places, remarks)
     return _with_header(head, places, at, found.spans, remarks)

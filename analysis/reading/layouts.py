@@ -7,34 +7,61 @@ import numpy as np
 import pyarrow as pa
 
 from analysis import refusals
-from analysis.reading import filling, footers, headers, names, numerals, spaces
+from analysis.reading import filling, footers, grids, headers, names, numerals, spaces
+from analysis.reading.filling import Fill
 from analysis.reading.headers import Heading
 from analysis.reading.records import Body, Found, Source
 from analysis.reading.text_cells import TextCells
+from analysis.reading.value_cells import NumberCells
 from analysis.reading.words import counted, several
 from analysis.table import Column, Decision, Table
 
 _SAMPLE = 5000  # cells of a column looked at before it is searched as a whole for a number
 
 
-def read(source: Source, name: str, layout: str, fingerprint: str) -> Table:
+def read(source: Source, name: str, layout: str, decisions: tuple[Decision, ...], fingerprint: str) -> Table:
     """Turn a file of text or a sheet into a table; raises a refusal where it holds none."""
-    heading = headers.find(source.head, source.found)
+    heading = headers.find(source.head, source.found, layout)
     cleaned = footers.clean(source.body(heading.start, heading.width))
     if not cleaned.body.rows.size:
         raise refusals.HeaderWithoutRows(heading.joined())
     heading, body, places = _without_blank_columns(heading, cleaned.body)
     _refuse_without_numbers(body)
-    decisions = (*source.found.decisions, *heading.decisions, *cleaned.decisions)
+    fills = tuple(_fill(body, index, place, source.found) for index, place in enumerate(places))
+    decisions = (*decisions, *source.found.decisions, *heading.decisions, *cleaned.decisions)
+    account = Table(name, (), body.rows, cleaned.left_out, decisions, fingerprint)
+    return _in_layout(heading, body, fills, source.found, layout, account)
+
+
+def _in_layout(heading: Heading, body: Body, fills: tuple[Fill, ...], found: Found, layout: str, account: Table) -> Table:
+    """Complete the account of a table with its columns, in rows or as a grid turned into rows."""
+    grid = grids.find(heading, body, fills, layout)
+    if grid is not None:
+        labels, naming = names.distinct(grid.names)
+        columns = _columns(labels, grid.body, (None,) * len(labels), found)
+        decisions = (*account.decisions, *grid.decisions, *_filled(labels[:1], fills[:1]))
+        return replace(account, columns=columns, file_rows=grid.body.rows, decisions=(*decisions, *naming))
     labels, naming = names.distinct(heading.joined())
-    fills = [_fill(body, index, place, source.found) for index, place in enumerate(places)]
-    filled = _filled_decision([label for label, fill in zip(labels, fills, strict=True) if fill is not None])
-    units = [unit or given for unit, given in zip(heading.units, body.units, strict=True)]
-    columns = tuple(
-        Column(label, TextCells(label, texts, body.rows, numbers, unit, source.found.comma_separated, fill))
-        for label, texts, numbers, unit, fill in zip(labels, body.columns, body.numbers, units, fills, strict=True)
+    body = replace(body, units=tuple(above or given for above, given in zip(heading.units, body.units, strict=True)))
+    decisions = (*account.decisions, *naming, *_filled(labels, fills), *_dates(labels, body))
+    return replace(account, columns=_columns(labels, body, fills, found), decisions=decisions)
+
+
+def _columns(labels: Sequence[str], body: Body, fills: Sequence[Fill], found: Found) -> tuple[Column, ...]:
+    parts = zip(labels, body.columns, body.numbers, body.units, fills, strict=True)
+    return tuple(
+        Column(label, TextCells(label, texts, body.rows, numbers, unit, found.comma_separated, fill))
+        for label, texts, numbers, unit, fill in parts
     )
-    return Table(name, columns, body.rows, cleaned.left_out, (*decisions, *naming, *filled), fingerprint)
+
+
+def as_grid(table: Table) -> Table:
+    """Read the columns of a frame or a Parquet file as a grid; left as it is where it cannot be one."""
+    texts = tuple(pa.array(column.text(0, table.rows), pa.string()) for column in table.columns)
+    numbers = tuple(column.cells.floats if isinstance(column.cells, NumberCells) else None for column in table.columns)
+    nothing: tuple[None, ...] = (None,) * len(texts)
+    heading = Heading(table.names, None, nothing, 0, 0, ())
+    return _in_layout(heading, Body(texts, table.file_rows, numbers, nothing), nothing, Found(), "grid", table)
 
 
 def _without_blank_columns(heading: Heading, body: Body) -> tuple[Heading, Body, tuple[int, ...]]:
@@ -53,7 +80,8 @@ def _without_blank_columns(heading: Heading, body: Body) -> tuple[Heading, Body,
 def _with_columns(body: Body, kept: Sequence[int]) -> Body:
     """A body with these of its columns."""
     columns, numbers = tuple(body.columns[i] for i in kept), tuple(body.numbers[i] for i in kept)
-    return Body(columns, body.rows, numbers, tuple(body.units[i] for i in kept))
+    dates = tuple(body.dates[i] for i in kept) if body.dates else ()
+    return Body(columns, body.rows, numbers, tuple(body.units[i] for i in kept), dates)
 
 
 def _refuse_without_numbers(body: Body) -> None:
@@ -71,14 +99,26 @@ def _any_number(texts: pa.StringArray) -> bool:
     return any(numerals.find(spaces.tidy(text)) is not None for text in texts.unique().to_pylist())
 
 
-def _fill(body: Body, index: int, place: int, found: Found) -> np.ndarray[tuple[int], np.dtype[np.intp]] | None:
+def _fill(body: Body, index: int, place: int, found: Found) -> Fill:
     """From which row each row takes its level, where the column is written once above several rows."""
     merged = filling.by_merged(place, body.rows, found.spans)
     return merged if merged is not None else filling.by_blocks(body.columns[index])
 
 
-def _filled_decision(labels: Sequence[str]) -> tuple[Decision, ...]:
-    if not labels:
+def _filled(labels: Sequence[str], fills: Sequence[Fill]) -> tuple[Decision, ...]:
+    named = [label for label, fill in zip(labels, fills, strict=True) if fill is not None]
+    if not named:
         return ()
-    word = "Column" if len(labels) == 1 else "Columns"
-    return (Decision("fill", f"{word} {several(labels)}: a level written once above several rows was filled down."),)
+    word = "Column" if len(named) == 1 else "Columns"
+    return (Decision("fill", f"{word} {several(named)}: a level written once above several rows was filled down."),)
+
+
+def _dates(labels: Sequence[str], body: Body) -> tuple[Decision, ...]:
+    """A spreadsheet turns levels such as 1-2 into dates: told where a column holds dates beside other things."""
+    mixed = []
+    for label, texts, rows in zip(labels, body.columns, body.dates, strict=False):
+        rows = tuple(row for row in rows if row in set(body.rows.tolist()))
+        if 0 < len(rows) < int((~footers.blank_cells(texts)).sum()):
+            told = f"Column “{label}” holds dates among other cells ({refusals.rows_told(rows)})"
+            mixed.append(Decision("dates", f"{told}; a spreadsheet may have made them from levels such as 1-2."))
+    return tuple(mixed)

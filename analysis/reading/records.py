@@ -42,6 +42,7 @@ class Body:
     rows: Rows
     numbers: tuple[Floats | None, ...]  # the values of number cells, where the file holds values and not text
     units: tuple[str | None, ...]
+    dates: tuple[tuple[int, ...], ...] = ()  # rows of the file with dates in them, where the file tells dates from text
 
 
 @dataclass(frozen=True)

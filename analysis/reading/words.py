@@ -1,6 +1,16 @@
-"""How the reader's notes name rows, levels and counts."""
+"""How the reader's notes name things, and what the names of columns speak of."""
 
+import re
 from collections.abc import Sequence
+
+MEASURED = re.compile(  # names that speak of a measurement
+    r"\b(yield|response|y|value|weight|mass|height|length|count|score|growth|conc\w*|rate|result|measure\w*|outcome|biomass|gain|"
+    r"strength|activity|absorbance|od|survival|loss|content|ratio|area|volume|diameter|width|titre|titer)\b",
+    re.IGNORECASE,
+)
+NUMBERED_THING = re.compile(  # names that count repetitions
+    r"(rep|reps|replicate|replication|repeat|block|blk|plot|pot|plant|sample|run|no|nr|n|id|batch)\.?", re.IGNORECASE
+)
 
 
 def several(items: Sequence[str], most: int = 4) -> str:

@@ -1,0 +1,84 @@
+"""How far a zip archive may unpack, and how its parts are read without trusting what it says about itself."""
+
+import io
+import zipfile
+import zlib
+from xml.parsers import expat
+
+from analysis import refusals
+
+UNPACKED = 512 * 2**20  # bytes, the limit for a whole workbook
+_MOST_ENTRIES = 10_000
+_DEFLATE_RATIO = 1032  # no deflate stream unpacks to more than so many times its size
+_STEP = 1 << 20
+_FAULTS = (zipfile.BadZipFile, zlib.error, OSError, ValueError, NotImplementedError, RuntimeError, EOFError, KeyError)
+
+
+def check(data: bytes) -> None:
+    """Turn down an archive that unpacks beyond the limit, is encrypted, or is damaged; its own word for its sizes is checked."""
+    try:
+        with zipfile.ZipFile(io.BytesIO(data)) as archive:
+            entries = archive.infolist()
+            if any(entry.flag_bits & 1 for entry in entries):
+                raise refusals.Encrypted()
+            if sum(entry.file_size for entry in entries) > UNPACKED or len(entries) > _MOST_ENTRIES:
+                raise refusals.UnpacksTooLarge(UNPACKED)
+            if sum(entry.compress_size for entry in entries) * _DEFLATE_RATIO > UNPACKED:
+                _measure(data, entries)
+            if "META-INF/manifest.xml" in archive.namelist() and b"encryption-data" in archive.read("META-INF/manifest.xml"):
+                raise refusals.Encrypted()
+    except _FAULTS as error:
+        raise refusals.DamagedFile("workbook") from error
+
+
+def _measure(data: bytes, entries: list[zipfile.ZipInfo]) -> None:
+    """Unpack every part, step by step and keeping nothing, until the limit is passed."""
+    total = 0
+    for entry in entries:
+        start = entry.header_offset + 30 + sum(data[entry.header_offset + at] + 256 * data[entry.header_offset + at + 1] for at in (26, 28))
+        packed = data[start : start + entry.compress_size]
+        if entry.compress_type == zipfile.ZIP_STORED:
+            total += len(packed)
+        elif entry.compress_type == zipfile.ZIP_DEFLATED:
+            total = _unpacked(packed, total)
+        else:
+            raise refusals.DamagedFile("workbook")
+        if total > UNPACKED:
+            raise refusals.UnpacksTooLarge(UNPACKED)
+
+
+def _unpacked(packed: bytes, total: int) -> int:
+    inflater = zlib.decompressobj(-15)
+    while packed and not inflater.eof and total <= UNPACKED:
+        total += len(inflater.decompress(packed, _STEP))
+        packed = inflater.unconsumed_tail
+    return total
+
+
+def part(data: bytes, name: str) -> bytes:
+    """Return one part of an archive, b"" where it has none of that name (capitals aside)."""
+    try:
+        with zipfile.ZipFile(io.BytesIO(data)) as archive:
+            names = {known.lower(): known for known in archive.namelist()}
+            known = names.get(name.lower())
+            return archive.read(known) if known is not None else b""
+    except _FAULTS as error:
+        raise refusals.DamagedFile("workbook") from error
+
+
+def parse(xml: bytes, parser: expat.XMLParserType) -> None:
+    """Run a parser with its handlers over a part; a document type, which no workbook needs, is turned down with damage."""
+    parser.StartDoctypeDeclHandler = _refuse_doctype
+    try:
+        parser.Parse(xml, True)
+    except expat.ExpatError as error:
+        raise refusals.DamagedFile("workbook") from error
+
+
+def _refuse_doctype(*_: object) -> None:
+    raise refusals.DamagedFile("workbook")
+
+
+def local(name: str) -> str:
+    """The name of an element without its namespace prefix."""
+    return name.rpartition(":")[2]
