@@ -13,7 +13,8 @@ EXPECTED = {
     "the order turns": (
         (
             "differs",
-            "Yes: what feed does depends on soil, and the order of the levels of feed and of soil changes: from none to full dose yield changes by +8.00 with dry and −8.00 with moist.",
+            "Yes: what feed does depends on soil, and the order of the levels of feed and of soil changes:"
+            " from none to full dose yield changes by +8.00 with dry and −8.00 with moist.",
         ),
         ("differs", "Soil matters with none and full dose; with half dose no difference is shown."),
         ("differs", "Feed matters at every level of soil, and not by the same amount."),
