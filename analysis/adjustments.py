@@ -1,4 +1,4 @@
-"""How p-values and intervals are adjusted for the number of comparisons in a family."""
+"""How p-values and intervals of one family of comparisons are adjusted for its size."""
 
 from collections.abc import Callable, Mapping
 from dataclasses import dataclass
@@ -10,105 +10,122 @@ from scipy import stats
 
 from analysis.distributions import dunnett, studentized_range
 
-Vector = NDArray[np.float64]
-ROOT_TWO = float(np.sqrt(2.0))
+Floats = NDArray[np.float64]
 
 
 @dataclass(frozen=True, eq=False)
 class Family:
     """The comparisons that are adjusted together."""
 
-    t: Vector  # (m,) t statistics, signed
-    df: float  # residual degrees of freedom
-    means: int  # how many means the family compares
-    dimension: int  # of the contrasts that the family spans
-    correlation: NDArray[np.float64] | None  # (m, m) of the estimates, where the method needs it
+    t: Floats  # (m,) differences over their standard errors, signed; NaN for one that cannot be estimated
+    df: float  # residual degrees of freedom, infinity allowed
+    means: int  # how many means are compared
+    dimension: int  # of the space that the contrasts span
+    correlation: Floats | None  # (m, m) of the differences, needed for comparisons with a control
     confidence: float
 
     @property
+    def size(self) -> int:
+        """How many comparisons there are; those that cannot be estimated do not count."""
+        return int(np.count_nonzero(~np.isnan(self.t)))
+
+    @property
     def alpha(self) -> float:
-        """The error rate that the family as a whole may have."""
-        return 1.0 - self.confidence
-
-    def p(self) -> Vector:
-        """Two-sided p-values of the comparisons one by one."""
-        return np.asarray(2.0 * stats.t.sf(np.abs(self.t), self.df))
-
-    def single(self, alpha: float) -> float:
-        """The two-sided t quantile at this error rate."""
-        return float(stats.t.isf(alpha / 2.0, self.df))
+        return 1 - self.confidence
 
 
 @dataclass(frozen=True, eq=False)
 class Adjusted:
-    """Adjusted p-values, and the multiple of the standard error that reaches to the ends of the adjusted intervals."""
+    """What the adjustment makes of a family."""
 
-    p: Vector
-    critical: float
+    p: Floats  # (m,) adjusted p-values, NaN where t is
+    critical: float  # the adjusted interval is difference ± critical × standard error
 
 
 @dataclass(frozen=True)
 class Adjustment:
-    """One method: how it is called in a sentence, its source, and the function."""
+    """A method of adjustment: its word, where it comes from, and its function."""
 
     word: str
     source: str
     adjust: Callable[[Family], Adjusted]
 
 
-def holm_steps(p: Vector) -> Vector:
-    """Return Holm's step-down p-values; NaN stays NaN and does not count. Source: Holm (1979), Scand. J. Statist. 6, 65-70."""
-    adjusted = np.full(p.size, np.nan)
-    known = np.flatnonzero(np.isfinite(p))
-    order = known[np.argsort(p[known], kind="stable")]
-    if order.size:
-        steps = p[order] * np.arange(order.size, 0, -1)
-        adjusted[order] = np.minimum(np.maximum.accumulate(steps), 1.0)
-    return adjusted
+def single_step(family: Family, p: Floats, critical: float) -> Adjusted:
+    """Return p and critical value, with p on that side of alpha on which |t| lies of the critical value.
+
+    Both come from one distribution; where |t| meets the critical value to the last digits, rounding must not let the p-value
+    decide what the interval does not.
+    """
+    outside = np.abs(family.t) > critical
+    p = np.where(outside, np.minimum(p, np.nextafter(family.alpha, 0.0)), np.maximum(p, family.alpha))
+    return Adjusted(np.where(np.isnan(family.t), np.nan, np.minimum(p, 1.0)), float(critical))
 
 
-def _tukey(family: Family) -> Adjusted:
-    p = studentized_range.sf(np.abs(family.t) * ROOT_TWO, family.means, family.df)
-    return Adjusted(p, studentized_range.ppf_upper(family.alpha, family.means, family.df) / ROOT_TWO)
+def unadjusted(family: Family) -> Adjusted:
+    return single_step(family, _p(family), stats.t.isf(family.alpha / 2, family.df))
 
 
-def _holm(family: Family) -> Adjusted:
-    return Adjusted(holm_steps(family.p()), family.single(family.alpha / family.t.size))
+def bonferroni(family: Family) -> Adjusted:
+    return single_step(family, family.size * _p(family), _bonferroni_critical(family))
 
 
-def _bonferroni(family: Family) -> Adjusted:
-    return Adjusted(np.minimum(family.p() * family.t.size, 1.0), family.single(family.alpha / family.t.size))
+def sidak(family: Family) -> Adjusted:
+    """Treat the comparisons as independent, which is on the safe side; expm1 and log1p keep small p-values exact."""
+    m = max(family.size, 1)
+    with np.errstate(divide="ignore"):  # p = 1 (t = 0) stays 1
+        p = -np.expm1(m * np.log1p(-_p(family)))
+    return single_step(family, p, stats.t.isf(-np.expm1(np.log1p(-family.alpha) / m) / 2, family.df))
 
 
-def _sidak(family: Family) -> Adjusted:
-    m = family.t.size
-    p = -np.expm1(m * np.log1p(-family.p()))  # 1 - (1 - p)^m without losing small p
-    return Adjusted(np.asarray(p), family.single(float(-np.expm1(np.log1p(-family.alpha) / m))))
+def holm(family: Family) -> Adjusted:
+    """Multiply the smallest p by m, the next by m - 1 …, never falling; the interval is Bonferroni's, as Holm has none."""
+    p = _p(family)
+    order = np.argsort(p, kind="stable")[: family.size]
+    stepped = np.full_like(p, np.nan)
+    stepped[order] = np.minimum(np.maximum.accumulate(p[order] * np.arange(family.size, 0, -1)), 1.0)
+    return Adjusted(stepped, _bonferroni_critical(family))
 
 
-def _scheffe(family: Family) -> Adjusted:
-    d = family.dimension
-    p = stats.f.sf(family.t**2 / d, d, family.df)
-    return Adjusted(np.asarray(p), float(np.sqrt(d * stats.f.isf(family.alpha, d, family.df))))
+def tukey(family: Family) -> Adjusted:
+    """Refer √2 |t| to the studentised range of all means, which is Tukey-Kramer's method where sizes differ."""
+    p = studentized_range.sf(np.sqrt(2) * np.abs(family.t), family.means, family.df)
+    return single_step(family, p, studentized_range.ppf_upper(family.alpha, family.means, family.df) / np.sqrt(2))
 
 
-def _dunnett(family: Family) -> Adjusted:
-    correlation = family.correlation if family.correlation is not None else np.eye(family.t.size)
-    return Adjusted(dunnett.sf(np.abs(family.t), correlation, family.df), dunnett.ppf_upper(family.alpha, correlation, family.df))
+def scheffe(family: Family) -> Adjusted:
+    """Refer t² / d to F with d and df degrees of freedom, d the dimension of all contrasts that could be asked for."""
+    p = stats.f.sf(family.t**2 / family.dimension, family.dimension, family.df)
+    return single_step(family, p, np.sqrt(family.dimension * stats.f.isf(family.alpha, family.dimension, family.df)))
 
 
-def _none(family: Family) -> Adjusted:
-    return Adjusted(family.p(), family.single(family.alpha))
+def against_control(family: Family) -> Adjusted:
+    """Refer |t| to the largest of the correlated comparisons with the control; raises ValueError without their correlation."""
+    if family.correlation is None:
+        raise ValueError("comparisons with a control need the correlation of the differences")
+    known = ~np.isnan(family.t)
+    correlation = family.correlation[np.ix_(known, known)]
+    p = np.full_like(family.t, np.nan)
+    p[known] = dunnett.sf(np.abs(family.t[known]), correlation, family.df)
+    return single_step(family, p, dunnett.ppf_upper(family.alpha, correlation, family.df))
+
+
+def _p(family: Family) -> Floats:
+    return np.asarray(2 * stats.t.sf(np.abs(family.t), family.df), dtype=np.float64)
+
+
+def _bonferroni_critical(family: Family) -> float:
+    return float(stats.t.isf(family.alpha / (2 * max(family.size, 1)), family.df))
 
 
 ADJUSTMENTS: Mapping[str, Adjustment] = MappingProxyType(
     {
-        "tukey": Adjustment("Tukey (Tukey-Kramer where counts differ)", "Tukey (1953); Kramer (1956), Biometrics 12, 307-310", _tukey),
-        "holm": Adjustment("Holm, step by step", "Holm (1979), Scand. J. Statist. 6, 65-70", _holm),
-        "bonferroni": Adjustment("Bonferroni", "Dunn (1961), JASA 56, 52-64", _bonferroni),
-        "sidak": Adjustment("Šidák", "Šidák (1967), JASA 62, 626-633", _sidak),
-        "scheffe": Adjustment("Scheffé, for any contrast", "Scheffé (1953), Biometrika 40, 87-104", _scheffe),
-        "dunnett": Adjustment("Dunnett, against the control", "Dunnett (1955), JASA 50, 1096-1121", _dunnett),
-        "none": Adjustment("none: each comparison on its own", "Student (1908), Biometrika 6, 1-25", _none),
+        "tukey": Adjustment("Tukey-Kramer, all pairs", "Tukey 1953; Kramer 1956; Hayter 1984", tukey),
+        "holm": Adjustment("Holm, step by step", "Holm 1979", holm),
+        "bonferroni": Adjustment("Bonferroni", "Dunn 1961", bonferroni),
+        "sidak": Adjustment("Šidák", "Šidák 1967", sidak),
+        "scheffe": Adjustment("Scheffé, any contrast", "Scheffé 1953", scheffe),
+        "dunnett": Adjustment("Dunnett, against a control", "Dunnett 1955", against_control),
+        "none": Adjustment("Not adjusted", "Student 1908", unadjusted),
     }
 )
