@@ -95,8 +95,10 @@ def tukey(family: Family) -> Adjusted:
 
 def scheffe(family: Family) -> Adjusted:
     """Refer t² / d to F with d and df degrees of freedom, d the dimension of all contrasts that could be asked for."""
-    p = stats.f.sf(family.t**2 / family.dimension, family.dimension, family.df)
-    return single_step(family, p, np.sqrt(family.dimension * stats.f.isf(family.alpha, family.dimension, family.df)))
+    d = family.dimension
+    if np.isinf(family.df):
+        return single_step(family, stats.chi2.sf(family.t**2, d), np.sqrt(stats.chi2.isf(family.alpha, d)))
+    return single_step(family, stats.f.sf(family.t**2 / d, d, family.df), np.sqrt(d * stats.f.isf(family.alpha, d, family.df)))
 
 
 def against_control(family: Family) -> Adjusted:
@@ -104,6 +106,8 @@ def against_control(family: Family) -> Adjusted:
     if family.correlation is None:
         raise ValueError("comparisons with a control need the correlation of the differences")
     known = ~np.isnan(family.t)
+    if not known.any():
+        return Adjusted(np.full_like(family.t, np.nan), float("nan"))
     correlation = family.correlation[np.ix_(known, known)]
     p = np.full_like(family.t, np.nan)
     p[known] = dunnett.sf(np.abs(family.t[known]), correlation, family.df)
