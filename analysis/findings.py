@@ -4,7 +4,8 @@ import importlib.metadata
 import platform
 from collections.abc import Mapping
 from dataclasses import dataclass
-from functools import cached_property
+from functools import cache, cached_property
+from types import MappingProxyType
 from typing import Any
 
 import numpy as np
@@ -281,12 +282,17 @@ class Findings:
     @property
     def versions(self) -> Mapping[str, str]:
         """Versions of what computed this."""
-        libraries = {name: importlib.metadata.version(name) for name in LIBRARIES}
-        return {"crossgrain": VERSION, "python": platform.python_version(), **libraries}
+        return _versions()
 
     def to_dict(self) -> dict[str, Any]:
         """Return the whole object in plain values: no NaN, None where something is undefined."""
         return {name: plain.plain(getattr(self, name)) for name in PARTS}
+
+
+@cache
+def _versions() -> Mapping[str, str]:
+    libraries = {name: importlib.metadata.version(name) for name in LIBRARIES}
+    return MappingProxyType({"crossgrain": VERSION, "python": platform.python_version(), **libraries})
 
 
 def analyse(study: Study) -> Findings:

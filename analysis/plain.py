@@ -36,7 +36,18 @@ WHOLE = frozenset({"df", "residual_df", "n", "df1", "df2", "row", "family_size"}
 
 
 def _records(frame: pd.DataFrame) -> list[dict[str, Any]]:
-    columns = {name: [plain(v) for v in frame[name].tolist()] for name in frame.columns}
-    for name in WHOLE & set(columns):
-        columns[name] = [int(v) if isinstance(v, float) and v.is_integer() else v for v in columns[name]]
+    columns = {str(name): _column(str(name), frame[name]) for name in frame.columns}
     return [dict(zip(columns, row, strict=True)) for row in zip(*columns.values(), strict=True)]
+
+
+def _column(name: str, column: pd.Series) -> list[Any]:
+    """Return a column's values, a whole column at a time where its type allows: families can hold 100,000 rows."""
+    if column.dtype.kind in "iub":
+        return list(column.tolist())
+    if column.dtype.kind != "f":
+        return [value if type(value) is str else plain(value) for value in column.tolist()]
+    values = column.to_numpy(float)
+    known = np.isfinite(values)
+    if name in WHOLE and known.any():
+        return [int(value) if ok else None for value, ok in zip(values.tolist(), known.tolist(), strict=True)]
+    return values.tolist() if known.all() else [value if ok else None for value, ok in zip(values.tolist(), known.tolist(), strict=True)]
