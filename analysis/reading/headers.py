@@ -76,9 +76,11 @@ def _header_place(head: Sequence[Record], places: Sequence[int]) -> int | None:
     """The record that names the columns, or None where the first full row is all numbers."""
     width = _usual_width(head, places)
     full = next((index for index in places if head[index].filled >= width), places[0])
-    above = [index for index in places if index < full]
-    if above and _has_numbers(head[full]) and _names_columns(head[above[-1]], width):
-        return above[-1]
+    if _has_numbers(head[full]):
+        above = (index for index in reversed(places) if index < full and _names_columns(head[index], width))
+        named = next(above, None)
+        if named is not None:
+            return named
     if width > 1 and all(is_number(cell) for cell in head[full].cells):
         return None
     return full

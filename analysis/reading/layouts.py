@@ -100,9 +100,20 @@ def _any_number(texts: pa.StringArray) -> bool:
 
 
 def _fill(body: Body, index: int, place: int, found: Found) -> Fill:
-    """From which row each row takes its level, where the column is written once above several rows."""
+    """From which row each row takes its level, where the column is written once above several rows.
+
+    Blanks alone count only to the left of measurements: a numeric column without a blank one.
+    """
     merged = filling.by_merged(place, body.rows, found.spans)
-    return merged if merged is not None else filling.by_blocks(body.columns[index])
+    if merged is not None:
+        return merged
+    fill = filling.by_blocks(body.columns[index])
+    return fill if fill is not None and any(_is_complete(texts) for texts in body.columns[index + 1 :]) else None
+
+
+def _is_complete(texts: pa.StringArray) -> bool:
+    """Whether a column holds numbers, as far as its first cells show, and no blank."""
+    return _any_number(texts.slice(0, 20)) and not footers.blank_cells(texts).any()
 
 
 def _filled(labels: Sequence[str], fills: Sequence[Fill]) -> tuple[Decision, ...]:

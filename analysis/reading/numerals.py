@@ -7,13 +7,14 @@ from functools import lru_cache
 from analysis.reading import units
 
 MINUS_SIGNS = "-\u2212\u2013\u2012\ufe63\uff0d"
+_SIGN = "[+" + re.escape(MINUS_SIGNS) + "]"
 FOOTNOTES = "*\u2020\u2021\u00a7\u00b6#"
 _SUPERSCRIPTS = str.maketrans("⁰¹²³⁴⁵⁶⁷⁸⁹⁻⁺", "0123456789-+")
 _CELL = re.compile(
-    rf"(?P<before>[*†‡]?) ?(?P<bound>[<>≤≥]=?)? ?(?P<sign>[+{MINUS_SIGNS}]?) ?"
+    rf"(?P<before>[*†‡]?) ?(?P<bound>[<>≤≥]=?)? ?(?P<sign>{_SIGN}?) ?"
     r"(?P<body>[0-9]+(?:[ '’.,][0-9]+)*[.,]?|[.,][0-9]+)"
-    rf"(?P<exponent>[eE][+{MINUS_SIGNS}]?[0-9]+| ?[x×·] ?10(?:\^[+{MINUS_SIGNS}]?[0-9]+|[⁺⁻]?[⁰¹²³⁴⁵⁶⁷⁸⁹]+))?"
-    rf" ?(?P<rest>.*?) ?(?P<after>[{FOOTNOTES}¹²³]*)",
+    rf"(?P<exponent>[eE]{_SIGN}?[0-9]+| ?[x×·] ?10(?:\^{_SIGN}?[0-9]+|[⁺⁻]?[⁰¹²³⁴⁵⁶⁷⁸⁹]+))?"
+    r" ?(?P<rest>.*)",
     re.DOTALL,
 )
 _SPACED = re.compile(r"[0-9]{1,3}(?:[ '’][0-9]{3})+(?![0-9 '’])")
@@ -62,26 +63,26 @@ def find(text: str) -> Numeral | None:
         return None
     body, spaced = _without_spaces(match["body"])
     shape = _shape(body, settled=spaced or bool(match["exponent"])) if body else None
-    unit = units.normal(match["rest"])
+    unit, after = _unit_and_footnote(match["rest"])
     if shape is None or unit is None:
         return None
-    unit, after = _unit_or_footnote(unit, match["after"] or "")
     return Numeral(
         sign="-" if match["sign"] and match["sign"] in MINUS_SIGNS else "",
         body=body,
         exponent=_exponent(match["exponent"] or ""),
         shape=shape,
         unit=unit,
-        footnote=bool(match["before"] or after),
+        footnote=bool(match["before"]) or after,
         bound=(match["bound"] or "").replace("≤", "<").replace("≥", ">")[:1],
     )
 
 
-def _unit_or_footnote(unit: str, after: str) -> tuple[str, str]:
-    """A raised 2 or 3 behind a unit belongs to it (m²); behind a bare number it points to a footnote."""
-    if unit and after in ("²", "³"):
-        return unit + after, ""
-    return unit, after
+def _unit_and_footnote(rest: str) -> tuple[str | None, bool]:
+    """Tell the unit (None where the rest is no unit) from a footnote mark; a raised 2 behind a unit belongs to it (m²)."""
+    unit = units.normal(rest)
+    if unit is not None:
+        return unit, False
+    return units.normal(rest.rstrip(FOOTNOTES + "¹²³").rstrip()), True
 
 
 def _without_spaces(body: str) -> tuple[str, bool]:
