@@ -13,7 +13,7 @@ st.set_page_config(page_title="Crossgrain", page_icon=str(HERE / "assets" / "ico
 st.html(paper.variables(stage.at_hand()))
 st.html(HERE / "assets" / "house.css")
 page = st.navigation(
-    [st.Page(HERE / "pages" / f"{s.name}.py", title=s.title, url_path=s.name, default=s is STATIONS[0]) for s in STATIONS], position="top"
+    [st.Page(HERE / "stops" / f"{s.name}.py", title=s.title, url_path=s.name, default=s is STATIONS[0]) for s in STATIONS], position="top"
 )
 with st.container(key="tools", horizontal=True, vertical_alignment="center", horizontal_alignment="right"):
     st.html(paper.status(words.open_table(desk.study())))

@@ -24,10 +24,10 @@ def findings(title: str) -> Findings | None:
     st.html(paper.heading(title))
     if isinstance(found, Refusal):
         st.html(paper.notice(str(found)))
-        st.page_link("pages/lay_out.py", label=words.TO_LAY_OUT, icon=":material/arrow_back:")
+        st.page_link("stops/lay_out.py", label=words.TO_LAY_OUT, icon=":material/arrow_back:")
     else:
         st.html(paper.text(words.NOTHING_OPEN))
-        st.page_link("pages/bring.py", label=words.TO_BRING, icon=":material/arrow_back:")
+        st.page_link("stops/bring.py", label=words.TO_BRING, icon=":material/arrow_back:")
     return None
 
 

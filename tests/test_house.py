@@ -66,7 +66,7 @@ def _nearest(name: str, names: dict[str, Path]) -> str | None:
     return next((found for found in (name, name.rpartition(".")[0]) if found in names), None)
 
 
-@pytest.mark.parametrize("file", sources.files("app/pages"), ids=relative)
+@pytest.mark.parametrize("file", sources.files("app/stops"), ids=relative)
 def test_a_page_is_an_import_and_a_call(file: Path) -> None:
     """Streamlit runs a page anew each time: a class made there would be another class at every click."""
     bring, show = sources.tree(file).body
@@ -74,7 +74,7 @@ def test_a_page_is_an_import_and_a_call(file: Path) -> None:
     assert ast.unparse(show) == f"{bring.names[0].name}.show()"
 
 
-@pytest.mark.parametrize("file", [file for file in EVERYTHING if file.parent.name != "pages"], ids=relative)
+@pytest.mark.parametrize("file", [file for file in EVERYTHING if file.parent.name != "stops"], ids=relative)
 def test_a_module_says_what_it_knows(file: Path) -> None:
     text = file.read_text(encoding="utf-8")
     assert len(text.splitlines()) <= 400

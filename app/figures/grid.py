@@ -132,7 +132,7 @@ def _lettered(lines: tuple[str, ...], size: float, look: Look) -> str:
 def grid_caption(findings: Findings) -> str:
     """Say what stands in a field."""
     design = findings.design
-    return f"{design['row_factor']} down, {design['column_factor']} across: cell mean, n and standard deviation; darker is higher."
+    return f"{design['row_factor']} down, {design['column_factor']} across: cell mean, n and standard deviation; the stronger the colour, the higher."
 
 
 def grid_alt(findings: Findings) -> str:

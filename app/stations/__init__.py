@@ -5,7 +5,7 @@ from dataclasses import dataclass
 
 @dataclass(frozen=True)
 class Station:
-    """One stop: its name in the address and in `app/pages`, and what the bar calls it."""
+    """One stop: its name in the address and in `app/stops`, and what the bar calls it."""
 
     name: str
     title: str

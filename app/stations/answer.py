@@ -18,13 +18,13 @@ def show() -> None:
     if findings is None:
         return
     left, right = st.columns([10, 13], gap="medium")
-    with left:
+    with left, st.container(gap="xsmall"):
         st.html(paper.heading(f"{findings.study.response}", f"{findings.study.row_factor} × {findings.study.column_factor}"))
         with st.container(key="answers", gap=None):
             for told in findings.answers:
                 st.html(paper.answer(told.sentence, told.statistic, told.verdict not in OPEN))
         stage.figure(grid.grid(findings, stage.at_hand()), "grid", grid.grid_caption(findings), grid.grid_alt(findings))
-    with right:
+    with right, st.container(gap="xsmall"):
         _switches(findings.study)
         stage.complaint()
         drawn = interaction.interaction(findings, stage.at_hand())

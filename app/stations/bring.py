@@ -7,7 +7,7 @@ from analysis.table import Table
 from app import desk, paper, samples, sheets, stage, words
 
 FILES = ["csv", "tsv", "txt", "xlsx", "xls", "ods", "parquet"]
-FIRST_ROWS = 8
+FIRST_ROWS = 10
 
 
 def show() -> None:

@@ -52,9 +52,10 @@ def _design(findings: Findings) -> None:
     design = findings.design
     st.html(paper.heading(words.layout_sentence(findings)))
     stage.figure(grid.counts(design, stage.at_hand()), "grid", "", grid.counts_alt(design))
-    st.html(paper.text(f"{words.balance(findings)} {words.reckoning(design['observations'], len(design['left_out']))}"))
+    st.html(paper.text(words.balance(findings)))
     for factor in findings.study.factors:
         st.html(paper.levels(factor, [(str(m.level), int(m.n)) for m in records.lines(findings.marginal_means[factor])]))
+    st.html(paper.text(words.reckoning(design["observations"], len(design["left_out"]))))
     if design["left_out"]:
         with st.expander(f"The {words.counted(len(design['left_out']), 'row')} left out, with reasons"):
             st.html(paper.table(sheets.left_out(design["left_out"])))

@@ -1,5 +1,7 @@
 """Tell: the slides, the workbook and the figures to take away, built when they are asked for."""
 
+from dataclasses import replace
+
 import streamlit as st
 
 from analysis.findings import Findings
@@ -9,6 +11,7 @@ from app.exports import images
 from app.figures import interaction
 
 NEEDS_BROWSER = "save_figures"
+PREVIEW = 290  # px, of the figure beside the files
 
 
 def show() -> None:
@@ -23,7 +26,7 @@ def show() -> None:
     with right:
         st.html(paper.question("What the slides say"))
         st.html(paper.story([(board.claim, board.evidence) for board in boards.story(findings)]))
-        drawn = interaction.interaction(findings, stage.at_hand())
+        drawn = interaction.interaction(findings, replace(stage.at_hand(), height=PREVIEW))
         stage.figure(drawn, "interaction", interaction.interaction_caption(findings), interaction.interaction_alt(findings), camera=True)
 
 
