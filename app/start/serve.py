@@ -1,12 +1,16 @@
 """How Streamlit is told to serve: this machine only, nothing asked of the outside, no words of its own."""
 
 import os
+import signal
 import socket
 import sys
 import threading
 import time
 import webbrowser
 from collections.abc import Sequence
+
+if __name__ == "__main__":  # until Streamlit minds Ctrl-C itself, Ctrl-C ends the process at once and without a traceback
+    signal.signal(signal.SIGINT, signal.SIG_DFL)
 
 from streamlit import net_util
 from streamlit.web import cli

@@ -88,7 +88,7 @@ def test_ctrl_c_ends_the_command_quietly() -> None:
     with running("app") as (_, process):
         process.send_signal(signal.SIGINT)
         _, complaints = process.communicate(timeout=60)
-    assert process.returncode == 0
+    assert process.returncode in (0, -signal.SIGINT)  # ended by Streamlit, or by the system where Streamlit was not ready yet
     assert not complaints
 
 
