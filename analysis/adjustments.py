@@ -80,11 +80,15 @@ def sidak(family: Family) -> Adjusted:
 
 def holm(family: Family) -> Adjusted:
     """Multiply the smallest p by m, the next by m - 1 …, never falling; the interval is Bonferroni's, as Holm has none."""
-    p = _p(family)
-    order = np.argsort(p, kind="stable")[: family.size]
+    return Adjusted(stepped_down(_p(family)), _bonferroni_critical(family))
+
+
+def stepped_down(p: Floats) -> Floats:
+    """Return Holm's adjustment of p-values; NaN stays NaN and does not count. Source: Holm (1979), Scand. J. Statist. 6, 65-70."""
+    order = np.argsort(p, kind="stable")[: int(np.count_nonzero(~np.isnan(p)))]
     stepped = np.full_like(p, np.nan)
-    stepped[order] = np.minimum(np.maximum.accumulate(p[order] * np.arange(family.size, 0, -1)), 1.0)
-    return Adjusted(stepped, _bonferroni_critical(family))
+    stepped[order] = np.minimum(np.maximum.accumulate(p[order] * np.arange(order.size, 0, -1)), 1.0)
+    return stepped
 
 
 def tukey(family: Family) -> Adjusted:

@@ -147,12 +147,15 @@ def _example(evidence: Evidence) -> str:
 
 def _change(evidence: Evidence, row: str, first: str, second: str) -> str:
     """Write how the estimate of one row changes between two columns."""
-    mine = evidence.cells[evidence.cells["row"] == row].set_index("column")
-    change = float(mine.at[second, "estimate"]) - float(mine.at[first, "estimate"])
+    mine = evidence.cells[evidence.cells["row"] == row]
+    (before, se_before), (after, se_after) = (
+        mine.loc[mine["column"] == column, ["estimate", "se"]].to_numpy(float)[0].tolist() for column in (first, second)
+    )
+    change = after - before
     scale = evidence.layout.observed.scale
     if scale.tells_ratios:
         return significant(float(scale.back(np.array(change))))
-    se = float(np.hypot(float(mine.at[second, "se"]), float(mine.at[first, "se"])))
+    se = float(np.hypot(se_before, se_after))
     return f"{signed(change, se)}{evidence.unit}"
 
 

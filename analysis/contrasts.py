@@ -7,7 +7,7 @@ import numpy as np
 import pandas as pd
 from scipy import stats
 
-from analysis.adjustments import ADJUSTMENTS, Family
+from analysis.adjustments import ADJUSTMENTS, Family, stepped_down
 from analysis.cells import Matrix, Vector
 from analysis.estimates import FREE_TOLERANCE, Estimates
 from analysis.families import Choices, Slice
@@ -33,8 +33,8 @@ def simple_effects(factor: str, slices: tuple[Slice, ...], model: Model) -> pd.D
     dfs = frame["df"].to_numpy(float)
     with np.errstate(divide="ignore", invalid="ignore"):
         f = np.where(dfs > 0, frame["ss"].to_numpy(float) / dfs / ms, np.nan)
-    p = stats.f.sf(f, dfs, model.residual_df)
-    return frame.assign(f=f, p=p, p_adjusted=_holm(p))
+    p = np.asarray(stats.f.sf(f, dfs, model.residual_df), dtype=float)
+    return frame.assign(f=f, p=p, p_adjusted=stepped_down(p))
 
 
 @dataclass(frozen=True)
@@ -68,16 +68,6 @@ def contrast(
     t = value / se if se > 0 else float("nan")
     reach = model.quantile(confidence) * se
     return Contrast(value, se, model.residual_df, t, 2 * float(stats.t.sf(abs(t), model.residual_df)), value - reach, value + reach)
-
-
-def _holm(p: Vector) -> Vector:
-    """Return Holm's step-down p-values of those that are defined."""
-    adjusted = np.full(p.size, np.nan)
-    known = np.flatnonzero(np.isfinite(p))
-    order = known[np.argsort(p[known], kind="stable")]
-    steps = p[order] * np.arange(order.size, 0, -1)
-    adjusted[order] = np.minimum(np.maximum.accumulate(steps), 1.0) if order.size else steps
-    return adjusted
 
 
 def count(shape: tuple[int, int]) -> int:

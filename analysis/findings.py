@@ -274,6 +274,7 @@ class Findings:
             "The smallest difference that matters is in units of the response and is not applied on another scale.": (
                 self.study.matters is not None and self.choices.matters is None
             ),
+            **checking.reasons(self.layout),
             "Doubts and the table of other defensible analyses are not computed yet, so doubts and holds are empty.": True,
         }
         large = [f"The family “{name}” holds too many comparisons to be written out one by one." for name in self._too_large()]

@@ -277,8 +277,7 @@ class DamagedFile(Refusal):
 
     def __init__(self, what: str) -> None:
         super().__init__(
-            f"The {what} is damaged or cut short and cannot be read: open it where it was made, save it anew and bring that "
-            "file."
+            f"The {what} is damaged or cut short and cannot be read: open it where it was made, save it anew and bring that file."
         )
 
 
@@ -294,8 +293,7 @@ class UnpacksTooLarge(Refusal):
 
     def __init__(self, limit: int) -> None:
         super().__init__(
-            f"The workbook unpacks to more than the limit of {limit // 2**20} MiB: save only the sheet with the data, or save "
-            "it as .csv."
+            f"The workbook unpacks to more than the limit of {limit // 2**20} MiB: save only the sheet with the data, or save it as .csv."
         )
 
 
@@ -336,8 +334,7 @@ class NulBytes(Refusal):
     def __init__(self, row: int) -> None:
         self.row = row
         super().__init__(
-            f"Row {row} holds NUL bytes, which no text table has: the file is damaged or of another kind; save it anew as .csv "
-            "or .xlsx."
+            f"Row {row} holds NUL bytes, which no text table has: the file is damaged or of another kind; save it anew as .csv or .xlsx."
         )
 
 
@@ -347,8 +344,7 @@ class UnclosedQuote(Refusal):
     def __init__(self, row: int) -> None:
         self.row = row
         super().__init__(
-            f"An unclosed quotation mark was found in row {row}, so that the cells after it run together: close or remove it "
-            "there."
+            f"An unclosed quotation mark was found in row {row}, so that the cells after it run together: close or remove it there."
         )
 
 
@@ -358,8 +354,7 @@ class CellTooLong(Refusal):
     def __init__(self, row: int, limit: int) -> None:
         self.row = row
         super().__init__(
-            f"A cell in row {row} is longer than {limit:,} characters: shorten it, or check the separator and the quotation "
-            "marks."
+            f"A cell in row {row} is longer than {limit:,} characters: shorten it, or check the separator and the quotation marks."
         )
 
 

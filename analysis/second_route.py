@@ -9,7 +9,8 @@ import pandas as pd
 
 from analysis.anova import INTERACTION, RESIDUAL, Names
 from analysis.cells import Matrix
-from analysis.observations import Factor, Observations
+from analysis.coding import sum_to_zero
+from analysis.observations import Observations
 from analysis.refusals import TwoRoutesDisagree
 
 MOST_ENTRIES = 400_000  # entries of the design matrix beyond which a study is not of ordinary size
@@ -29,10 +30,11 @@ class Route:
     @cached_property
     def columns(self) -> Mapping[str, Matrix]:
         """Sum-to-zero columns of each term, one row an observation."""
-        row, column = _sum_to_zero(self.observed.row), _sum_to_zero(self.observed.column)
+        observed = self.observed
+        row, column = (sum_to_zero(factor.codes, factor.size) for factor in (observed.row, observed.column))
         terms = {self.names.row: row, self.names.column: column}
-        if self.observed.block is not None:
-            terms = {str(self.names.block): _sum_to_zero(self.observed.block)} | terms
+        if observed.block is not None:
+            terms = {str(self.names.block): sum_to_zero(observed.block.codes, observed.block.size)} | terms
         if self.interaction:
             terms[INTERACTION] = (row[:, :, None] * column[:, None, :]).reshape(len(row), -1)
         return terms
@@ -70,12 +72,6 @@ class Route:
             return terms[: terms.index(term)]
         others = [other for other in terms if other != term]
         return [other for other in others if other != INTERACTION] if kind == "type_2" and term in factors else others
-
-
-def _sum_to_zero(factor: Factor) -> Matrix:
-    """Return the coding whose effects sum to zero: (observations, levels - 1)."""
-    coding = np.vstack([np.eye(factor.size - 1), -np.ones(factor.size - 1)])
-    return np.asarray(coding[factor.codes])
 
 
 def confirm(observed: Observations, interaction: bool, names: Names, tables: Mapping[str, pd.DataFrame]) -> None:

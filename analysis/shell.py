@@ -70,24 +70,19 @@ def study_asked(asked: argparse.Namespace, table: Table) -> Study:
     """Return the study that the shell's choices describe."""
     return Study(
         table=table,
-        response=_column(table, asked.response),
-        row_factor=_column(table, asked.factors[0]),
-        column_factor=_column(table, asked.factors[1]),
-        block=_column(table, asked.block),
-        unit=_column(table, asked.unit),
-        keep={_column(table, name): levels for name, levels in map(_assignment, asked.keep)},
+        response=table.column(asked.response).name,
+        row_factor=table.column(asked.factors[0]).name,
+        column_factor=table.column(asked.factors[1]).name,
+        block=None if asked.block is None else table.column(asked.block).name,
+        unit=None if asked.unit is None else table.column(asked.unit).name,
+        keep={table.column(name).name: levels for name, levels in map(_assignment, asked.keep)},
         model=asked.model,
         scale=asked.scale,
         confidence=_number("--confidence", asked.confidence),
         adjust=asked.adjust,
-        control={_column(table, name): ",".join(levels) for name, levels in map(_assignment, asked.control)},
+        control={table.column(name).name: ",".join(levels) for name, levels in map(_assignment, asked.control)},
         matters=None if asked.matters is None else _number("--matters", asked.matters),
     )
-
-
-def _column(table: Table, name: str | None) -> str | None:
-    """Return the column's name as the table has it; raises UnknownColumn."""
-    return None if name is None else table.column(name).name
 
 
 def _number(choice: str, text: str) -> float:
