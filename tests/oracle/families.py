@@ -10,6 +10,7 @@ from mpmath import mp, mpf
 from tests.oracle import tails
 from tests.oracle.layout import Cell, minus
 from tests.oracle.means import Analysis, estimate
+from tests.oracle.paths import word
 from tests.oracle.sweep import Fit, Vector
 from tests.oracle.tables import Row, number
 
@@ -166,10 +167,10 @@ def comparisons(a: Analysis, row: str, column: str, wanted: Wanted) -> dict[str,
 
 
 def family(a: Analysis, model: Fit, levels: Means, within: str | None, control: int | None, adjust: str) -> list[Row]:
-    """One family over the levels whose means can be estimated."""
-    known = [(label, w if w is not None and model.estimable(w) else None) for label, w in levels]
-    count = sum(w is not None for _, w in known)
-    return tested(a, model, pairs_of(known, within, control), adjust, count, simultaneous=True)
+    """One family over the comparisons that the data allow; its means are those that take part in one."""
+    contrasts = [c for c in pairs_of(levels, within, control) if model.estimable(c.weights)]
+    means = {word(c.labels[side]) for c in contrasts for side in ("left", "right")}
+    return tested(a, model, contrasts, adjust, len(means), simultaneous=True)
 
 
 def slices(a: Analysis, families: list[Means], within: tuple[str, ...], control: int | None, adjust: str) -> list[Row]:
@@ -190,7 +191,7 @@ def simple_effect(a: Analysis, factor: str, within: str, merge: Callable[[Cell],
     df, ss = a.x.full.rank - merged.rank, merged.residual_ss - a.x.full.residual_ss
     line = {"factor": factor, "within": within, "df": df, "residual_df": a.df, "ss": number(ss), "f": None, "p": None}
     if df == 0:
-        return line
+        return line | {"ss": None}
     f = number(ss / df / a.ms)
     return line | {"f": f, "p": tails.f_tail(f, df, a.df)}
 

@@ -9,7 +9,7 @@ from tests.oracle import tails
 from tests.oracle.layout import Column, Experiment, Reading
 
 Row = dict[str, object]
-Source = tuple[str, int, Fraction]  # term, degrees of freedom, sum of squares
+Source = tuple[str, int | None, Fraction]  # term, degrees of freedom (None where there is no hypothesis), sum of squares
 
 
 @dataclass(frozen=True)
@@ -62,12 +62,12 @@ def block_source(x: Experiment, names: Names, full: bool) -> list[Source]:
     return [step(x, names.block, rest, rest + x.block_columns())] if x.blocks else []
 
 
-def type_3(x: Experiment, names: Names, full: bool) -> list[Source] | None:
-    """Each term's sum-to-zero columns left out of the whole model; None where an empty cell leaves them without meaning."""
+def type_3(x: Experiment, names: Names, full: bool) -> list[Source]:
+    """Each term's sum-to-zero columns left out of the whole model; with an empty cell the factors have no such hypothesis."""
     if not full:
         return type_2(x, names, full)
     if not x.complete:
-        return None
+        return [*block_source(x, names, full), (names.row, None, Fraction(0)), (names.column, None, Fraction(0)), *interaction(x, full)]
     row, column = coded_rows(x), coded_columns(x)
     both = [lambda reading, f=f, g=g: f(reading) * g(reading) for f in row for g in column]
     whole = x.mean_column() + row + column + both + x.block_columns()
@@ -105,10 +105,8 @@ def one(reading: Reading) -> Fraction:
     return Fraction(1)
 
 
-def table(x: Experiment, sources: list[Source] | None, full: bool, confidence: mpf) -> list[Row] | None:
+def table(x: Experiment, sources: list[Source], full: bool, confidence: mpf) -> list[Row]:
     """Lines of the table: every source against the residual of the model, then residual and total."""
-    if sources is None:
-        return None
     model, count = (x.full if full else x.additive), len(x.readings)
     df2, residual, total = count - model.rank, model.residual_ss, total_ss(x)
     lines = [line(source, df2, residual, total, count, confidence) for source in sources]
@@ -125,6 +123,8 @@ def empty_line(term: str) -> Row:
 def line(source: Source, df2: int, residual: Fraction, total: Fraction, count: int, confidence: mpf) -> Row:
     """One source with its test and effect sizes."""
     term, df, ss = source
+    if df is None:
+        return empty_line(term)
     if df == 0:
         return empty_line(term) | {"df": 0, "ss": number(ss)}
     ms, mse = ss / df, residual / df2
@@ -139,7 +139,7 @@ def line(source: Source, df2: int, residual: Fraction, total: Fraction, count: i
     }  # fmt: skip
 
 
-def four_tables(x: Experiment, names: Names, full: bool, confidence: mpf) -> dict[str, list[Row] | None]:
+def four_tables(x: Experiment, names: Names, full: bool, confidence: mpf) -> dict[str, list[Row]]:
     """All four ways of dividing the total."""
     return {
         "type_1": table(x, type_1(x, names, full, False), full, confidence),

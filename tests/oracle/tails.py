@@ -26,10 +26,10 @@ def chi2_tail(x: mpf, df: int) -> mpf:
 
 
 def root(function: Callable[[mpf], mpf], low: mpf, high: mpf) -> mpf:
-    """Find where an increasing function crosses zero: widen upwards, then halve the bracket 150 times."""
+    """Find where an increasing function crosses zero: widen upwards, then halve the bracket 75 times (22 digits)."""
     while function(high) < 0:
         low, high = high, 2 * high
-    for _ in range(150):
+    for _ in range(75):
         middle = (low + high) / 2
         low, high = (middle, high) if function(middle) < 0 else (low, middle)
     return (low + high) / 2

@@ -69,8 +69,7 @@ def answer(case: Case) -> dict[str, object]:
     """Everything the oracle knows about a case."""
     x, names = experiment(case), tables.Names("a", "b", "block" if case.has_blocks else None)
     confidence = mpf(str(case.choices.get("confidence", "0.95")))
-    testable = x.full.rank > x.additive.rank and len(x.readings) > x.full.rank
-    full = case.choices.get("model", "full") == "full" and testable
+    full = case.choices.get("model", "full") == "full" and len(x.readings) > x.full.rank  # without replication the additive model answers
     a = means.Analysis(x, full, confidence)
     wanted = families.Wanted(str(case.choices.get("adjust", "tukey")))
     whole = {
