@@ -36,7 +36,11 @@ class Delimited:
     def head(self) -> Sequence[Record]:
         """The first records, those that only name the separator taken as blank."""
         records = islice(self._records(self._start_text()), HEAD)
-        return tuple(Record(row, () if row <= self.declared else trimmed([spaces.tidy(cell) for cell in cells])) for row, cells in records)
+        return tuple(self._record(row, cells) for row, cells in records)
+
+    def _record(self, row: int, cells: list[str]) -> Record:
+        """One record, tidied; a line that only names the separator is blank."""
+        return Record(row, ()) if row <= self.declared else Record(row, trimmed([spaces.tidy(cell) for cell in cells]), len(cells))
 
     def _start_text(self) -> str:
         """Enough of the file for its head, up to the end of a line."""

@@ -3,6 +3,7 @@
 from collections import Counter
 from collections.abc import Sequence
 from dataclasses import dataclass
+from itertools import pairwise
 
 from analysis import refusals
 from analysis.reading import missing, names, numerals, units
@@ -121,7 +122,7 @@ def _without_header(head: Sequence[Record], places: Sequence[int], remarks: Sequ
 def _with_header(head: Sequence[Record], places: Sequence[int], at: int, spans: Sequence[Span], remarks: Sequence[int]) -> Heading:
     above = [index for index in places if index < at]
     below = [index for index in places if index > at]
-    header = _without_mark(head[at].cells)
+    header = _without_mark(_padded(head[at].cells, _full_width(head[at], spans)))
     if not below:
         raise refusals.HeaderWithoutRows(header)
     second = _second_row(header, head, below)
@@ -147,6 +148,15 @@ def _with_header(head: Sequence[Record], places: Sequence[int], at: int, spans: 
 def _without_mark(cells: tuple[str, ...]) -> tuple[str, ...]:
     """A header behind a "#" loses the mark."""
     return (cells[0].lstrip("# "), *cells[1:]) if cells[0].startswith("# ") or (cells[0].startswith("#") and len(cells[0]) > 1) else cells
+
+
+def _full_width(record: Record, spans: Sequence[Span]) -> int:
+    """How many columns a header covers: merged cells, or names at equal distances, reach beyond its last name."""
+    merged = max((span.last_column + 1 for span in spans if span.first_row <= record.row <= span.last_row), default=0)
+    filled = [index for index, cell in enumerate(record.cells) if cell and index]
+    gaps = {right - left for left, right in pairwise(filled)}
+    spread = filled[-1] + gaps.pop() if len(gaps) == 1 and filled[0] == 1 else 0
+    return max(len(record.cells), record.width, merged, spread)
 
 
 def _same_width(spanning: tuple[str, ...], header: tuple[str, ...]) -> tuple[tuple[str, ...], tuple[str, ...]]:

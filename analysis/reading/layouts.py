@@ -4,6 +4,7 @@ from collections.abc import Sequence
 from dataclasses import replace
 
 import numpy as np
+import numpy.typing as npt
 import pyarrow as pa
 
 from analysis import refusals
@@ -22,10 +23,11 @@ _SAMPLE = 5000  # cells of a column looked at before it is searched as a whole f
 def read(source: Source, name: str, layout: str, decisions: tuple[Decision, ...], fingerprint: str) -> Table:
     """Turn a file of text or a sheet into a table; raises a refusal where it holds none."""
     heading = headers.find(source.head, source.found, layout)
-    cleaned = footers.clean(source.body(heading.start, heading.width))
-    if not cleaned.body.rows.size:
+    heading, body, places = _without_blank_columns(heading, source.body(heading.start, heading.width))
+    cleaned = footers.clean(body)
+    body = cleaned.body
+    if not body.rows.size:
         raise refusals.HeaderWithoutRows(heading.joined())
-    heading, body, places = _without_blank_columns(heading, cleaned.body)
     _refuse_without_numbers(body)
     fills = tuple(_fill(body, index, place, source.found) for index, place in enumerate(places))
     decisions = (*decisions, *source.found.decisions, *heading.decisions, *cleaned.decisions)
@@ -102,18 +104,21 @@ def _any_number(texts: pa.StringArray) -> bool:
 def _fill(body: Body, index: int, place: int, found: Found) -> Fill:
     """From which row each row takes its level, where the column is written once above several rows.
 
-    Blanks alone count only to the left of measurements: a numeric column without a blank one.
+    Blanks alone count only to the left of measurements that go on where this column is blank.
     """
     merged = filling.by_merged(place, body.rows, found.spans)
     if merged is not None:
         return merged
     fill = filling.by_blocks(body.columns[index])
-    return fill if fill is not None and any(_is_complete(texts) for texts in body.columns[index + 1 :]) else None
+    if fill is None:
+        return None
+    blank = footers.blank_cells(body.columns[index])
+    return fill if any(_goes_on(texts, blank) for texts in body.columns[index + 1 :]) else None
 
 
-def _is_complete(texts: pa.StringArray) -> bool:
-    """Whether a column holds numbers, as far as its first cells show, and no blank."""
-    return _any_number(texts.slice(0, 20)) and not footers.blank_cells(texts).any()
+def _goes_on(texts: pa.StringArray, blank: npt.NDArray[np.bool_]) -> bool:
+    """Whether a column holds numbers, as far as its first cells show, also in most rows where another is blank."""
+    return _any_number(texts.slice(0, 20)) and 2 * int(footers.blank_cells(texts)[blank].sum()) < int(blank.sum())
 
 
 def _filled(labels: Sequence[str], fills: Sequence[Fill]) -> tuple[Decision, ...]:

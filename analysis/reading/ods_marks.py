@@ -10,20 +10,21 @@ from analysis.reading.sheet_marks import Marks
 _MOST_REPEATS = 100_000  # of one percent cell; a longer run is empty formatting
 
 
-def read(data: bytes, sheet: str) -> Marks:
-    """Return the marks of one sheet of an .ods file, checked against the zip limit before."""
-    marks = Marks()
+def read(data: bytes) -> dict[str, Marks]:
+    """Return the marks of every sheet of an .ods file, checked against the zip limit before."""
+    reader = _ContentParser()
     xml = archives.part(data, "content.xml")
     if xml:
-        archives.parse(xml, _ContentParser(marks, sheet).parser)
-    return marks
+        archives.parse(xml, reader.parser)
+    return reader.sheets
 
 
 class _ContentParser:
-    """Walks through the cells of one sheet and notes their marks."""
+    """Walks through the cells of the sheets and notes their marks."""
 
-    def __init__(self, marks: Marks, sheet: str) -> None:
-        self.marks, self.sheet = marks, sheet
+    def __init__(self) -> None:
+        self.sheets: dict[str, Marks] = {}
+        self.marks = Marks()
         self.inside = False
         self.row = self.column = 0
         self.repeats = 1
@@ -38,7 +39,8 @@ class _ContentParser:
         name = local(tag)
         plain = {local(key): value for key, value in attributes.items() if local(key) != "value-type" or key.startswith("office")}
         if name == "table":
-            self.inside, self.row = plain.get("name") == self.sheet, 0
+            self.inside, self.row, self.marks = True, 0, Marks()
+            self.sheets[plain.get("name", "")] = self.marks
         elif not self.inside:
             return
         elif name == "table-row":

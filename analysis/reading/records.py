@@ -17,6 +17,7 @@ class Record:
 
     row: int  # its number as a spreadsheet shows it
     cells: tuple[str, ...]  # tidy text, "" where blank, without blank cells at the end
+    width: int = 0  # cells that the row has in the file, blank ones at its end included, where the file tells
 
     @property
     def filled(self) -> int:

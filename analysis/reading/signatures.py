@@ -82,9 +82,10 @@ def _kind_of_ole(data: bytes) -> Kind:
         raise refusals.Encrypted()
     if "Workbook".encode("utf-16-le") in data or "Book".encode("utf-16-le") in data:
         return "xls"
-    raise refusals.NotATable(
-        "a text document" if "WordDocument".encode("utf-16-le") in data else "an office document without a workbook in it"
-    )
+    for stream, what in (("WordDocument", "a text document"), ("PowerPoint", "a presentation")):
+        if stream.encode("utf-16-le") in data:
+            raise refusals.NotATable(what)
+    raise refusals.DamagedFile("workbook")
 
 
 def _refuse_other(data: bytes) -> None:

@@ -2,9 +2,9 @@
 
 import datetime
 import io
-from collections.abc import Callable, Mapping, Sequence
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass
-from functools import cached_property
+from functools import cached_property, partial
 from typing import TypeVar
 
 import numpy as np
@@ -12,7 +12,7 @@ import pyarrow as pa
 import python_calamine as calamine
 
 from analysis import refusals
-from analysis.reading import archives, cell_values, ods_marks, spaces, xlsx_marks
+from analysis.reading import archives, cell_values, ods_marks, spaces, xls_marks, xlsx_marks
 from analysis.reading.cell_values import Value
 from analysis.reading.records import HEAD, Body, Found, Record, Span, trimmed
 from analysis.reading.sheet_marks import Marks
@@ -22,7 +22,6 @@ from analysis.table import Decision
 
 T = TypeVar("T")
 MOST_CELLS = 40_000_000  # of the rectangle that a sheet spans
-_MARKS: Mapping[str, Callable[[bytes, str], Marks]] = {"xlsx": xlsx_marks.read, "ods": ods_marks.read}
 
 
 @dataclass(frozen=True, eq=False)
@@ -68,14 +67,15 @@ def read(data: bytes, kind: Kind, wanted: str | None) -> Sheet:
     """
     if kind != "xls":
         archives.check(data)
+    marks = _marks(data, kind)
     book = _guarded(lambda: calamine.CalamineWorkbook.from_filelike(io.BytesIO(data)))
     known = _sheet_names(book)
     if wanted is not None and wanted not in known:
         raise refusals.MissingSheet(wanted, known)
     if wanted is not None:
-        return _sheet(book, data, kind, wanted, [])
+        return _sheet(book, marks, wanted, [])
     for name in known:
-        sheet = _sheet(book, data, kind, name, [other for other in known if other != name])
+        sheet = _sheet(book, marks, name, [other for other in known if other != name])
         if _holds_table(sheet) or len(known) == 1:
             return sheet
     raise refusals.NoSheetWithTable(known)
@@ -99,12 +99,26 @@ def _sheet_names(book: calamine.CalamineWorkbook) -> list[str]:
     return [s.name for s in sorted(sheets, key=lambda sheet: sheet.visible != calamine.SheetVisibleEnum.Visible)]
 
 
-def _sheet(book: calamine.CalamineWorkbook, data: bytes, kind: Kind, name: str, others: Sequence[str]) -> Sheet:
-    marks = _MARKS[kind](data, name) if kind in _MARKS else Marks()
+def _marks(data: bytes, kind: Kind) -> Callable[[str], Marks]:
+    """How the marks of a sheet are found; those of .ods before anything else, since its cells may repeat without end."""
+    if kind == "ods":
+        sheets = ods_marks.read(data)
+        for name, marks in sheets.items():
+            _refuse_vast(name, marks)
+        return lambda name: sheets.get(name, Marks())
+    return partial(xlsx_marks.read if kind == "xlsx" else xls_marks.read, data)
+
+
+def _refuse_vast(name: str, marks: Marks) -> None:
     if marks.rows * marks.columns > MOST_CELLS:
         raise refusals.TooManyCellsInSheet(name, marks.rows, marks.columns)
+
+
+def _sheet(book: calamine.CalamineWorkbook, marks_of: Callable[[str], Marks], name: str, others: Sequence[str]) -> Sheet:
+    marks = marks_of(name)
+    _refuse_vast(name, marks)
     found = _guarded(lambda: book.get_sheet_by_name(name))
-    if kind != "ods":  # the merged ranges of .ods are among its marks already
+    if not marks.spans:  # those of .ods are known already
         marks.spans.extend(Span(a[0] + 1, b[0] + 1, a[1], b[1]) for a, b in _guarded(lambda: found.merged_cell_ranges) or [])
     values = cell_values.marked(_guarded(lambda: found.to_python(skip_empty_area=False)), marks)
     return Sheet(name, values, marks, Found(_decisions(name, others, marks), spans=tuple(marks.spans)))

@@ -30,7 +30,9 @@ YIELDS = [12.5, 13.0, 10.25, 11.0, 9.5, 8.75, 7.0, 7.5]
 
 def text(rows: Iterable[Row], separator: str = ",", decimal: str = ".", end: str = "\n") -> str:
     """Delimited text with a decimal mark for its floats."""
-    return "".join(separator.join(str(cell).replace(".", decimal) if isinstance(cell, float) else str(cell) for cell in row) + end for row in rows)
+    return "".join(
+        separator.join(str(cell).replace(".", decimal) if isinstance(cell, float) else str(cell) for cell in row) + end for row in rows
+    )
 
 
 def read(content: str, encoding: str = "utf-8", **choices: str) -> Table:

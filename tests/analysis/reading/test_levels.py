@@ -2,8 +2,8 @@
 
 import pytest
 
-from tests.analysis.reading.files import labels, read
 from analysis.table import Levels
+from tests.analysis.reading.files import labels, read
 
 
 def levels(*cells: str) -> Levels:

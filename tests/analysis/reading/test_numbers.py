@@ -118,7 +118,29 @@ class TestUnits:
         assert "\n" not in str(refusal.value)
 
 
-MISSING = ["", "NA", "N/A", "n.a.", "n.d.", "nan", "null", "none", "-", "–", ".", "?", "#N/A", "#DIV/0!", "#REF!", "NaN", "NULL", "None", "Na", "#VALUE!", "--"]
+MISSING = [
+    "",
+    "NA",
+    "N/A",
+    "n.a.",
+    "n.d.",
+    "nan",
+    "null",
+    "none",
+    "-",
+    "–",
+    ".",
+    "?",
+    "#N/A",
+    "#DIV/0!",
+    "#REF!",
+    "NaN",
+    "NULL",
+    "None",
+    "Na",
+    "#VALUE!",
+    "--",
+]
 
 
 @pytest.mark.parametrize("word", [*MISSING, "inf", "-Inf", "∞", " na ", "\u00a0"])
@@ -137,7 +159,8 @@ def test_all_missing_words_at_once_add_up() -> None:
 @pytest.mark.parametrize("cell", ["<0.5", ">100", "< 0,5", "≤ 2 mg", "≥5", "<LOD", "bdl"])
 def test_detection_limits_are_missing_and_named_apart(cell: str) -> None:
     found = response("1.5", cell, "2.5")
-    assert found.values[0] == 1.5 and np.isnan(found.values[1])
+    assert found.values[0] == 1.5
+    assert np.isnan(found.values[1])
     assert found.missing[0].why == f"“{cell}” is beyond a detection limit"
     assert any("beyond a detection limit" in note and "row 3" in note for note in found.notes)
 
@@ -181,7 +204,9 @@ class TestExactDifferences:
         assert found.offsets[[0, 2]].tolist() == [0.4, 0.3]
         assert np.isnan(found.offsets[1])
 
-    @pytest.mark.parametrize("cells", [("123456.78901", "123456.78902"), ("0.12345678", "0.12345679"), ("-5000001.25", "-5000002.75"), ("1e9", "1000000001")])
+    @pytest.mark.parametrize(
+        "cells", [("123456.78901", "123456.78902"), ("0.12345678", "0.12345679"), ("-5000001.25", "-5000002.75"), ("1e9", "1000000001")]
+    )
     def test_offset_plus_pivot_is_the_decimal(self, cells: tuple[str, ...]) -> None:
         found = response(*cells)
         for cell, offset in zip(cells, found.offsets, strict=True):
