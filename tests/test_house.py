@@ -103,7 +103,8 @@ def test_public_things_say_what_they_are() -> None:
 def test_no_fault_is_swallowed() -> None:
     broad = {None, "Exception", "BaseException"}
     found = [f"{relative(file)}:{node.lineno}" for file in CODE for node in ast.walk(sources.tree(file))
-             if isinstance(node, ast.ExceptHandler) and (ast.unparse(node.type) if node.type else None) in broad]
+             if isinstance(node, ast.ExceptHandler) and (ast.unparse(node.type) if node.type else None) in broad
+             and not isinstance(node.body[-1], ast.Raise)]
     assert not found
 
 
