@@ -15,6 +15,7 @@ from analysis import anova, answers, checking, contrasts, design, families, lett
 from analysis.answers import Answer
 from analysis.cells import Strata, cells_of, strata_of
 from analysis.design import Design
+from analysis.evidence import Evidence
 from analysis.families import Choices, Slice
 from analysis.layout import lay_out
 from analysis.model import Model, Surfaces
@@ -212,7 +213,7 @@ class Findings:
     def answers(self) -> tuple[Answer, ...]:
         """The three questions in words."""
         return answers.three_answers(
-            answers.Evidence(
+            Evidence(
                 layout=self.layout,
                 study=self.study,
                 table=self.used_table,
@@ -242,6 +243,11 @@ class Findings:
             }
         )
 
+    @property
+    def notes(self) -> tuple[str, ...]:
+        """What the reader decided and what the layout means for the answers, in sentences."""
+        return (*self.observed.notes, *design.notes(self.layout))
+
     @cached_property
     def design(self) -> Mapping[str, Any]:
         """The layout as the object tells it."""
@@ -259,7 +265,7 @@ class Findings:
             "connected": layout.connected,
             "observations": observed.readings,
             "left_out": [{"row": entry.row, "why": entry.why} for entry in observed.left_out],
-            "notes": [*observed.notes, *design.notes(layout), *self._undefined()],
+            "notes": [*self.notes, *self._undefined()],
         }
 
     def _undefined(self) -> list[str]:

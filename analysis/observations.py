@@ -6,6 +6,7 @@ from functools import cached_property
 import numpy as np
 from numpy.typing import NDArray
 
+from analysis.naming import level_told, listed, word_and_unit
 from analysis.scales import Scale
 from analysis.table import LeftOut
 
@@ -25,6 +26,16 @@ class Factor:
     def size(self) -> int:
         """Number of levels."""
         return len(self.levels)
+
+    @property
+    def word(self) -> str:
+        """The name as it reads in a sentence, without a unit in brackets."""
+        return word_and_unit(self.name)[0]
+
+    def told(self, *levels: str) -> str:
+        """Return levels as they read in a sentence."""
+        word, unit = word_and_unit(self.name)
+        return listed([level_told(word, unit, level) for level in levels])
 
     def at(self, rows: NDArray[np.intp]) -> "Factor":
         """Return the factor over some of the observations."""
@@ -52,6 +63,20 @@ class Observations:
     def shape(self) -> tuple[int, int]:
         """Numbers of row levels and column levels."""
         return self.row.size, self.column.size
+
+    @property
+    def word(self) -> str:
+        """The response as it reads in a sentence, without a unit in brackets."""
+        return word_and_unit(self.response)[0]
+
+    @property
+    def unit(self) -> str | None:
+        """The unit of the response: from its cells, or in brackets behind its name."""
+        return self.response_unit or word_and_unit(self.response)[1]
+
+    def factor(self, name: str) -> Factor:
+        """Return the row or column factor of this name."""
+        return self.row if name == self.row.name else self.column
 
     @property
     def size(self) -> int:

@@ -21,18 +21,17 @@ class Size:
     lower: float
     upper: float
     verdict: str  # the most decided verdict in the family
-    factor: str  # whose levels are compared; empty for differences of differences
     levels: tuple[str, ...]  # the two compared
     all_small: bool  # every comparison lies inside ±the smallest difference that matters
 
 
-def largest(frame: pd.DataFrame | None, scale: Scale, factor: str) -> Size | None:
+def largest(frame: pd.DataFrame | None, scale: Scale) -> Size | None:
     """Return the size of the largest difference of a family with its adjusted interval, or None where nothing is estimable."""
     if frame is None or frame["difference"].dropna().empty:
         return None
     known = frame.dropna(subset=["difference"])
     at = known.iloc[int(known["difference"].abs().to_numpy(float).argmax())]
-    return _size(at, ("lower_adjusted", "upper_adjusted"), known["verdict"].tolist(), scale, factor, (str(at["left"]), str(at["right"])))
+    return _size(at, ("lower_adjusted", "upper_adjusted"), known["verdict"].tolist(), scale, (str(at["left"]), str(at["right"])))
 
 
 def largest_contrast(frame: pd.DataFrame | None, matters: float | None, scale: Scale) -> Size | None:
@@ -43,10 +42,10 @@ def largest_contrast(frame: pd.DataFrame | None, matters: float | None, scale: S
     limit = matters if scale.is_identity else None
     found = verdicts.verdicts(known["lower"].to_numpy(float), known["upper"].to_numpy(float), limit)
     at = known.iloc[int(known["difference"].abs().to_numpy(float).argmax())]
-    return _size(at, ("lower", "upper"), found.tolist(), scale, "", ())
+    return _size(at, ("lower", "upper"), found.tolist(), scale, ())
 
 
-def _size(at: pd.Series, names: tuple[str, str], found: list[str], scale: Scale, factor: str, levels: tuple[str, ...]) -> Size:
+def _size(at: pd.Series, names: tuple[str, str], found: list[str], scale: Scale, levels: tuple[str, ...]) -> Size:
     """Return a size with a positive effect, the ends of its interval turned with it, in original units for ratios."""
     ends = np.array([at["difference"], at[names[0]], at[names[1]]], dtype=float)
     if ends[0] < 0:
@@ -56,7 +55,7 @@ def _size(at: pd.Series, names: tuple[str, str], found: list[str], scale: Scale,
     strongest = next((v for v in (verdicts.LARGER, verdicts.DIFFERS, verdicts.SMALL) if v in found), found[0])
     small = all(v in SMALL_ENOUGH for v in found)
     effect, lower, upper = ends.tolist()
-    return Size(effect, float(at["se"]), float(at["df"]), lower, upper, strongest, factor, levels, small)
+    return Size(effect, float(at["se"]), float(at["df"]), lower, upper, strongest, levels, small)
 
 
 def turns(frame: pd.DataFrame | None) -> bool:
