@@ -30,8 +30,8 @@ class LiveLine:
         """Write the news again with the seconds gone by, so that one sees it is alive."""
         text = f"  {self._news} · {self.seconds:.0f} s"
         if self._over:
-            width = shutil.get_terminal_size().columns - 1
-            self._write(f"\r\x1b[2K{text[:width]}")
+            width = _width()
+            self._write(f"\r{text[:width]:<{width}}")  # spaces, since not every terminal takes a code that clears the line
         elif time.monotonic() - self._told >= LOG_SECONDS:
             self._told = time.monotonic()
             self._write(f"{text}\n")
@@ -39,7 +39,7 @@ class LiveLine:
     def clear(self) -> None:
         """Take the news away."""
         if self._over:
-            self._write("\r\x1b[2K")
+            self._write(f"\r{'':{_width()}}\r")
 
     def keep(self, text: str) -> None:
         """Write a line that stays."""
@@ -49,3 +49,7 @@ class LiveLine:
     def _write(self, text: str) -> None:
         self._out.write(text)
         self._out.flush()
+
+
+def _width() -> int:
+    return shutil.get_terminal_size().columns - 1
