@@ -112,6 +112,7 @@ def compared(findings: Findings) -> Answer:
 def families_told(findings: Findings) -> tuple[str, ...]:
     """Return the families of comparisons that the story shows."""
     row, column = findings.study.factors
+    wanted: tuple[str, ...]
     if depends(findings):
         wanted = (within_name(column, row),)
     else:

@@ -13,7 +13,7 @@ ROWS_TOLD = 12  # rows left out that the notes name one by one; the workbook nam
 
 def notes(findings: Findings, own: Iterable[str]) -> str:
     """Return the speaker notes of a board: its own lines, then what holds for the whole study."""
-    parts = ["\n".join(own), model_notes(findings), caveats(findings), CAUTION]
+    parts = ["\n".join(own), model_notes(findings), "\n".join(f"Note: {sentence}" for sentence in caveats(findings)), CAUTION]
     return "\n\n".join(part for part in parts if part)
 
 
@@ -95,10 +95,10 @@ def model_notes(findings: Findings) -> str:
     )
 
 
-def caveats(findings: Findings) -> str:
+def caveats(findings: Findings) -> list[str]:
     """Tell the open doubts and the notes on the design."""
-    doubts = [] if findings.doubts is None else list(findings.doubts["sentence"])
-    return "\n".join(f"Note: {sentence}" for sentence in (*doubts, *findings.design["notes"]))
+    doubts: list[str] = [] if findings.doubts is None else list(findings.doubts["sentence"])
+    return [*doubts, *findings.design["notes"]]
 
 
 def family_line(findings: Findings, families: Sequence[str]) -> str:

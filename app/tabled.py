@@ -1,6 +1,7 @@
 """The tables of the story as text: counts, answers and comparisons as they are told, largest differences first."""
 
 from collections.abc import Iterator, Sequence
+from typing import Any
 
 import numpy as np
 import pandas as pd
@@ -43,8 +44,13 @@ def numbers(findings: Findings) -> str:
 def read_cells(findings: Findings) -> Iterator[str]:
     """Read out the estimate of every cell with its interval, one line each."""
     for cell in findings.cells.itertuples():
-        mean = words.with_interval(cell.estimate, cell.lower, cell.upper, cell.se) if cell.n else words.EMPTY
+        mean = with_interval(cell) if cell.n else words.EMPTY
         yield f"{cell.row}, {cell.column}: {mean}, n = {cell.n}"
+
+
+def with_interval(cell: Any) -> str:
+    """Return the estimate of a cell with its interval."""
+    return words.with_interval(cell.estimate, cell.lower, cell.upper, cell.se)
 
 
 def answers(findings: Findings) -> pd.DataFrame:
@@ -72,7 +78,8 @@ def answers_alt(findings: Findings) -> str:
 
 def by_size(findings: Findings, families: Sequence[str]) -> pd.DataFrame:
     """Return the comparisons of some families in one frame with their family, the largest differences first."""
-    frames = [findings.comparisons[name].assign(family=name) for name in families]
+    found = [(name, findings.comparisons[name]) for name in families]
+    frames = [frame.assign(family=name) for name, frame in found if frame is not None]
     together = pd.concat(frames, ignore_index=True) if frames else pd.DataFrame(columns=["difference"])
     known = together[together["difference"].notna()]
     order = known["difference"].abs().sort_values(ascending=False, kind="stable").index
@@ -89,8 +96,8 @@ def comparisons(findings: Findings, families: Sequence[str]) -> pd.DataFrame:
             place: [c.family if sides else c.within for c in frame.itertuples()],
             "compared": [pair(c.left, c.right, findings.observed.scale.tells_ratios) for c in frame.itertuples()],
             difference_head(findings): [size(c) for c in frame.itertuples()],
-            "p adjusted": [rounding.p_number(c.p_adjusted) for c in frame.itertuples()],
-            "reading": [words.VERDICTS[c.verdict] for c in frame.itertuples()],
+            "p adjusted": [rounding.p_number(p) for p in frame.get("p_adjusted", ())],
+            "reading": [words.VERDICTS[verdict] for verdict in frame.get("verdict", ())],
         },
         dtype=object,
     )
@@ -109,14 +116,13 @@ def difference_head(findings: Findings) -> str:
     return f"{what} ({rounding.percent(findings.study.confidence)} interval)"
 
 
-def size(comparison: object) -> str:
+def size(comparison: Any) -> str:
     """Return a difference, or the ratio that it stands for, with its adjusted interval."""
-    told = getattr(comparison, "told", None)
+    c, told = comparison, getattr(comparison, "told", None)
     if told:
         ends = [rounding.significant(told[name]) for name in ("estimate", "lower_adjusted", "upper_adjusted")]
         return f"{ends[0]} ({ends[1]} to {ends[2]})"
-    c = comparison
-    return words.with_interval(c.difference, c.lower_adjusted, c.upper_adjusted, c.se)  # type: ignore[attr-defined]
+    return words.with_interval(c.difference, c.lower_adjusted, c.upper_adjusted, c.se)
 
 
 def comparisons_alt(findings: Findings, families: Sequence[str]) -> str:

@@ -4,8 +4,8 @@ import io
 from collections.abc import Sequence
 from dataclasses import replace
 
-import openpyxl
 from lxml import etree
+from openpyxl.reader.excel import load_workbook
 from pptx.chart.axis import ValueAxis
 from pptx.chart.chart import Chart
 from pptx.chart.data import XyChartData
@@ -210,7 +210,6 @@ def mixed(hue: str, ground: str, strength: float) -> str:
 
 
 def _draw_line(series: XySeries, line: Line, inks: Inks) -> None:
-    series.smooth = False
     series.format.line.color.rgb = RGBColor.from_string(line.hue)
     series.format.line.width = Pt(LINE_WIDE)
     series.format.line.dash_style = DASHES[line.dash]
@@ -247,7 +246,7 @@ def _label(series: XySeries, number: int, words: str, position: XL_LABEL_POSITIO
 def _write_bars_and_gaps(chart: Chart, plot: Plot) -> None:
     """Add the intervals beside the means in the chart's own workbook and as bars; leave gaps where there is no estimate."""
     part = chart.part.chart_workbook
-    book = openpyxl.load_workbook(io.BytesIO(part.xlsx_part.blob))
+    book = load_workbook(io.BytesIO(part.xlsx_part.blob))
     sheet = book[_SHEET]
     for line, series in zip(plot.lines, _means(chart, plot), strict=True):
         first, last = _rows(series)

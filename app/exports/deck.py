@@ -2,6 +2,7 @@
 
 from collections.abc import Sequence
 from dataclasses import dataclass
+from typing import Any
 
 from pptx.slide import Slide
 from pptx.util import Pt
@@ -9,12 +10,13 @@ from pptx.util import Pt
 from analysis.findings import Findings
 from app.boards import Board
 from app.exports import chart, fit, master, plot, tables
+from app.exports.setting import Dress, fitted
 from app.look import DESK, SLIDE
 
 DRESSES = {
-    "question": tables.Dress(strong=0, tiles=True),
-    "answers": tables.Dress(strong=1, every_row=True),
-    "comparisons": tables.Dress(strong=2, ordered_by="largest"),
+    "question": Dress(strong=0, tiles=True),
+    "answers": Dress(strong=1, every_row=True),
+    "comparisons": Dress(strong=2, ordered_by="largest"),
 }
 
 
@@ -28,8 +30,20 @@ class Shown:
 
 def inks() -> master.Inks:
     """Return the colours of the deck."""
-    colours = (DESK.paper, DESK.panel, DESK.shades[0], SLIDE.ink, SLIDE.quiet, DESK.rule, SLIDE.accent)
-    return master.Inks(*(colour.lstrip("#") for colour in colours), levels=tuple(hue.lstrip("#") for hue in SLIDE.hues))
+    return master.Inks(
+        paper=_digits(DESK.paper),
+        panel=_digits(DESK.panel),
+        field=_digits(DESK.shades[0]),
+        ink=_digits(SLIDE.ink),
+        quiet=_digits(SLIDE.quiet),
+        rule=_digits(DESK.rule),
+        accent=_digits(SLIDE.accent),
+        levels=tuple(map(_digits, SLIDE.hues)),
+    )
+
+
+def _digits(colour: str) -> str:
+    return colour.removeprefix("#")
 
 
 def build(boards: Sequence[Board], findings: Findings) -> bytes:
@@ -48,15 +62,21 @@ def build(boards: Sequence[Board], findings: Findings) -> bytes:
 
 def _claim(slide: Slide, board: Board) -> None:
     """Write the claim as the slide's title, in the largest type that lets it fit."""
-    wide, tall = master.CLAIM.wide / tables.BOLD, master.CLAIM.tall
+    wide, tall = master.CLAIM.wide / fit.BOLD, master.CLAIM.tall
     points = fit.largest_type(board.claim, master.CLAIM_SIZES, wide, tall)
-    slide.shapes.title.text_frame.text = fit.shorten(board.claim, points, wide, fit.lines_in(tall, points))
-    slide.shapes.title.text_frame.paragraphs[0].runs[0].font.size = Pt(points)
+    frame = _place(slide, 0).text_frame
+    frame.text = fit.shorten(board.claim, points, wide, fit.lines_in(tall, points))
+    frame.paragraphs[0].runs[0].font.size = Pt(points)
+
+
+def _place(slide: Slide, number: int) -> Any:
+    """Return the placeholder of a slide with this number; the title's is 0, and each kind of content has a class of its own."""
+    return next(shape for shape in slide.placeholders if shape.placeholder_format.idx == number)
 
 
 def _content(slide: Slide, board: Board, findings: Findings) -> Shown:
     """Put the figure or the table on a slide."""
-    place = next(shape for shape in slide.placeholders if shape.placeholder_format.idx == master.CONTENT)
+    place = _place(slide, master.CONTENT)
     if board.figure:
         drawn = plot.plan(findings)
         master.describe(chart.add(place, drawn, inks()), board.kind.capitalize(), board.alt)
@@ -64,8 +84,8 @@ def _content(slide: Slide, board: Board, findings: Findings) -> Shown:
     if board.table is None or board.table.empty:
         place.element.getparent().remove(place.element)
         return Shown("", ())
-    dress = DRESSES.get(board.kind, tables.Dress())
-    content = tables.fitted(board.table, dress)
+    dress = DRESSES.get(board.kind, Dress())
+    content = fitted(board.table, dress)
     master.describe(tables.add(place, content, dress, inks()), board.kind.capitalize(), board.alt)
     return Shown(content.cut, content.shortened)
 
@@ -73,9 +93,8 @@ def _content(slide: Slide, board: Board, findings: Findings) -> Shown:
 def _evidence(slide: Slide, board: Board, shown: Shown) -> None:
     """Write the line of evidence; what was left away is said first."""
     text = " · ".join(filter(None, (shown.rule and f"Shown: {shown.rule}; the workbook holds all", board.evidence)))
-    place = next(shape for shape in slide.placeholders if shape.placeholder_format.idx == master.WORDS)
     lines = fit.lines_in(master.EVIDENCE.tall, master.SMALLEST)
-    place.text_frame.text = fit.shorten(text, master.SMALLEST, master.EVIDENCE.wide, lines)
+    _place(slide, master.WORDS).text_frame.text = fit.shorten(text, master.SMALLEST, master.EVIDENCE.wide, lines)
 
 
 def _notes(board: Board, shown: Shown) -> str:

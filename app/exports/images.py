@@ -1,7 +1,11 @@
-"""Pictures of a figure as files: PNG and SVG, drawn by an installed browser without touching the network."""
+"""Pictures of figures as files: PNG and SVG, drawn by an installed browser without touching the network."""
 
+import asyncio
 import io
 import os
+from collections.abc import Sequence
+from concurrent.futures import ThreadPoolExecutor
+from dataclasses import dataclass
 from pathlib import Path
 
 import kaleido
@@ -11,10 +15,24 @@ from PIL import Image
 
 from analysis.refusals import NoBrowser
 
-WIDE, TALL = 1152, 648  # px at one to the inch's 96th, where the figure names no size of its own
+WIDE, TALL = 1152, 648  # px, where the figure names no size of its own
 NOWHERE = "http://127.0.0.1:9"  # the discard port of this machine: whatever the browser asks of the network ends here
-_MILLIMETRES = 25.4
-_CSS_DPI = 96
+PX_TO_THE_INCH = 96  # as browsers count them
+
+
+@dataclass(frozen=True)
+class Drawing:
+    """A figure to be drawn: its format, and how many dots of a PNG stand for one px of the figure."""
+
+    figure: go.Figure
+    kind: str
+    scale: float = 1.0
+
+    @property
+    def options(self) -> dict[str, str | float]:
+        """Format and size as the renderer wants them."""
+        layout = self.figure.layout
+        return {"format": self.kind, "scale": self.scale, "width": layout.width or WIDE, "height": layout.height or TALL}
 
 
 def browser() -> str:
@@ -28,20 +46,36 @@ def browser() -> str:
 
 def png(figure: go.Figure, dpi: int = 300) -> bytes:
     """Return a PNG at a resolution in dots per inch, which the file names; raises NoBrowser."""
-    drawn = Image.open(io.BytesIO(_draw(figure, "png", dpi / _CSS_DPI)))
-    tagged = io.BytesIO()
-    drawn.convert("RGB").save(tagged, "PNG", dpi=(dpi, dpi), optimize=True)
-    return tagged.getvalue()
+    return pngs_and_svgs([figure], dpi)[0][0]
 
 
 def svg(figure: go.Figure) -> bytes:
     """Return an SVG, whose lines and letters stay sharp at any size; raises NoBrowser."""
-    return _draw(figure, "svg", 1)
+    return _drawn([Drawing(figure, "svg")])[0]
 
 
-def _draw(figure: go.Figure, kind: str, scale: float) -> bytes:
-    size = {"width": figure.layout.width or WIDE, "height": figure.layout.height or TALL}
+def pngs_and_svgs(figures: Sequence[go.Figure], dpi: int = 300) -> tuple[tuple[bytes, bytes], ...]:
+    """Return each figure as PNG and as SVG, all drawn by one start of the browser; raises NoBrowser."""
+    drawings = [drawing for figure in figures for drawing in (Drawing(figure, "png", dpi / PX_TO_THE_INCH), Drawing(figure, "svg"))]
+    files = _drawn(drawings)
+    return tuple((_tagged(png_file, dpi), svg_file) for png_file, svg_file in zip(files[::2], files[1::2], strict=True))
+
+
+def _tagged(png_file: bytes, dpi: int) -> bytes:
+    """Return a PNG that says how large it is meant to be: the renderer does not write its resolution."""
+    tagged = io.BytesIO()
+    Image.open(io.BytesIO(png_file)).convert("RGB").save(tagged, "PNG", dpi=(dpi, dpi), optimize=True)
+    return tagged.getvalue()
+
+
+def _drawn(drawings: Sequence[Drawing]) -> list[bytes]:
+    """Draw figures in a thread of its own, since the caller's may already run a loop of events."""
+    path = browser()
+    with ThreadPoolExecutor(1) as thread:
+        return thread.submit(asyncio.run, _draw(drawings, path)).result()
+
+
+async def _draw(drawings: Sequence[Drawing], path: str) -> list[bytes]:
     # Neither formulas nor fonts come from elsewhere: no MathJax, and a proxy that leads nowhere.
-    options = {"path": browser(), "mathjax": False, "proxy_server": NOWHERE}
-    drawn: bytes = kaleido.calc_fig_sync(figure, {"format": kind, "scale": scale, **size}, kopts=options)
-    return drawn
+    async with kaleido.Kaleido(path=path, mathjax=False, proxy_server=NOWHERE) as renderer:
+        return [await renderer.calc_fig(drawing.figure, drawing.options) for drawing in drawings]

@@ -3,6 +3,7 @@
 import io
 import re
 from dataclasses import dataclass
+from typing import Any
 
 from lxml import etree
 from pptx import Presentation
@@ -16,10 +17,16 @@ from pptx.util import Inches
 from app.exports import zips
 
 SMALLEST = 18  # points; nothing on a slide is smaller
-CLAIM_SIZES = (32, 30, 28, 26, 24, 22, 20)  # points, the largest that lets the claim fit
+CLAIM_SIZES = (32, 30, 28, 26, 24, 22, 20, SMALLEST)  # points, the largest that lets the claim fit
 FACE = "Arial"  # on every office machine, its metric twin on the others; figures all of one width
 _NAMESPACES = (
     'xmlns:a="http://schemas.openxmlformats.org/drawingml/2006/main" xmlns:p="http://schemas.openxmlformats.org/presentationml/2006/main"'
+)
+
+
+_MADE_BY = (
+    b'<?xml version="1.0" encoding="UTF-8" standalone="yes"?>\n<Properties xmlns="http://schemas.openxmlformats.org/officeDocument/2006/'
+    b'extended-properties"><Application>Crossgrain</Application></Properties>'
 )
 
 
@@ -137,10 +144,18 @@ def empty_deck() -> tuple[Deck, SlideLayout, SlideLayout]:
     for_table, for_chart, *others = deck.slide_layouts
     for layout in others:
         deck.slide_layouts.remove(layout)
+    _drop(deck, deck.part, "/printerSettings")
+    _drop(deck, deck.part.package, "/thumbnail")
     _furnish_master(deck)
     _furnish(for_table, "Claim and table", "tbl")
     _furnish(for_chart, "Claim and chart", "chart")
     return deck, for_table, for_chart
+
+
+def _drop(deck: Deck, owner: Any, kind: str) -> None:
+    """Take a part out of the file that is of no use to us: the library's printer settings, its picture of an empty slide."""
+    for relation in [relation for relation in deck.part.package.iter_rels() if relation.reltype.endswith(kind)]:
+        owner.drop_rel(relation.rId)
 
 
 def number(slide: Slide, layout: SlideLayout) -> None:
@@ -176,4 +191,5 @@ def saved(deck: Deck, title: str, inks: Inks) -> bytes:
     stream = io.BytesIO()
     deck.save(stream)
     themes = [f"ppt/theme/theme{k}.xml" for k in (1, 2)]  # the slides' and the notes'
-    return zips.settled(stream.getvalue(), {name: _theme(zips.part(stream.getvalue(), name), inks) for name in themes})
+    replaced = {name: _theme(zips.part(stream.getvalue(), name), inks) for name in themes}
+    return zips.settled(stream.getvalue(), {**replaced, "docProps/app.xml": _MADE_BY})

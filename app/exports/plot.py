@@ -20,7 +20,6 @@ _TICKS_WANTED = 5
 _NAMES_WIDE = 3.0  # inches that the names of the lines may take
 _NAME_LINES = 2
 _FEW = 4
-_BOLD = 1.07  # bold type is so much wider
 _AIR = 0.12  # inches between a text and what it stands beside
 _ROW = fit.height(1, SMALLEST)
 
@@ -156,16 +155,16 @@ def _heights(ends: Sequence[float], rows: Sequence[int], axis: Axis, tall: float
 
 def _line_names(scene: Scene) -> tuple[str, ...]:
     """Return the names of the lines, on two lines of text where there are few."""
-    return fit.names(scene.rows, SMALLEST, _NAMES_WIDE / _BOLD, 2 if len(scene.rows) <= _FEW else 1)
+    return fit.names(scene.rows, SMALLEST, _NAMES_WIDE / fit.BOLD, 2 if len(scene.rows) <= _FEW else 1)
 
 
 def plan(findings: Findings) -> Plot:
     """Return where everything of the interaction figure stands on a slide."""
     scene = Scene(findings)
     axis = axis_for(*scene.reach)
-    lines = [fit.wrap(name, SMALLEST, _NAMES_WIDE / _BOLD) for name in _line_names(scene)]
+    lines = [fit.wrap(name, SMALLEST, _NAMES_WIDE / fit.BOLD) for name in _line_names(scene)]
     heading = fit.shorten(findings.design["row_factor"], SMALLEST, _NAMES_WIDE)
-    right = max(fit.width(text, SMALLEST) for text in (heading, *(row for rows in lines for row in rows))) * _BOLD + 2 * _AIR
+    right = max(fit.width(text, SMALLEST) for text in (heading, *(row for rows in lines for row in rows))) * fit.BOLD + 2 * _AIR
     left = _ROW + axis.wide + 2 * _AIR
     slot = (BODY.wide - left - right) / (scene.label_place + 0.5)
     names = fit.names(scene.columns, SMALLEST, slot * 0.94, _NAME_LINES)

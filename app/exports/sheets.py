@@ -147,7 +147,7 @@ def _entries(found: object) -> Iterator[Mapping[str, object]]:
     if found is None or (isinstance(found, pd.DataFrame) and "leverage" in found):
         return
     if isinstance(found, pd.DataFrame):
-        yield from found.to_dict("records")
+        yield from ({str(head): value for head, value in row.items()} for row in found.to_dict("records"))
     elif isinstance(found, Mapping):
         yield found
     else:
@@ -177,7 +177,7 @@ def read_me(findings: Findings, others: Mapping[str, pd.DataFrame]) -> list[tupl
         ("Caution", speaker.CAUTION),
     ]
     lines += [(f"Sheet “{name}”", _extent(frame)) for name, frame in others.items()]
-    lines += [("Note", sentence) for sentence in speaker.caveats(findings).splitlines()]
+    lines += [("Note", sentence) for sentence in speaker.caveats(findings)]
     return [*lines, ("Computed with", ", ".join(f"{name} {version}" for name, version in findings.versions.items()))]
 
 

@@ -5,21 +5,27 @@ import re
 from collections.abc import Mapping, Sequence
 
 import pandas as pd
-from openpyxl import Workbook
-from openpyxl.cell import Cell
-from openpyxl.cell.cell import ILLEGAL_CHARACTERS_RE
-from openpyxl.styles import Alignment, Border, Font, PatternFill, Side
-from openpyxl.utils import get_column_letter
+from openpyxl.cell.cell import ILLEGAL_CHARACTERS_RE, Cell
+from openpyxl.styles.alignment import Alignment
+from openpyxl.styles.borders import Border, Side
+from openpyxl.styles.fills import PatternFill
+from openpyxl.styles.fonts import Font
+from openpyxl.utils.cell import get_column_letter
+from openpyxl.workbook.workbook import Workbook
+from openpyxl.worksheet.properties import PageSetupProperties
 from openpyxl.worksheet.worksheet import Worksheet
 
 from analysis import rounding
 from analysis.findings import Findings
 from app import words
-from app.exports import sheets, zips
+from app.exports import fit, sheets, zips
+from app.exports.master import FACE
 from app.look import DESK
 
 LONGEST = 32_767  # characters that a cell can hold
 NARROWEST, WIDEST = 9, 46  # characters of a column
+SIZE, LINE = 10, 13.5  # points: type, and a line of it
+HEAD_WIDE, TEXT_WIDE = 2.4, 7.6  # inches of the two columns of the first sheet
 _FORMULA = tuple("=+-@\t\r")
 _P = '[<0.001]"< 0.001";0.0000'
 _COUNTS = frozenset({"df", "n", "df1", "df2", "residual_df", "family_size", "row of the file"})
@@ -73,21 +79,33 @@ def _write_first(sheet: Worksheet, lines: Sequence[tuple[str, object]]) -> None:
     for row, (head, text) in enumerate(lines, start=2):
         write(sheet.cell(row, 1), head)
         write(sheet.cell(row, 2), text)
-    for row in sheet.iter_rows():
-        row[0].font = Font(bold=True, color=DESK.accent.lstrip("#"))
-        for cell in row:
+    for head, text in sheet.iter_rows():
+        head.font, text.font = Font(FACE, SIZE, bold=True, color=DESK.accent.lstrip("#")), Font(FACE, SIZE)
+        for cell in (head, text):
             cell.alignment = Alignment(wrap_text=True, vertical="top", horizontal="left")
+        lines = max(len(fit.wrap(str(text.value), SIZE, TEXT_WIDE)), len(fit.wrap(str(head.value), SIZE, HEAD_WIDE)))
+        sheet.row_dimensions[head.row].height = lines * LINE
     sheet.column_dimensions["A"].width, sheet.column_dimensions["B"].width = 34, 110
     sheet.freeze_panes = "A2"
     sheet.sheet_view.showGridLines = False
+    _set_page(sheet)
+
+
+def _set_page(sheet: Worksheet) -> None:
+    """Print all columns of a sheet on one page across, its first row on every page."""
+    sheet.page_setup.orientation = "landscape"
+    sheet.sheet_properties.pageSetUpPr = PageSetupProperties(fitToPage=True)
+    sheet.page_setup.fitToWidth, sheet.page_setup.fitToHeight = 1, 0
+    sheet.print_title_rows = "1:1"
 
 
 def _write_sheet(sheet: Worksheet, frame: pd.DataFrame, formats: Mapping[str, str]) -> None:
     """Write a frame below a frozen row of headings."""
-    heads = [str(name) for name in frame.columns]
+    heads, body, inset = [str(name) for name in frame.columns], Font(FACE, SIZE), Alignment(indent=1)
     for column, head in enumerate(heads, start=1):
-        write(sheet.cell(1, column), words.COLUMNS.get(head, head.replace("_", " ")))
-        _dress_head(sheet.cell(1, column))
+        write(sheet.cell(1, column), heading(head))
+        _dress_head(sheet.cell(1, column), pd.api.types.is_numeric_dtype(frame.iloc[:, column - 1]))
+    sheet.row_dimensions[1].height = 2.2 * LINE
     for row, values in enumerate(frame.itertuples(index=False), start=2):
         for column, (head, value) in enumerate(zip(heads, values, strict=True), start=1):
             typed = sheets.number_or_text(value)
@@ -95,18 +113,30 @@ def _write_sheet(sheet: Worksheet, frame: pd.DataFrame, formats: Mapping[str, st
                 continue
             cell = sheet.cell(row, column)
             write(cell, typed)
-            if not isinstance(typed, str):
+            cell.font = body
+            if isinstance(typed, str):
+                cell.alignment = inset
+            else:
                 cell.number_format = _format_of(head, typed, formats)
     _set_widths(sheet, frame)
     sheet.freeze_panes = "A2"
     sheet.auto_filter.ref = sheet.dimensions
+    _set_page(sheet)
 
 
-def _dress_head(cell: Cell) -> None:
-    cell.font = Font(bold=True, color=DESK.ink.lstrip("#"))
+def heading(name: str) -> str:
+    """Return what heads a column: the words of the screen where it has some, else the plain name."""
+    group, separator, own = name.rpartition(": ")
+    told = words.COLUMNS.get(own, own.replace("_", " ").replace("eta2", "η²").replace("omega2", "ω²"))
+    return group + separator + told
+
+
+def _dress_head(cell: Cell, of_numbers: bool) -> None:
+    cell.font = Font(FACE, SIZE, bold=True, color=DESK.ink.lstrip("#"))
     cell.fill = PatternFill("solid", fgColor=DESK.shades[0].lstrip("#"))
     cell.border = Border(bottom=Side(style="medium", color=DESK.accent.lstrip("#")))
-    cell.alignment = Alignment(wrap_text=True, vertical="bottom")
+    side = {"horizontal": "right"} if of_numbers else {"indent": 1}
+    cell.alignment = Alignment(wrap_text=True, vertical="bottom", **side)
 
 
 def _set_widths(sheet: Worksheet, frame: pd.DataFrame) -> None:
@@ -121,7 +151,7 @@ def _set_widths(sheet: Worksheet, frame: pd.DataFrame) -> None:
 def write(cell: Cell, value: object) -> None:
     """Write a number as a number and text as text; text that starts like a formula stays text, here and when it is copied on."""
     if not isinstance(value, str):
-        cell.value = value  # type: ignore[assignment]
+        cell.value = value
         return
     text = ILLEGAL_CHARACTERS_RE.sub("\N{REPLACEMENT CHARACTER}", value)[:LONGEST]
     cell.value = text
