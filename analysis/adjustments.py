@@ -63,10 +63,12 @@ def single_step(family: Family, p: Floats, critical: float) -> Adjusted:
 
 
 def unadjusted(family: Family) -> Adjusted:
+    """Leave every comparison at its own p-value and t quantile."""
     return single_step(family, _p(family), stats.t.isf(family.alpha / 2, family.df))
 
 
 def bonferroni(family: Family) -> Adjusted:
+    """Multiply every p-value by the number of comparisons."""
     return single_step(family, family.size * _p(family), _bonferroni_critical(family))
 
 

@@ -10,6 +10,8 @@ from analysis.distributions.pieces import Floats
 SPAN = 9  # Poisson standard deviations summed on either side; they leave out less than 1e-17
 FINENESS = 3  # terms per Poisson standard deviation: taking every nth term of so smooth a series is exact to exp(-2π² 3²)
 
+BEYOND_BETA = 1e50  # a first parameter so great that the beta distribution is a gamma distribution to all digits
+
 
 @lru_cache(maxsize=1024)
 def noncentrality_interval(f: float, df1: float, df2: float, confidence: float) -> tuple[float, float]:
@@ -53,13 +55,19 @@ def tail_probability(f: float, df1: float, df2: float, noncentrality: float, upp
     stride = max(1.0, np.floor(sd / FINENESS))
     first = max(0.0, np.floor(rate - SPAN * sd))
     terms = first + stride * np.arange(np.ceil((2 * SPAN * sd + 30) / stride))
+    each = _central_tail(f, df1, df2, terms, upper)
+    return float(_poisson_weights(terms, rate) @ each)
+
+
+def _central_tail(f: float, df1: float, df2: float, terms: Floats, upper: bool) -> Floats:
+    """Return the tail at f of the beta (or gamma) distribution that goes with each Poisson term."""
     a = df1 / 2 + terms
     if np.isinf(df2):
-        each = special.gammaincc(a, f * df1 / 2) if upper else special.gammainc(a, f * df1 / 2)
-    else:
-        y = 1 / (1 + df1 * f / df2)  # the small side of the beta variable: 1 - y would round for great f
-        each = special.betainc(df2 / 2, a, y) if upper else special.betaincc(df2 / 2, a, y)
-    return float(_poisson_weights(terms, rate) @ each)
+        return np.asarray(special.gammaincc(a, f * df1 / 2) if upper else special.gammainc(a, f * df1 / 2))
+    y = 1 / (1 + df1 * f / df2)  # the small side of the beta variable: 1 - y would round for great f
+    if a[0] > BEYOND_BETA:
+        return np.asarray(special.gammainc(df2 / 2, a * y) if upper else special.gammaincc(df2 / 2, a * y))
+    return np.asarray(special.betainc(df2 / 2, a, y) if upper else special.betaincc(df2 / 2, a, y))
 
 
 def _poisson_weights(terms: Floats, rate: float) -> Floats:
