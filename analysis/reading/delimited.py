@@ -13,13 +13,13 @@ import pyarrow.compute as pc
 from pyarrow import csv as arrow_csv
 
 from analysis import refusals
-from analysis.reading import spaces
+from analysis.reading import line_lengths, spaces
 from analysis.reading.records import HEAD, Body, Found, Record, trimmed
 from analysis.table import Rows
 
 LONGEST_CELL = 32_767  # characters, the most that a spreadsheet holds in a cell
 _END = "\x03"  # a last record of our own; where it is swallowed, a quotation mark was left open
-_CHUNK = 50_000  # records turned into columns at a time
+_CHUNK = 4_000  # records turned into columns at a time; more would keep the collector of cycles busy
 _BLOCK = 1 << 22  # bytes that Arrow parses at a time
 
 
@@ -69,7 +69,7 @@ class Delimited:
     @cached_property
     def _spaced_quotes(self) -> bool:
         """Whether quotation marks follow the separator after a space."""
-        return f'{self.delimiter} "'.encode() in self.data
+        return b'"' in self.data and f'{self.delimiter} "'.encode() in self.data
 
     def _refuse(self, row: int, text: str, error: csv.Error) -> None:
         if "field larger" in str(error) and text.count('"') % 2 == 0:
@@ -92,31 +92,22 @@ class Delimited:
                 raise refusals.CellTooLong(int(rows[long[0]]), LONGEST_CELL)
 
     def _quick(self, start: int, width: int) -> tuple[tuple[pa.StringArray, ...], Rows] | None:
-        """Let Arrow parse the lines below the header; None unless each is one record of the full width."""
+        """Let Arrow parse the lines below the header; None where quotation marks ask for more care than it takes."""
         offset = self._offset(start)
-        if (
-            offset is None
-            or self._spaced_quotes
-            or self.data.count(b'"') % 2
-            or len(self.delimiter.encode()) > 1
-            or not self.data[offset:].strip()
-        ):
+        if offset is None or len(self.delimiter.encode()) > 1:
+            return None
+        marks = self.data.count(b'"', offset)
+        if marks % 2 or (marks and self._spaced_quotes):
             return None
         lines = self.data.count(b"\n", offset) + (not self.data.endswith(b"\n"))
-        names = [str(index) for index in range(width)]
-        try:
-            table = arrow_csv.read_csv(
-                pa.BufferReader(pa.py_buffer(self.data).slice(offset)),
-                read_options=arrow_csv.ReadOptions(column_names=names, block_size=_BLOCK),
-                parse_options=arrow_csv.ParseOptions(delimiter=self.delimiter),
-                convert_options=arrow_csv.ConvertOptions(column_types=dict.fromkeys(names, pa.string()), strings_can_be_null=False),
-            )
-        except pa.ArrowInvalid:
+        columns = _parsed(self.data, offset, self.delimiter, width)
+        if columns is not None and len(columns[0]) == lines:
+            return columns, np.arange(start + 1, start + 1 + lines, dtype=np.int64)
+        if marks:
             return None
-        if table.num_rows != lines:
-            return None
-        columns = tuple(table.column(index).combine_chunks() for index in range(width))
-        return columns, np.arange(start + 1, start + 1 + lines, dtype=np.int64)
+        regular = line_lengths.regular(self.data, offset, self.delimiter, width, start + 1)
+        columns = _parsed(regular.data, 0, self.delimiter, width)
+        return None if columns is None or len(columns[0]) != regular.rows.size else (columns, regular.rows)
 
     def _offset(self, start: int) -> int | None:
         """Where record number start begins, or None where a record before it runs over several lines."""
@@ -140,6 +131,21 @@ class Delimited:
                 part.append(pa.array(texts, pa.string()))
         columns = tuple(pa.concat_arrays(part) if part else pa.array([], pa.string()) for part in parts)
         return columns, np.array(numbers, dtype=np.int64)
+
+
+def _parsed(data: bytes, offset: int, delimiter: str, width: int) -> tuple[pa.StringArray, ...] | None:
+    """Parse regular lines from a place on, every cell as text; None where a line is not regular."""
+    names = [str(index) for index in range(width)]
+    try:
+        table = arrow_csv.read_csv(
+            pa.BufferReader(pa.py_buffer(data).slice(offset)),
+            read_options=arrow_csv.ReadOptions(column_names=names, block_size=_BLOCK),
+            parse_options=arrow_csv.ParseOptions(delimiter=delimiter),
+            convert_options=arrow_csv.ConvertOptions(column_types=dict.fromkeys(names, pa.string()), strings_can_be_null=False),
+        )
+    except pa.ArrowInvalid:
+        return None
+    return tuple(table.column(index).combine_chunks() for index in range(width))
 
 
 def _fitted(row: int, cells: list[str], width: int) -> list[str]:

@@ -15,6 +15,7 @@ from analysis.reading.words import counted
 from analysis.table import Decision, LeftOut
 
 Mask = npt.NDArray[np.bool_]
+_MARGINS = (" ", "\t", "\u00a0")  # what a cell of white space may begin with
 _TAIL = 40  # rows at the end among which totals are looked for
 _TOTAL = re.compile(
     r"(?:(?:grand|overall|general|column|row|sub)[ -]?)?(?:totals?|sums?|means?|averages?|avg|subtotals?|overall|"
@@ -88,7 +89,8 @@ def _all_blank(body: Body, first: int) -> Mask:
 def blank_cells(column: pa.StringArray) -> Mask:
     """Which cells of a column hold nothing but white space."""
     blank: Mask = pc.equal(column, "").to_numpy(zero_copy_only=False).astype(bool)
-    spaced = np.flatnonzero(pc.match_substring_regex(column, r"^[ \t\x{a0}]").to_numpy(zero_copy_only=False))
+    starts = [pc.starts_with(column, mark).to_numpy(zero_copy_only=False) for mark in _MARGINS]
+    spaced = np.flatnonzero(np.logical_or.reduce(starts))
     blank[[index for index in spaced if spaces.is_blank(column[int(index)].as_py())]] = True
     return blank
 

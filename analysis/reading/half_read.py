@@ -1,6 +1,5 @@
 """A response half read: its cells, the values found so far, and the texts that are not plain numbers."""
 
-from collections.abc import Sequence
 from dataclasses import dataclass, field
 from functools import cached_property
 
@@ -9,7 +8,7 @@ import numpy.typing as npt
 import pyarrow as pa
 
 from analysis.reading import marks, missing
-from analysis.reading.numerals import Numeral
+from analysis.reading.odd_cells import Odd
 from analysis.table import Floats, Rows
 
 
@@ -23,31 +22,6 @@ class Written:
     rows: Rows
     unit: str | None
     comma_separated: bool
-
-
-@dataclass(frozen=True, eq=False)
-class Odd:
-    """Cells that are not plain numbers: each different text once, and where it stands."""
-
-    where: npt.NDArray[np.intp]  # rows of the table
-    codes: npt.NDArray[np.intp]  # for each of those rows, the index of its text
-    texts: tuple[str, ...]  # tidy
-    numerals: tuple[Numeral | None, ...]
-
-    @cached_property
-    def first(self) -> npt.NDArray[np.intp]:
-        """For each text, the first row of the table that holds it."""
-        first = np.zeros(len(self.texts), dtype=np.intp)
-        first[self.codes[::-1]] = self.where[::-1]
-        return first
-
-    def rows_of(self, chosen: npt.NDArray[np.bool_]) -> npt.NDArray[np.intp]:
-        """Rows of the table whose text is chosen (a mask over texts)."""
-        return self.where[chosen[self.codes]]
-
-    def mask(self, chosen: Sequence[bool]) -> npt.NDArray[np.bool_]:
-        """A mask over texts."""
-        return np.array(chosen, dtype=bool).reshape(len(self.texts))
 
 
 @dataclass(eq=False)

@@ -1,15 +1,12 @@
 """How a column of text is read as measurements: numbers, units, missing words, detection limits, and a note on each."""
 
-from decimal import Decimal
-
 import numpy as np
-import numpy.typing as npt
 import pyarrow as pa
 import pyarrow.compute as pc
 
 from analysis import refusals
-from analysis.reading import marks, missing, numerals, offsets, response_notes, spaces, units
-from analysis.reading.half_read import Odd, Reading, Written
+from analysis.reading import marks, missing, odd_cells, offsets, response_notes, spaces, units
+from analysis.reading.half_read import Reading, Written
 from analysis.reading.numerals import Shape
 from analysis.table import Floats, LeftOut, Response, frozen
 
@@ -28,7 +25,7 @@ def read(written: Written) -> Response:
     reading = _begin(written)
     reading.decided = marks.decide(_shapes(reading), written.comma_separated)
     _settle_plain_thousands(reading)
-    _read_odd(reading)
+    reading.values[reading.odd.where] = reading.odd.values(reading.decided)
     _refuse_text(reading)
     unit = _unit(reading)
     reading.values[~np.isfinite(reading.values)] = np.nan
@@ -43,14 +40,14 @@ def _begin(written: Written) -> Reading:
     if written.numbers is None:
         whole = _cast(written.texts)
         if whole is not None:
-            return Reading(written, np.ones(whole.size, dtype=bool), whole, _odd(written.texts, np.empty(0, dtype=np.intp)))
+            return Reading(written, np.ones(whole.size, dtype=bool), whole, odd_cells.of(written.texts, np.empty(0, dtype=np.intp)))
     plain = pc.match_substring_regex(written.texts, _PLAIN).to_numpy(zero_copy_only=False).astype(bool)
     values = np.full(len(written.texts), np.nan)
     values[plain] = pc.cast(written.texts.filter(pa.array(plain)), pa.float64()).to_numpy(zero_copy_only=False)
     if written.numbers is not None:
         native = ~np.isnan(written.numbers)
         values[native], plain = written.numbers[native], plain | native
-    return Reading(written, plain, values, _odd(written.texts, np.flatnonzero(~plain)))
+    return Reading(written, plain, values, odd_cells.of(written.texts, np.flatnonzero(~plain)))
 
 
 def _cast(texts: pa.StringArray) -> Floats | None:
@@ -60,13 +57,6 @@ def _cast(texts: pa.StringArray) -> Floats | None:
     except pa.ArrowInvalid:
         return None
     return values.copy() if np.isfinite(values).all() else None
-
-
-def _odd(texts: pa.StringArray, where: npt.NDArray[np.intp]) -> Odd:
-    encoded = texts.take(pa.array(where)).dictionary_encode()
-    tidy = tuple(spaces.tidy(text) for text in encoded.dictionary.to_pylist())
-    codes = encoded.indices.to_numpy(zero_copy_only=False).astype(np.intp)
-    return Odd(where, codes, tidy, tuple(numerals.find(text) for text in tidy))
 
 
 def _shapes(reading: Reading) -> set[Shape]:
@@ -108,15 +98,6 @@ def _settle_plain_thousands(reading: Reading) -> None:
     reading.values[either] = np.round(reading.values[either])
 
 
-def _read_odd(reading: Reading) -> None:
-    """Give every odd cell that is a number its value."""
-    values = np.full(len(reading.odd.numerals), np.nan)
-    for index, numeral in enumerate(reading.odd.numerals):
-        if numeral is not None and reading.is_number[index]:
-            values[index] = float(numeral.plain(reading.decided.comma, reading.decided.point))
-    reading.values[reading.odd.where] = values[reading.odd.codes]
-
-
 def _refuse_text(reading: Reading) -> None:
     """Turn the column down where most of it is text, or where nothing in it is a number."""
     where = reading.odd.rows_of(reading.is_text)
@@ -148,10 +129,8 @@ def _decimals(reading: Reading) -> list[str]:
     texts = reading.written.texts.to_pylist() if native is None else [repr(float(value)) for value in reading.values]
     if reading.decided.point == "thousands":
         texts = [repr(float(value)) if plain else text for value, plain, text in zip(reading.values, reading.plain, texts, strict=True)]
-    for place, code in zip(reading.odd.where, reading.odd.codes, strict=True):
-        numeral = reading.odd.numerals[code]
-        if numeral is not None:
-            texts[place] = str(Decimal(numeral.plain(reading.decided.comma, reading.decided.point)))
+    for place, text in zip(reading.odd.where.tolist(), reading.odd.decimals(reading.decided).to_pylist(), strict=True):
+        texts[place] = text
     return texts
 
 

@@ -36,13 +36,14 @@ _PICTURES_AND_DOCUMENTS: tuple[tuple[bytes, str], ...] = (
     (b"%!PS", "a PostScript document"),
 )
 _OLE = b"\xd0\xcf\x11\xe0\xa1\xb1\x1a\xe1"
+_SOMETHING = re.compile(rb"[^\0\t\r\n \xef\xbb\xbf\xff\xfe]")
 _HTML = re.compile(rb"\s*(<!--.*?-->\s*)*<(!doctype\s+html|html|head|body|table|div|meta|style)\b", re.IGNORECASE | re.DOTALL)
 _XML = re.compile(rb"\s*<\?xml|\s*<[A-Za-z][\w:.-]*[^<>]*>\s*<", re.DOTALL)
 
 
 def kind_of(data: bytes) -> Kind:
     """Tell how a file is to be read; raises a refusal for an empty file and for what holds no table."""
-    if not data.strip(b"\0\t\r\n \xef\xbb\xbf\xff\xfe"):
+    if _SOMETHING.search(data) is None:
         raise refusals.EmptyFile()
     if data[:4] == b"PK\x03\x04" or data[:4] == b"PK\x05\x06":
         return _kind_of_archive(data)
