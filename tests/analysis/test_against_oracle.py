@@ -21,6 +21,7 @@ COLUMNS = ("a", "b", "block", "unit", "y")
 ALIKE = {"p", "p_adjusted"}
 RATIOS = {"ss", "ms", "f", "t", "se", "sd", "sigma", "residual_ms", "chi2", "cook", "student_internal", "student_external", "leverage"}
 SHARES = {"partial_eta2", "partial_eta2_lower", "partial_eta2_upper", "omega2", "partial_omega2", "r2", "adjusted_r2"}
+LABELS = {"scale", "term", "level", "row", "column", "factor", "within", "left", "right", "rows", "columns"}
 BOUNDS = {"lower", "upper", "lower_adjusted", "upper_adjusted"}
 
 
@@ -67,10 +68,12 @@ def disagreements(name: str, part: str) -> Iterator[tuple[str, Any, Any]]:
     adjust = case["choices"].get("adjust", "tukey") if part == "comparisons" else "none"
     for path, exact in paths.leaves(case["answer"][part]):
         value = value_at(found(name)[part], path)
-        if not isinstance(exact, str) or path.endswith(("scale", "term", "level", "row", "column", "factor", "within", "left", "right")):
-            if value != exact:
-                yield path, value, exact
-        elif value is None or abs(value - float(exact)) > allowed(path.rsplit("/")[-1], float(exact), spread, adjust):
+        key = path.rsplit("/")[-1]
+        if not isinstance(exact, str) or key in LABELS:
+            fits = value == exact
+        else:
+            fits = isinstance(value, float | int) and abs(value - float(exact)) <= allowed(key, float(exact), spread, adjust)
+        if not fits:
             yield path, value, exact
 
 

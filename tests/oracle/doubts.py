@@ -81,11 +81,12 @@ def case(a: Analysis, reading: Reading, row: Vector) -> Row:
     return line | {"student_internal": inside, "student_external": outside, "cook": inside**2 * number(h / (1 - h)) / a.model.rank}
 
 
-def hc3(a: Analysis, names: Names) -> list[Row] | None:
+def hc3(a: Analysis, names: Names) -> list[Row]:
     """Wald F of the equal-weight hypotheses, e^2 / (1 - h)^2 as variances (MacKinnon and White 1985, J. Econometrics 29, 305-325)."""
     rows = design_rows(a.x, a.full)
     if any(a.model.product(row, row) == 1 for row in rows) or (a.full and not a.x.complete):
-        return None
+        terms = (names.row, names.column, "interaction")[: 3 if a.full else 2]
+        return [{"term": term} | dict.fromkeys(("f", "df1", "df2", "p")) for term in terms]
     weights = [(r.y - a.model.value(row)) / (1 - a.model.product(row, row)) for r, row in zip(a.x.readings, rows, strict=True)]
     influences = [[e * share for share in spread(a.model, row)] for e, row in zip(weights, rows, strict=True)]
     return [wald(a, term, hypotheses, influences) for term, hypotheses in equal_weight_hypotheses(a, names)]

@@ -14,7 +14,9 @@ def at(whole: Any, path: str) -> Any:
 
 
 def one(rows: list[dict[str, Any]], step: str) -> dict[str, Any]:
-    """The row of a list that fits every key=value."""
+    """The row of a list that fits every key=value, or the row at a place."""
+    if step.isdecimal():
+        return rows[int(step)]
     wanted = dict(part.split("=", 1) for part in step.split("&"))
     found = [row for row in rows if all(word(row[key]) == value for key, value in wanted.items())]
     if len(found) != 1:
@@ -30,13 +32,14 @@ def word(value: Any) -> str:
 def leaves(whole: Any, path: str = "") -> Iterator[tuple[str, Any]]:
     """Every value with its path; rows of lists go by what names them, else by their place."""
     if isinstance(whole, Mapping):
-        for key, part in whole.items():
-            yield from leaves(part, f"{path}/{key}" if path else str(key))
-    elif isinstance(whole, list):
-        for place, row in enumerate(whole):
-            yield from leaves(row, f"{path}/{name_of(row) or place}")
+        steps = whole.items()
+    elif isinstance(whole, list) and not all(isinstance(part, str) for part in whole):
+        steps = [(name_of(row) or place, row) for place, row in enumerate(whole)]
     else:
         yield path, whole
+        return
+    for step, part in steps:
+        yield from leaves(part, f"{path}/{step}" if path else str(step))
 
 
 def name_of(row: Any) -> str | None:

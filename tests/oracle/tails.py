@@ -75,7 +75,7 @@ def noncentrality_at(f: mpf, df1: int, df2: int, below: mpf) -> mpf:
 
 
 STEP = mpf(4) / 100  # of log r; the spread of log s is at least 0.064 up to 120 degrees of freedom, so the rule errs by less than 1e-20
-LOWEST, HIGHEST = mp.log(mpf(10) ** -4), mp.log(mpf(26))  # below, the integrand vanishes; above, the range is surely smaller
+LOWEST, HIGHEST = mp.log(mpf(10) ** -4), mp.log(mpf(26))  # below, the range is surely larger; above, surely smaller
 
 
 def scale_density(s: mpf, df: int) -> mpf:
@@ -84,12 +84,12 @@ def scale_density(s: mpf, df: int) -> mpf:
 
 
 @cache
-def range_below(r: mpf, means: int) -> mpf:
-    """P(range of standard normals <= r), by the trapezoidal rule, which is exact to all digits for such bells."""
+def range_beyond(r: mpf, means: int) -> mpf:
+    """P(range of standard normals > r), by the trapezoidal rule, which is exact to all digits for such bells."""
     with mp.workdps(28):
         step = mpf(1) / 4
         inside = (mp.npdf(z) * (mp.ncdf(z) - mp.ncdf(z - r)) ** (means - 1) for z in (step * i for i in range(-44, 45)))
-        return means * step * mp.fsum(inside)
+        return 1 - means * step * mp.fsum(inside)
 
 
 @cache
@@ -97,7 +97,7 @@ def range_nodes(means: int) -> tuple[tuple[mpf, mpf], ...]:
     """The normal range at steps of log r, shared by every quantile and every number of degrees of freedom."""
     count = int((HIGHEST - LOWEST) / STEP)
     points = [mp.exp(LOWEST + STEP * i) for i in range(count + 1)]
-    return tuple((r, range_below(r, means)) for r in points)
+    return tuple((r, range_beyond(r, means)) for r in points)
 
 
 @cache
@@ -108,9 +108,9 @@ def studentised_range_tail(q: mpf, means: int, df: int) -> mpf:
     if q == 0:
         return mpf(1)
     with mp.workdps(28):
-        below = STEP * mp.fsum(scale_density(r / q, df) * share for r, share in range_nodes(means))
-        beyond = mp.gammainc(mpf(df) / 2, df * (mp.exp(HIGHEST + STEP / 2) / q) ** 2 / 2, mp.inf, regularized=True)
-        return 1 - below - beyond
+        between = STEP * mp.fsum(scale_density(r / q, df) * share for r, share in range_nodes(means))
+        below = mp.gammainc(mpf(df) / 2, 0, df * (mp.exp(LOWEST - STEP / 2) / q) ** 2 / 2, regularized=True)
+        return between + below
 
 
 @cache
