@@ -2,7 +2,8 @@
 
 import numpy as np
 
-from analysis.cells import Codes, Matrix
+from analysis.cells import Matrix
+from analysis.table import Codes
 
 
 def sum_to_zero(codes: Codes, size: int) -> Matrix:

@@ -10,10 +10,11 @@ from analysis.observations import Factor, Observations
 from analysis.refusals import LevelForEveryRow, NoUsableRow, TooManyCells, UnknownLevel
 from analysis.scales import NAMED, scale_named, transformed
 from analysis.study import Study
-from analysis.table import LeftOut, Levels, Response, Table
+from analysis.table import LeftOut, Levels, Response, Table, counts
 from analysis.units import averaged_to_units
 
 MOST_CELLS = 40_000
+Chosen = slice | NDArray[np.intp]  # the table rows analysed; a slice takes all of them without a copy
 Kept = Mapping[str, tuple[int, ...] | None]
 
 
@@ -29,11 +30,11 @@ def lay_out(study: Study) -> Observations:
     parts = {name: table.column(name).as_levels() for name in _level_columns(study)}
     kept = {name: _kept(name, levels, study.keep.get(name)) for name, levels in parts.items()}
     usable, reasons = _usable(table, response, parts, kept)
-    rows = np.flatnonzero(usable)
-    if rows.size == 0:
+    if not usable.any():
         raise NoUsableRow(str(study.response), table.rows)
+    rows: Chosen = slice(None) if usable.all() else np.flatnonzero(usable)
     factors = {name: _factor(name, parts[name], kept[name], rows) for name in _role_columns(study)}
-    _refuse_labels(factors, study, int(rows.size))
+    _refuse_labels(factors, study)
     notes = (*table.notes, *response.notes, *(n for levels in parts.values() for n in levels.notes), *_dropped(study, parts, factors))
     left_out = tuple(sorted((*table.left_out, *reasons), key=lambda entry: entry.row))
     observed = _observed(study, response, factors, rows)
@@ -85,22 +86,23 @@ def _not_kept(name: str, levels: Levels, i: int) -> str:
     return f"“{name}” is “{levels.labels[levels.codes[i]]}”, which is not among the levels kept"
 
 
-def _factor(name: str, levels: Levels, kept: tuple[int, ...] | None, rows: NDArray[np.intp]) -> Factor:
+def _factor(name: str, levels: Levels, kept: tuple[int, ...] | None, rows: Chosen) -> Factor:
     """Return the factor over the usable rows, holding only levels that still occur, in the order kept."""
-    codes = levels.codes if rows.size == levels.codes.size else levels.codes[rows]
-    present = np.bincount(codes, minlength=len(levels.labels)) > 0
+    codes = levels.codes[rows]
+    present = counts(codes, len(levels.labels)) > 0
     order = [code for code in (range(len(levels.labels)) if kept is None else kept) if present[code]]
     if order != list(range(len(levels.labels))):
-        place = np.full(len(levels.labels), -1, dtype=np.intp)
+        place = np.full(len(levels.labels), -1, dtype=codes.dtype)
         place[order] = np.arange(len(order))
         codes = place[codes]
     amounts = None if levels.amounts is None else tuple(levels.amounts[code] for code in order)
     return Factor(name, tuple(levels.labels[code] for code in order), codes, amounts)
 
 
-def _refuse_labels(factors: Mapping[str, Factor], study: Study, n: int) -> None:
+def _refuse_labels(factors: Mapping[str, Factor], study: Study) -> None:
     """Raise for a factor that has a level for every row, or a layout with more cells than can be handled."""
     row, column = (factors[name] for name in study.factors)
+    n = row.codes.size
     for factor in (row, column):
         if n > 2 and factor.size == n:
             raise LevelForEveryRow(factor.name, factor.size)
@@ -119,11 +121,9 @@ def _dropped(study: Study, parts: Mapping[str, Levels], factors: Mapping[str, Fa
     return tuple(notes)
 
 
-def _observed(study: Study, response: Response, factors: Mapping[str, Factor], rows: NDArray[np.intp]) -> Observations:
+def _observed(study: Study, response: Response, factors: Mapping[str, Factor], rows: Chosen) -> Observations:
     """Return the usable values about a pivot, still on the scale as measured."""
-    offsets, pivot = response.offsets, response.pivot
-    if rows.size < offsets.size:
-        offsets = offsets[rows]
+    offsets, pivot = response.offsets[rows], response.pivot
     if pivot == 0.0:
         # Centre before you square: where the spread is small against the magnitude, squares of the values themselves lose it.
         pivot = _pivot(offsets)
@@ -137,8 +137,8 @@ def _observed(study: Study, response: Response, factors: Mapping[str, Factor], r
         scale=NAMED["none"],
         pivot=pivot,
         offsets=offsets,
-        file_rows=study.table.file_rows if rows.size == study.table.rows else study.table.file_rows[rows],
-        readings=int(rows.size),
+        file_rows=study.table.file_rows[rows],
+        readings=int(offsets.size),
         left_out=(),
         notes=(),
     )

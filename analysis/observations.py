@@ -8,9 +8,7 @@ from numpy.typing import NDArray
 
 from analysis.naming import level_told, listed, word_and_unit
 from analysis.scales import Scale
-from analysis.table import LeftOut
-
-Codes = NDArray[np.intp]
+from analysis.table import Codes, LeftOut, Rows
 
 
 @dataclass(frozen=True, eq=False)
@@ -54,7 +52,7 @@ class Observations:
     scale: Scale
     pivot: float  # on the analysed scale; observation = pivot + offset
     offsets: NDArray[np.float64]
-    file_rows: NDArray[np.int64]  # for a unit: the row of its first reading
+    file_rows: Rows  # for a unit: the row of its first reading
     readings: int  # rows used; more than the observations where units were read repeatedly
     left_out: tuple[LeftOut, ...]
     notes: tuple[str, ...]

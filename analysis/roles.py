@@ -156,12 +156,12 @@ def _crossing(left: Look, right: Look) -> float:
 
 def _joint(left: Codes, right: Codes) -> Codes:
     """One code for each combination of two columns."""
-    return (left + 1) * (int(right.max(initial=0)) + 2) + right + 1
+    return (left.astype(np.int64) + 1) * (int(right.max(initial=0)) + 2) + right + 1
 
 
 def _cells(factors: Sequence[Look], rows: int) -> Codes:
     """The cell of each row, numbered from 0."""
-    codes = np.zeros(rows, dtype=np.intp)
+    codes: Codes = np.zeros(rows, dtype=np.intp)
     for look in factors:
         codes = _joint(codes, look.levels.codes)
     return np.unique(codes, return_inverse=True)[1].astype(np.intp)

@@ -77,7 +77,7 @@ def scale_named(text: str) -> Scale:
     return _power(float(match.group(1)))
 
 
-def transformed(scale: Scale, values: Values, response: str, file_rows: NDArray[np.int64]) -> Values:
+def transformed(scale: Scale, values: Values, response: str, file_rows: NDArray[np.int64] | NDArray[np.int32]) -> Values:
     """Return the values on the scale; raise OutsideScale with the rows that it cannot take."""
     bad = scale.unusable(values)
     if bad.any():

@@ -2,7 +2,7 @@
 
 from dataclasses import dataclass
 from functools import cached_property
-from typing import Protocol
+from typing import Any, Protocol
 
 import numpy as np
 import numpy.typing as npt
@@ -10,9 +10,10 @@ import pandas as pd
 
 from analysis import refusals
 
+STRETCH = 1 << 18  # rows handled at a time
 Floats = npt.NDArray[np.float64]
-Codes = npt.NDArray[np.intp]
-Rows = npt.NDArray[np.int64]
+Codes = npt.NDArray[np.integer[Any]]  # the narrowest whole numbers that hold them, for tables of millions of rows
+Rows = npt.NDArray[np.int64] | npt.NDArray[np.int32]
 
 
 @dataclass(frozen=True)
@@ -175,3 +176,11 @@ def frozen(array: npt.NDArray[np.float64]) -> Floats:
     view = array.view()
     view.flags.writeable = False
     return view
+
+
+def counts(codes: Codes, size: int) -> npt.NDArray[np.int64]:
+    """Return how often each of `size` codes occurs, -1 aside; a stretch at a time, since counting widens the codes."""
+    found = np.zeros(size + 1, dtype=np.int64)
+    for start in range(0, codes.size, STRETCH):
+        found += np.bincount(codes[start : start + STRETCH] + np.int64(1), minlength=size + 1)
+    return found[1:]

@@ -10,15 +10,15 @@ from analysis.refusals import UnitInSeveralCells
 from analysis.table import Levels
 
 
-def averaged_to_units(observed: Observations, name: str, units: Levels, rows: NDArray[np.intp]) -> Observations:
+def averaged_to_units(observed: Observations, name: str, units: Levels, rows: slice | NDArray[np.intp]) -> Observations:
     """Return the observations with the readings of each unit averaged, as measured and before any change of scale.
 
     `units` holds the unit of every table row and `rows` the table rows analysed. A label that stands in several cells counts
     as several units when every cell uses the same labels; otherwise UnitInSeveralCells is raised. Source: common practice;
     Hurlbert (1984) on why readings are not replicates.
     """
-    label = units.codes if rows.size == units.codes.size else units.codes[rows]
-    cell = observed.row.codes * observed.column.size + observed.column.codes
+    label = units.codes[rows].astype(np.intp)
+    cell = observed.row.codes.astype(np.intp) * observed.column.size + observed.column.codes
     reused = _labels_reused(observed, name, units, label, cell)
     stratum = cell if observed.block is None else cell * observed.block.size + observed.block.codes
     _, first, unit, readings = np.unique(stratum * len(units.labels) + label, return_index=True, return_inverse=True, return_counts=True)

@@ -7,7 +7,7 @@ import pandas as pd
 
 from analysis import refusals
 from analysis.reading import names, value_cells
-from analysis.table import Column, Table
+from analysis.table import Column, Rows, Table
 
 
 def read(frame: pd.DataFrame, name: str) -> Table:
@@ -24,7 +24,7 @@ def read(frame: pd.DataFrame, name: str) -> Table:
     columns = tuple(Column(label, value_cells.cells_of(label, shared.iloc[:, index])) for index, label in enumerate(labels))
     if not any(_holds_numbers(column) for column in columns):
         raise refusals.NoNumericColumn(len(columns), len(frame))
-    rows = np.arange(1, len(frame) + 1, dtype=np.int64)
+    rows: Rows = np.arange(1, len(frame) + 1, dtype=np.int32) if len(frame) < 2**31 - 1 else np.arange(1, len(frame) + 1, dtype=np.int64)
     return Table(name, columns, rows, (), naming, fingerprint(columns))
 
 

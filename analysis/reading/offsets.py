@@ -14,7 +14,8 @@ TINY_SPREAD = 1e-3  # spread beside magnitude; above it a double keeps at least 
 
 def pivot_of(values: Floats) -> float:
     """Return a round number near values that lie close together far from zero, else 0."""
-    finite = values[np.isfinite(values)]
+    known = np.isfinite(values)
+    finite = values if known.all() else values[known]
     if finite.size < 2:
         return 0.0
     low, high = float(finite.min()), float(finite.max())

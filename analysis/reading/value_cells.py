@@ -10,7 +10,7 @@ import pandas as pd
 
 from analysis import refusals
 from analysis.reading import level_order, look_alikes, offsets
-from analysis.table import Codes, Floats, LeftOut, Levels, Response, frozen
+from analysis.table import Codes, Floats, LeftOut, Levels, Response, counts, frozen
 
 
 @dataclass(frozen=True, eq=False)
@@ -79,15 +79,17 @@ class CategoryCells:
 
     def levels(self) -> Levels:
         """The categories that occur, in their own order."""
-        codes = np.asarray(self.values.cat.codes, dtype=np.intp)
+        codes = self.values.cat.codes.to_numpy()
         categories = self.values.cat.categories
-        occurring = np.flatnonzero(np.bincount(codes[codes >= 0], minlength=len(categories)))
-        rank = np.full(len(categories) + 1, -1, dtype=np.intp)
-        rank[occurring] = np.arange(occurring.size)
+        occurring = np.flatnonzero(counts(codes, len(categories)))
         found = list(categories[occurring])
         amounts = tuple(float(value) for value in found) if found and all(_is_number(value) for value in found) else None
         labels, merged = _merged(tuple(level_text(value) for value in found))
-        return Levels(_codes(np.append(merged, -1)[rank[codes]]), labels, amounts if len(labels) == len(found) else None, ())
+        if len(labels) < len(categories):
+            rank = np.full(len(categories) + 1, -1, dtype=codes.dtype)
+            rank[occurring] = merged
+            codes = rank[codes]
+        return Levels(_codes(codes), labels, amounts if len(labels) == len(found) else None, ())
 
     def text(self, start: int, stop: int) -> list[str]:
         """The categories of these rows, "" where missing."""
@@ -183,9 +185,10 @@ def _is_empty(value: object) -> bool:
     return value is None or value is pd.NA or value is pd.NaT or (isinstance(value, float) and np.isnan(value)) or value == ""
 
 
-def _codes(codes: np.ndarray[tuple[int], np.dtype[np.integer]]) -> Codes:
-    result = np.asarray(codes, dtype=np.intp)
-    view = result.view()
+def _codes(codes: Codes) -> Codes:
+    """Return a read-only view of codes, in the narrowest type that holds them."""
+    most = int(codes.max(initial=0))
+    view = codes.astype(np.min_scalar_type(-most - 1), copy=False).view()
     view.flags.writeable = False
     return view
 
