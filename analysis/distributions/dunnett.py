@@ -8,7 +8,7 @@ from scipy import stats
 
 from analysis.distributions import lattice, one_factor
 from analysis.distributions.pieces import Floats, Pieces, edges, tabulate
-from analysis.distributions.studentizing import log_tail, step_for, upper_point
+from analysis.distributions.studentizing import log_tail, probability, step_for, upper_point
 
 STEP = 0.35  # length of a tabulated piece before the bend
 TOP = 37.0  # of the tabulated largest normal, where its tail is 1e-299
@@ -26,7 +26,7 @@ def sf(d: ArrayLike, correlation: ArrayLike, df: float) -> Floats:
     """
     d = np.asarray(d, dtype=np.float64)
     value = log_sf(np.clip(d, 0.0, LARGEST), np.asarray(correlation, dtype=np.float64), df)
-    return np.asarray(np.where(d == np.inf, 0.0, np.exp(np.minimum(value, 0.0))), dtype=np.float64)
+    return probability(d, value)
 
 
 def ppf_upper(alpha: float, correlation: ArrayLike, df: float) -> float:

@@ -9,7 +9,7 @@ from scipy import optimize, special
 from analysis.distributions.pieces import Floats
 
 EXACT = 1e-9  # correlations this close to products of loadings are taken as products
-NARROWEST = 1e-6  # standard deviation left beside the factor; a smaller one changes a tail by less than 1e-12
+NARROWEST = 1e-10  # standard deviation left beside the factor; a smaller one changes a tail by less than that
 NODES, WEIGHTS = special.roots_legendre(20)
 REACH = 8.6  # standard deviations that leave out exp(-37)
 

@@ -7,7 +7,7 @@ from numpy.typing import ArrayLike
 from scipy import special, stats
 
 from analysis.distributions.pieces import Floats, Pieces, edges, tabulate
-from analysis.distributions.studentizing import log_tail, step_for, upper_point
+from analysis.distributions.studentizing import log_tail, probability, step_for, upper_point
 
 NODES = 96  # of the trapezoidal rule over the largest of k normals; 1e-14 up to k = 100,000
 MANY = 2000  # so many q are read from a table in q instead
@@ -31,7 +31,7 @@ def sf(q: ArrayLike, k: int, df: float) -> Floats:
     else:
         table = tabulate(lambda x: log_tail(known, x, df, step), edges(STEP, bend(k), float(np.nanmax(finite, initial=1.0))))
         value = table(finite)
-    return np.asarray(np.where(q == np.inf, 0.0, np.exp(value)), dtype=np.float64)
+    return probability(q, value)
 
 
 @lru_cache(maxsize=4096)

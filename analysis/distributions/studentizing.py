@@ -33,6 +33,12 @@ def log_tail(known: Callable[[Floats], Floats], q: Floats, df: float, step: floa
     return np.asarray(value.reshape(np.shape(q)), dtype=np.float64)
 
 
+def probability(q: Floats, log_tail_at_q: Floats) -> Floats:
+    """Return the tail itself: 1 at q = 0 and below, 0 at infinity, never above 1 by rounding; NaN stays NaN."""
+    tail = np.minimum(np.exp(log_tail_at_q), 1.0)
+    return np.asarray(np.select([q <= 0, q == np.inf], [1.0, 0.0], tail), dtype=np.float64)
+
+
 def step_for(count: float) -> float:
     """Return the step of log s for the extreme of so many normals, whose tail bends the sooner the more there are.
 
