@@ -57,10 +57,11 @@ class Surface:
     def _swept_mean(self, values: Matrix) -> Matrix:
         """Return count-weighted means of columns of values by level of the eliminated factor, 0 where it has none."""
         codes, size = self._swept_codes
+        if values.ndim == 1:
+            return np.bincount(codes, weights=self.strata.n * values, minlength=size) / np.where(self.swept_n > 0, self.swept_n, 1.0)
         k = self.strata.n.size
         gather = sparse.csr_array((self.strata.n, (codes, np.arange(k))), shape=(size, k))
-        counts = np.where(self.swept_n > 0, self.swept_n, 1.0)
-        return np.asarray(gather @ values) / (counts if values.ndim == 1 else counts[:, None])
+        return np.asarray(gather @ values) / np.where(self.swept_n > 0, self.swept_n, 1.0)[:, None]
 
     @cached_property
     def _indicator(self) -> sparse.csr_array:
@@ -132,7 +133,9 @@ class Surface:
     @cached_property
     def fitted(self) -> Vector:
         """Fitted value of each stratum, as an offset from the pivot."""
-        return self._surface(self._remaining if self.others else np.zeros(0))
+        if not self.others:
+            return np.asarray(self._swept_mean(self.strata.mean)[self._swept_codes[0]])
+        return self._surface(self._remaining)
 
     @cached_property
     def lack_of_fit(self) -> float:
