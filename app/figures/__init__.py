@@ -1,0 +1,1 @@
+"""How findings are drawn: each figure a function of findings and a look, its caption and description beside it."""
