@@ -61,7 +61,8 @@ def answers(findings: Findings) -> pd.DataFrame:
 
 def bare_test(answer: Answer) -> str:
     """Return the test of an answer without its term, which the question names; it breaks only before its p."""
-    test = short_test(answer.statistic).removeprefix(f"{answer.term} ")
+    test = short_test(answer.statistic)
+    test = test[max(0, test.find("F(")) :]
     return test if answer.p is None else test.replace(" ", NO_BREAK).replace(f",{NO_BREAK}p", ", p")
 
 

@@ -16,7 +16,7 @@ from app.look import DESK, SLIDE
 DRESSES = {
     "question": Dress(strong=0, tiles=True),
     "answers": Dress(strong=1, every_row=True),
-    "comparisons": Dress(strong=2, ordered_by="largest"),
+    "comparisons": Dress(strong=2, kept="the {} largest"),
 }
 
 
@@ -79,7 +79,7 @@ def _content(slide: Slide, board: Board, findings: Findings) -> Shown:
     place = _place(slide, master.CONTENT)
     if board.figure:
         drawn = plot.plan(findings)
-        master.describe(chart.add(place, drawn, inks()), board.kind.capitalize(), board.alt)
+        master.describe(chart.add(place, drawn, inks()), board.kind.capitalize(), board.alt + _turned(drawn))
         return Shown("", drawn.shortened)
     if board.table is None or board.table.empty:
         place.element.getparent().remove(place.element)
@@ -88,6 +88,12 @@ def _content(slide: Slide, board: Board, findings: Findings) -> Shown:
     content = fitted(board.table, dress)
     master.describe(tables.add(place, content, dress, inks()), board.kind.capitalize(), board.alt)
     return Shown(content.cut, content.shortened)
+
+
+def _turned(drawn: plot.Plot) -> str:
+    """Say it where the slide draws the factors on other sides than the screen."""
+    sides = f" Here the levels of {drawn.column_factor} run along the axis, and each level of {drawn.row_factor} is a line."
+    return sides if drawn.turned else ""
 
 
 def _evidence(slide: Slide, board: Board, shown: Shown) -> None:

@@ -111,10 +111,11 @@ def shorten(text: str, points: float, inches: float, lines: int = 1, from_end: i
 def names(labels: Sequence[str], points: float, inches: float, lines: int = 1) -> tuple[str, ...]:
     """Return labels short enough for their places and still all different.
 
-    A label that fits stays as it is. One that does not loses its end; where two would then read the same they lose their middle and keep
-    their last one, two or three words; where that does not tell them apart either, all labels become their numbers, 1, 2, 3 and so on.
+    A label that fits stays as it is. One that does not loses its middle and keeps its last two words, which tell levels apart most often;
+    where two would still read the same, one word, three words or only the beginning is kept; where nothing of this tells them apart, all
+    labels become their numbers, 1, 2, 3 and so on.
     """
-    for kept in range(4):
+    for kept in (2, 1, 3, 0):
         tails = [len(" ".join(spaced(label)[-kept:])) if kept else 0 for label in labels]
         shorter = tuple(
             label if fits(label, points, inches, lines) else shorten(label, points, inches, lines, tail)

@@ -3,8 +3,10 @@
 import math
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
+from functools import cached_property
 
 import numpy as np
+import pandas as pd
 
 from analysis.findings import Findings
 from app import words
@@ -15,10 +17,11 @@ from app.figures.scene import Scene
 from app.look import SLIDE
 
 POINTS_SHOWN = 20  # up to so many observations in each cell are drawn one by one
+START = -0.5  # where the axis of the places begins; the levels stand at 0, 1, 2 …
 _STEPS = (1.0, 2.0, 2.5, 5.0, 10.0)
 _TICKS_WANTED = 5
 _NAMES_WIDE = 3.0  # inches that the names of the lines may take
-_NAME_LINES = 2
+_NAME_LINES = 2  # of a level along the axis, and of a line where there are few
 _FEW = 4
 _AIR = 0.12  # inches between a text and what it stands beside
 _ROW = fit.height(1, SMALLEST)
@@ -26,15 +29,15 @@ _ROW = fit.height(1, SMALLEST)
 
 @dataclass(frozen=True)
 class Line:
-    """One level of the row factor: its look, its estimates with their intervals, its observations."""
+    """One level of the factor whose levels are lines: its look, its estimates with their intervals, its observations."""
 
     level: str
-    name: str  # the level, shortened where it has to be
+    name: str  # the level, shortened and broken where it has to be; nothing where there is no room for names
     hue: str  # of marks, six hexadecimal digits
     ink: str  # of the name
     marker: str
     dash: str
-    places: tuple[float, ...]  # on an axis where the column levels stand at 0, 1, 2 …
+    places: tuple[float, ...]  # on an axis where the levels of the other factor stand at 0, 1, 2 …
     estimates: tuple[float | None, ...]  # analysed scale; None where the model gives none
     below: tuple[float | None, ...]  # from the estimate down to the end of its interval
     above: tuple[float | None, ...]
@@ -62,25 +65,60 @@ class Axis:
 class Plot:
     """Everything that a slide program needs to draw the figure; lengths in inches inside the body of the slide."""
 
-    row_factor: str  # its name as it stands above the names of the lines
-    column_factor: str
+    row_factor: str  # whose levels are lines
+    column_factor: str  # whose levels run along the axis
     response: str
+    heading: str  # the name of the row factor as it stands above the names of the lines
     levels: tuple[str, ...]  # of the column factor
     names: tuple[str, ...]  # the same, shortened where they have to be
     lines: tuple[Line, ...]
     axis: Axis
     end: float  # where the names of the lines begin, on the axis of the places
-    heading_height: float  # where the name of their factor stands, on the scale of the estimates
+    heading_height: float  # where the heading stands, on the scale of the estimates
     left: float  # kept free beside the plot
     right: float
     top: float
     bottom: float
+    turned: bool  # whether the factors changed sides, so that there are few lines
+
+    @property
+    def wide(self) -> float:
+        """Width of the plot itself."""
+        return BODY.wide - self.left - self.right
+
+    @property
+    def tall(self) -> float:
+        """Height of the plot itself."""
+        return BODY.tall - self.top - self.bottom
+
+    @property
+    def slot(self) -> float:
+        """Width that the name of a level along the axis may take."""
+        return _slot(self.wide, self.end)
 
     @property
     def shortened(self) -> tuple[tuple[str, str], ...]:
         """Names that read differently on the slide, each with the whole name."""
         pairs = (*zip(self.names, self.levels, strict=True), *((line.name.replace("\n", " "), line.level) for line in self.lines))
-        return tuple((short, whole) for short, whole in pairs if short != " ".join(fit.spaced(whole)))
+        return tuple((short, whole) for short, whole in pairs if short and short != " ".join(fit.spaced(whole)))
+
+
+class Turned(Scene):
+    """The same figure with the factors on the other sides: levels of the column factor are lines."""
+
+    @cached_property
+    def rows(self) -> tuple[str, ...]:
+        """Levels drawn as lines."""
+        return tuple(self.findings.design["column_levels"])
+
+    @cached_property
+    def columns(self) -> tuple[str, ...]:
+        """Levels along the axis."""
+        return tuple(self.findings.design["row_levels"])
+
+    def line_of(self, level: str) -> pd.DataFrame:
+        """Return the means of one line in the order of the axis."""
+        return self.means[self.means["column"] == level].set_index("row").reindex(list(self.columns)).reset_index()
 
 
 def axis_for(low: float, high: float) -> Axis:
@@ -88,8 +126,85 @@ def axis_for(low: float, high: float) -> Axis:
     rough = (high - low or abs(high) or 1.0) / _TICKS_WANTED
     power = 10.0 ** math.floor(math.log10(rough))
     step = next(factor * power for factor in _STEPS if factor * power >= rough * (1 - 1e-9))
-    decimals = next(places for places in range(13) if abs(round(step, places) - step) < 1e-6 * step)
+    decimals = next(places for places in range(13) if places == 12 or abs(round(step, places) - step) < 1e-6 * step)
     return Axis(math.floor(low / step + 1e-9) * step, math.ceil(high / step - 1e-9) * step, step, decimals)
+
+
+def plan(findings: Findings) -> Plot:
+    """Return where everything of the interaction figure stands on a slide.
+
+    Rows are lines as everywhere else, unless there are more of them than hues and fewer columns: then the factors change sides.
+    """
+    scene = Scene(findings)
+    turned = len(scene.rows) > len(SLIDE.hues) and len(scene.columns) < len(scene.rows)
+    scene = Turned(findings) if turned else scene
+    factors = (findings.design["row_factor"], findings.design["column_factor"])
+    row_factor, column_factor = factors[::-1] if turned else factors
+    axis, names = axis_for(*scene.reach), _line_names(scene)
+    heading = fit.shorten(row_factor if names else f"{row_factor}: {len(scene.rows)} levels", SMALLEST, _NAMES_WIDE)
+    left = _ROW + axis.wide + 2 * _AIR
+    right = max(fit.width(text, SMALLEST) for text in (heading, *"\n".join(names).split("\n"))) * fit.BOLD + 2 * _AIR
+    slot = _slot(BODY.wide - left - right, scene.label_place)
+    levels = fit.names(scene.columns, SMALLEST, slot, _NAME_LINES)
+    bottom = (max(len(fit.wrap(name, SMALLEST, slot)) for name in levels) + 1) * _ROW + _AIR
+    *heights, heading_height = _heights(scene, names, axis, BODY.tall - _AIR - bottom)
+    lines = tuple(_line(scene, k, names[k] if names else "", heights[k] if names else 0.0) for k in range(len(scene.rows)))
+    names_of = (row_factor, column_factor, words.response_label(findings), heading)
+    return Plot(*names_of, scene.columns, levels, lines, axis, scene.label_place, heading_height, left, right, _AIR, bottom, turned)
+
+
+def _slot(wide: float, end: float) -> float:
+    return wide / (end - START) * 0.94
+
+
+def _line_names(scene: Scene) -> tuple[str, ...]:
+    """Return the names of the lines, broken where they take two lines of text, or none where they would not stand one below another."""
+    room = fit.lines_in(BODY.tall - 3 * _ROW - 2 * _AIR, SMALLEST) - 1  # the heading takes a line, the names along the axis up to three
+    if len(scene.rows) > room:
+        return ()
+    wide = _NAMES_WIDE / fit.BOLD
+    short = fit.names(scene.rows, SMALLEST, wide, _NAME_LINES if len(scene.rows) <= _FEW else 1)
+    return tuple("\n".join(fit.wrap(name, SMALLEST, wide)) for name in short)
+
+
+def _heights(scene: Scene, names: Sequence[str], axis: Axis, tall: float) -> tuple[float, ...]:
+    """Return where the names of the lines stand, and last the heading above them.
+
+    Each stands beside the end of its line, moved as little as keeps the texts apart and inside the plot.
+    """
+    gap = _ROW * (axis.high - axis.low) / tall
+    ends = _ends(scene)[: len(names)]
+    placed = placing.apart(np.array([*ends, axis.high]), np.array([*(name.count("\n") + 1 for name in names), 1]) * gap)
+    over, under = max(0.0, float(placed.max()) - axis.high), max(0.0, axis.low + gap / 2 - float(placed.min()))
+    return tuple((placed - over + under).tolist())
+
+
+def _ends(scene: Scene) -> list[float]:
+    """Return the last estimate of each line, the middle of the figure where a line has none."""
+    low, high = scene.reach
+    last = (scene.line_of(level)["estimate"].dropna() for level in scene.rows)
+    return [float(estimates.iloc[-1]) if len(estimates) else (low + high) / 2 for estimates in last]
+
+
+def _line(scene: Scene, number: int, name: str, name_height: float) -> Line:
+    """Return one line of the figure."""
+    level, style, means = scene.rows[number], SLIDE.style_of(number), scene.line_of(scene.rows[number])
+    point_places, points = _points(scene, level)
+    return Line(
+        level=level,
+        name=name,
+        hue=style.hue.lstrip("#"),
+        ink=style.ink.lstrip("#"),
+        marker=style.marker,
+        dash=style.dash,
+        places=tuple((np.arange(len(means)) + scene.offsets[number]).tolist()),
+        estimates=_numbers(means["estimate"]),
+        below=_numbers(means["estimate"] - means["lower"]),
+        above=_numbers(means["upper"] - means["estimate"]),
+        point_places=tuple(point_places),
+        points=tuple(points),
+        name_height=name_height,
+    )
 
 
 def _numbers(values: Iterable[float]) -> tuple[float | None, ...]:
@@ -105,84 +220,11 @@ def _points(scene: Scene, level: str) -> tuple[list[float], list[float]]:
     values: list[float] = []
     if scene.findings.cells["n"].max() > POINTS_SHOWN:
         return places, values
+    line, along = ("column", "row") if isinstance(scene, Turned) else ("row", "column")
     seen = scene.findings.observations
     offset, step = scene.offsets[scene.rows.index(level)], placing.step(len(scene.rows))
-    for place, column in enumerate(scene.columns):
-        cell = seen.loc[(seen["row"] == level) & (seen["column"] == column), "value"]
+    for place, other in enumerate(scene.columns):
+        cell = seen.loc[(seen[line] == level) & (seen[along] == other), "value"]
         places += (place + offset - 0.38 * step + placing.spread(len(cell), 0.14 * step)).tolist()
         values += cell.tolist()
     return places, values
-
-
-def _line(scene: Scene, number: int, name: str, name_height: float) -> Line:
-    """Return one line of the figure."""
-    level, style, means = scene.rows[number], SLIDE.style_of(number), scene.line_of(scene.rows[number])
-    point_places, points = _points(scene, level)
-    return Line(
-        level,
-        name,
-        style.hue.lstrip("#"),
-        style.ink.lstrip("#"),
-        style.marker,
-        style.dash,
-        tuple((np.arange(len(means)) + scene.offsets[number]).tolist()),
-        _numbers(means["estimate"]),
-        _numbers(means["estimate"] - means["lower"]),
-        _numbers(means["upper"] - means["estimate"]),
-        tuple(point_places),
-        tuple(points),
-        name_height,
-    )
-
-
-def _ends(scene: Scene) -> list[float]:
-    """Return the last estimate of each line, the middle of the figure where a line has none."""
-    low, high = scene.reach
-    last = (scene.line_of(level)["estimate"].dropna() for level in scene.rows)
-    return [float(estimates.iloc[-1]) if len(estimates) else (low + high) / 2 for estimates in last]
-
-
-def _heights(ends: Sequence[float], rows: Sequence[int], axis: Axis, tall: float) -> tuple[float, ...]:
-    """Return where the names of the lines stand, and last the name of their factor above them.
-
-    Each stands beside the end of its line, moved as little as keeps the texts apart and inside the plot.
-    """
-    gap = _ROW * (axis.high - axis.low) / tall
-    placed = placing.apart(np.array([*ends, axis.high]), np.array([*rows, 1]) * gap)
-    over, under = max(0.0, float(placed.max()) - axis.high), max(0.0, axis.low + gap / 2 - float(placed.min()))
-    return tuple((placed - over + under).tolist())
-
-
-def _line_names(scene: Scene) -> tuple[str, ...]:
-    """Return the names of the lines, on two lines of text where there are few."""
-    return fit.names(scene.rows, SMALLEST, _NAMES_WIDE / fit.BOLD, 2 if len(scene.rows) <= _FEW else 1)
-
-
-def plan(findings: Findings) -> Plot:
-    """Return where everything of the interaction figure stands on a slide."""
-    scene = Scene(findings)
-    axis = axis_for(*scene.reach)
-    lines = [fit.wrap(name, SMALLEST, _NAMES_WIDE / fit.BOLD) for name in _line_names(scene)]
-    heading = fit.shorten(findings.design["row_factor"], SMALLEST, _NAMES_WIDE)
-    right = max(fit.width(text, SMALLEST) for text in (heading, *(row for rows in lines for row in rows))) * fit.BOLD + 2 * _AIR
-    left = _ROW + axis.wide + 2 * _AIR
-    slot = (BODY.wide - left - right) / (scene.label_place + 0.5)
-    names = fit.names(scene.columns, SMALLEST, slot * 0.94, _NAME_LINES)
-    rows = max(len(fit.wrap(name, SMALLEST, slot * 0.94)) for name in names)
-    top, bottom = _AIR, (rows + 1) * _ROW + _AIR
-    *heights, heading_height = _heights(_ends(scene), [len(name) for name in lines], axis, BODY.tall - top - bottom)
-    return Plot(
-        heading,
-        findings.design["column_factor"],
-        words.response_label(findings),
-        scene.columns,
-        names,
-        tuple(_line(scene, number, "\n".join(name), heights[number]) for number, name in enumerate(lines)),
-        axis,
-        scene.label_place,
-        heading_height,
-        left,
-        right,
-        top,
-        bottom,
-    )

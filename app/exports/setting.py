@@ -10,7 +10,7 @@ from app.exports import fit
 from app.exports.master import BODY, SMALLEST
 
 PAD_SIDE, PAD_END = 0.12, 0.06  # inches between a text and the edges of its cell
-HEAD_LINES, MOST_LINES, EVERY_LINE = 3, 3, 9  # of one cell: in the head, where rows may be left away, where none may
+HEAD_LINES, MOST_LINES, EVERY_LINE = 4, 3, 9  # of one cell: in the head, where rows may be left away, where none may
 WIDEST_FIELD, TALLEST_FIELD = 2.6, 0.9  # inches of a field in a table of counts
 ONE_LINE_ABOVE = 20  # points; larger type is not worth a wrapped line
 NARROWEST = 0.95  # inches of a column; more columns than fit are left away
@@ -27,7 +27,7 @@ class Dress:
     strong: int | None = None  # the column in bold
     tiles: bool = False  # a field for each cell, spread over the slide, numbers in the middle
     every_row: bool = False  # long cells lose words before the table loses rows
-    ordered_by: str = "first"  # what the rows at the top are
+    kept: str = "the first {}"  # what the rows at the top are, where not all fit
 
     def growth(self, column: int) -> float:
         """Return how much wider than plain type a column is set."""
@@ -89,7 +89,8 @@ def fitted(table: pd.DataFrame, dress: Dress) -> Fitted:
     that would get too narrow to read go from the right.
     """
     columns = min(len(table.columns), int(BODY.wide // NARROWEST))
-    texts = [tuple(map(str, row[:columns])) for row in (table.columns, *table.itertuples(index=False, name=None))]
+    everything: list[tuple[object, ...]] = [tuple(table.columns), *table.itertuples(index=False, name=None)]
+    texts = [tuple(map(str, row[:columns])) for row in everything]
     for points in dress.sizes:
         measure = Measure(points, _widths(texts, points, dress), dress)
         rows = _short(texts, measure)
@@ -112,7 +113,7 @@ def _cut(rows: Sequence[Row], texts: Sequence[Row], measure: Measure, columns_go
     kept = len(rows[0]) - 1
     rules = (
         f"{kept} of {kept + columns_gone} columns" if columns_gone else "",
-        f"the {shown - 1} {measure.dress.ordered_by} of {len(rows) - 1} rows" if shown < len(rows) else "",
+        f"{measure.dress.kept.format(shown - 1)} of {len(rows) - 1} rows" if shown < len(rows) else "",
     )
     pairs = dict.fromkeys(
         (a, b) for mine, whole in zip(rows[:shown], texts, strict=False) for a, b in zip(mine, whole, strict=True) if a != b

@@ -8,7 +8,7 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 from app.exports import fit, plot
-from app.exports.chart import mixed
+from app.exports.series import mixed
 from app.exports.setting import Dress, fitted
 from tests.app import designs
 
@@ -57,12 +57,12 @@ def test_an_axis_holds_its_values_in_a_few_round_steps(low: float, reach: float)
 @pytest.mark.parametrize("name", designs.DESIGNS)
 def test_names_of_lines_do_not_touch(name: str) -> None:
     drawn = plot.plan(designs.design(name))
-    tall = plot.BODY.tall - drawn.top - drawn.bottom
-    row = fit.height(1, 18) * (drawn.axis.high - drawn.axis.low) / tall
+    row = fit.height(1, 18) * (drawn.axis.high - drawn.axis.low) / drawn.tall
     stands = sorted([*((line.name_height, line.name.count("\n") + 1) for line in drawn.lines), (drawn.heading_height, 1)])
-    if len(drawn.lines) <= 12:
-        for (below, low_lines), (above, high_lines) in itertools.pairwise(stands):
-            assert above - below >= row * (low_lines + high_lines) / 2 * (1 - 1e-9)
+    for (below, low_lines), (above, high_lines) in itertools.pairwise(stands):
+        assert above - below >= row * (low_lines + high_lines) / 2 * (1 - 1e-9)
+    assert drawn.axis.low <= stands[0][0]
+    assert stands[-1][0] <= drawn.axis.high * (1 + 1e-9)
 
 
 def test_a_table_that_must_keep_its_rows_loses_words() -> None:
