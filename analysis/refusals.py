@@ -1,11 +1,18 @@
 """Every reason for which a table, a choice or a design is turned down, each in one sentence for the user."""
 
 import difflib
+import re
 from collections.abc import Sequence
+
+_LINE_ENDS = re.compile(r"[\t\n\v\f\r\x1c-\x1e\x85\u2028\u2029]+")
+LONGEST = 1000  # characters of a refusal
 
 
 class Refusal(Exception):
-    """A sentence for the user: what was found, where, and what would help."""
+    """A sentence for the user: what was found, where, and what would help; always one line, whatever a file put into it."""
+
+    def __init__(self, sentence: str) -> None:
+        super().__init__(_LINE_ENDS.sub(" ", sentence)[:LONGEST])
 
 
 def rows_told(rows: Sequence[int], most: int = 5) -> str:
@@ -311,7 +318,7 @@ class MissingSheet(Refusal):
     """A sheet that the workbook does not have."""
 
     def __init__(self, sheet: str, sheets: Sequence[str]) -> None:
-        super().__init__(f"The workbook has no sheet “{sheet[:60]}”: {nearest_told(sheet, sheets, 'its sheets')}"[:1000])
+        super().__init__(f"The workbook has no sheet “{sheet[:60]}”: {nearest_told(sheet, sheets, 'its sheets')}")
 
 
 class SheetOutsideWorkbook(Refusal):
@@ -374,7 +381,7 @@ class UnknownColumn(Refusal):
     """A column name that the table does not have."""
 
     def __init__(self, name: str, known: Sequence[str]) -> None:
-        super().__init__(f"There is no column “{name[:60]}”: {nearest_told(name, known, 'the columns')}"[:1000])
+        super().__init__(f"There is no column “{name[:60]}”: {nearest_told(name, known, 'the columns')}")
 
 
 class MixedUnits(Refusal):

@@ -9,15 +9,13 @@ from itertools import islice
 
 import numpy as np
 import pyarrow as pa
-import pyarrow.compute as pc
 from pyarrow import csv as arrow_csv
 
 from analysis import refusals
-from analysis.reading import line_lengths, spaces
-from analysis.reading.records import HEAD, Body, Found, Record, trimmed
+from analysis.reading import cell_lengths, line_lengths, spaces
+from analysis.reading.records import HEAD, Body, Found, Record, filled_part, record_of
 from analysis.table import Rows
 
-LONGEST_CELL = 32_767  # characters, the most that a spreadsheet holds in a cell
 _END = "\x03"  # a last record of our own; where it is swallowed, a quotation mark was left open
 _CHUNK = 4_000  # records turned into columns at a time; more would keep the collector of cycles busy
 _BLOCK = 1 << 22  # bytes that Arrow parses at a time
@@ -40,7 +38,7 @@ class Delimited:
 
     def _record(self, row: int, cells: list[str]) -> Record:
         """One record, tidied; a line that only names the separator is blank."""
-        return Record(row, ()) if row <= self.declared else Record(row, trimmed([spaces.tidy(cell) for cell in cells]), len(cells))
+        return Record(row, ()) if row <= self.declared else record_of(row, cells, len(cells))
 
     def _start_text(self) -> str:
         """Enough of the file for its head, up to the end of a line."""
@@ -73,23 +71,15 @@ class Delimited:
 
     def _refuse(self, row: int, text: str, error: csv.Error) -> None:
         if "field larger" in str(error) and text.count('"') % 2 == 0:
-            raise refusals.CellTooLong(row, LONGEST_CELL) from error
+            raise refusals.CellTooLong(row, cell_lengths.LONGEST) from error
         raise refusals.UnclosedQuote(row) from error
 
     def body(self, start: int, width: int) -> Body:
         """The columns from record number start on; raises TooManyFields, UnclosedQuote or CellTooLong."""
         quick = self._quick(start, width)
         columns, rows = quick if quick is not None else self._careful(start, width)
-        for column in columns:
-            self._refuse_long(column, rows)
         blank: tuple[None, ...] = (None,) * width
         return Body(columns, rows, blank, blank)
-
-    def _refuse_long(self, column: pa.StringArray, rows: Rows) -> None:
-        if len(column) and pc.max(pc.binary_length(column)).as_py() > LONGEST_CELL:
-            long = np.flatnonzero(pc.greater(pc.utf8_length(column), LONGEST_CELL).to_numpy(zero_copy_only=False))
-            if long.size:
-                raise refusals.CellTooLong(int(rows[long[0]]), LONGEST_CELL)
 
     def _quick(self, start: int, width: int) -> tuple[tuple[pa.StringArray, ...], Rows] | None:
         """Let Arrow parse the lines below the header; None where quotation marks ask for more care than it takes."""
@@ -155,5 +145,5 @@ def _fitted(row: int, cells: list[str], width: int) -> list[str]:
     if len(cells) < width:
         return cells + [""] * (width - len(cells))
     if any(not spaces.is_blank(cell) for cell in cells[width:]):
-        raise refusals.TooManyFields(row, len(trimmed(cells)), width)
+        raise refusals.TooManyFields(row, len(filled_part(cells)), width)
     return cells[:width]

@@ -29,7 +29,12 @@ _TOLD: dict[Kind, str] = {
 }
 
 
-def read_table(source: str | Path | bytes | pd.DataFrame, name: str | None = None, sheet: str | None = None, layout: str = "auto") -> Table:
+def read_table(
+    source: str | Path | bytes | bytearray | memoryview | pd.DataFrame,
+    name: str | None = None,
+    sheet: str | None = None,
+    layout: str = "auto",
+) -> Table:
     """Read a table from a path, from the bytes of a file, or from a pandas frame, which is taken as it is.
 
     sheet names the sheet of a workbook (the first with a table where None); layout is "auto", "rows" or "grid". Raises a
@@ -39,8 +44,10 @@ def read_table(source: str | Path | bytes | pd.DataFrame, name: str | None = Non
         raise refusals.UnknownChoice("layout", layout, LAYOUTS)
     if isinstance(source, pd.DataFrame):
         return _laid_out(frames.read(source, name or "table"), layout)
-    data = source if isinstance(source, bytes) else _loaded(Path(source))
-    name = name or ("table" if isinstance(source, bytes) else Path(source).name)
+    if isinstance(source, (str, Path)):
+        data, name = _loaded(Path(source)), name or Path(source).name
+    else:
+        data, name = bytes(source), name or "table"
     if len(data) > LARGEST:
         raise refusals.FileTooLarge(len(data), LARGEST)
     kind = signatures.kind_of(data)

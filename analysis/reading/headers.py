@@ -127,7 +127,7 @@ def _with_header(head: Sequence[Record], places: Sequence[int], at: int, spans: 
         raise refusals.HeaderWithoutRows(header)
     second = _second_row(header, head, below)
     spanning = names.spread(head[above[-1]], header, spans) if above and not second else None
-    decisions = _passed_over(head, [*remarks, *(above[:-1] if spanning else above)])
+    decisions = _passed_over(head, [*remarks, *(above[:-1] if spanning else above)]) + _trimmed(head[at])
     unit_row: tuple[str | None, ...] = (None,) * len(header)
     start = at + 1
     if second == "names":
@@ -196,6 +196,10 @@ def _second_row(header: Sequence[str], head: Sequence[Record], below: Sequence[i
 def _mostly_numbers(cells: Sequence[str]) -> bool:
     filled = [cell for cell in cells if cell and not missing.is_missing(cell)]
     return bool(filled) and 2 * sum(is_number(cell) for cell in filled) > len(filled)
+
+
+def _trimmed(record: Record) -> tuple[Decision, ...]:
+    return (Decision("names", "White space in and around the names of columns was trimmed."),) if record.trimmed else ()
 
 
 def _passed_over(head: Sequence[Record], indices: Sequence[int]) -> tuple[Decision, ...]:

@@ -8,7 +8,7 @@ import numpy.typing as npt
 import pyarrow as pa
 
 from analysis import refusals
-from analysis.reading import filling, footers, grids, headers, names, numerals, spaces
+from analysis.reading import cell_lengths, filling, footers, grids, headers, names, numerals, spaces
 from analysis.reading.filling import Fill
 from analysis.reading.headers import Heading
 from analysis.reading.records import Body, Found, Source
@@ -23,7 +23,9 @@ _SAMPLE = 5000  # cells of a column looked at before it is searched as a whole f
 def read(source: Source, name: str, layout: str, decisions: tuple[Decision, ...], fingerprint: str) -> Table:
     """Turn a file of text or a sheet into a table; raises a refusal where it holds none."""
     heading = headers.find(source.head, source.found, layout)
-    heading, body, places = _without_blank_columns(heading, source.body(heading.start, heading.width))
+    body = source.body(heading.start, heading.width)
+    cell_lengths.check(heading.cells, heading.row, body)
+    heading, body, places = _without_blank_columns(heading, body)
     cleaned = footers.clean(body)
     body = cleaned.body
     if not body.rows.size:

@@ -6,6 +6,7 @@ from typing import Protocol
 
 import pyarrow as pa
 
+from analysis.reading import spaces
 from analysis.table import Decision, Floats, Rows
 
 HEAD = 200  # records looked at to find the header
@@ -18,6 +19,7 @@ class Record:
     row: int  # its number as a spreadsheet shows it
     cells: tuple[str, ...]  # tidy text, "" where blank, without blank cells at the end
     width: int = 0  # cells that the row has in the file, blank ones at its end included, where the file tells
+    trimmed: bool = False  # whether white space was taken out of its cells
 
     @property
     def filled(self) -> int:
@@ -70,8 +72,15 @@ class Source(Protocol):
         """The columns from record number start (counted from 0) on; raises TooManyFields where a row is wider."""
 
 
-def trimmed(cells: Sequence[str]) -> tuple[str, ...]:
-    """Drop the blank cells at the end of a row."""
+def record_of(row: int, raw: Sequence[str], width: int = 0) -> Record:
+    """Tidy the cells of a row and drop the blank ones at its end."""
+    cells = [spaces.tidy(cell) for cell in raw]
+    changed = any(before != after for before, after in zip(raw, cells, strict=True) if after)
+    return Record(row, filled_part(cells), width, changed)
+
+
+def filled_part(cells: Sequence[str]) -> tuple[str, ...]:
+    """The cells of a row up to the last one that is not blank."""
     end = len(cells)
     while end and not cells[end - 1]:
         end -= 1

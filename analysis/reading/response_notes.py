@@ -7,7 +7,7 @@ import numpy as np
 from analysis import refusals
 from analysis.reading import missing, sentinels
 from analysis.reading.half_read import Reading
-from analysis.reading.words import several
+from analysis.reading.words import counted, several
 
 _MARK_NAMES = {",": "comma", ".": "point"}
 
@@ -53,8 +53,8 @@ def _limits(reading: Reading) -> Iterator[str]:
     if rows:
         texts = [text for text, limit in zip(reading.odd.texts, reading.is_limit, strict=True) if limit]
         yield (
-            f"Column “{reading.written.name}”: {len(rows)} of its values lie beyond a detection limit ({several(texts)}; "
-            f"{refusals.rows_told(rows)}) and take no part; leaving them out shifts the means, nothing was put in their place."
+            f"Column “{reading.written.name}”: {counted(len(rows), 'value')} beyond a detection limit ({several(texts)}; "
+            f"{refusals.rows_told(rows)}) counted as missing; nothing was put in their place, and leaving them out shifts the means."
         )
 
 

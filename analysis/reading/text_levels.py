@@ -6,12 +6,14 @@ from decimal import Decimal
 
 import numpy as np
 import pyarrow as pa
+import pyarrow.compute as pc
 
 from analysis.reading import level_order, look_alikes, marks, missing, numerals, spaces
 from analysis.reading.numerals import Numeral
 from analysis.reading.words import several
 from analysis.table import Codes, Levels
 
+_MANY = 20_000  # different texts; beyond, they are running numbers or identifiers and not looked at one by one
 Identity = tuple[str, Decimal | str, str]
 
 
@@ -29,7 +31,7 @@ def read(name: str, texts: pa.StringArray, comma_separated: bool) -> Levels:
     encoded = texts.dictionary_encode()
     raw: list[str] = encoded.dictionary.to_pylist()
     tidy = spaces.tidy_array(encoded.dictionary).to_pylist()
-    levels, place = _distinct(tidy, comma_separated)
+    levels, place = _distinct(tidy, comma_separated) if len(tidy) <= _MANY else _distinct_many(tidy)
     order = _order(levels)
     rank = np.full(len(levels) + 1, -1, dtype=np.intp)  # the last entry serves the blank, whose place is -1
     rank[order] = np.arange(len(levels))
@@ -59,6 +61,34 @@ def _distinct(texts: Sequence[str], comma_separated: bool) -> tuple[list[Level],
     return levels, place
 
 
+def _distinct_many(texts: Sequence[str]) -> tuple[list[Level], list[int]]:
+    """The same for a great many texts: plain numbers by value where all are, else each text as it stands."""
+    filled = list(dict.fromkeys(text for text in texts if text))
+    keys: Sequence[float | str] = filled
+    amounts: Sequence[Decimal | None] = [None] * len(filled)
+    if _all_numbers(filled):
+        amounts = [Decimal(text) for text in filled]
+        keys = [float(text) for text in filled]
+    places: dict[float | str, int] = {}
+    levels: list[Level] = []
+    of_text: dict[str, int] = {}
+    for text, key, amount in zip(filled, keys, amounts, strict=True):
+        if key not in places:
+            places[key] = len(levels)
+            levels.append(Level(text, amount, ""))
+        of_text[text] = places[key]
+    return levels, [of_text[text] if text else -1 for text in texts]
+
+
+def _all_numbers(texts: Sequence[str]) -> bool:
+    """Whether all texts are plain finite numbers."""
+    try:
+        values = pc.cast(pa.array(texts, pa.string()), pa.float64())
+    except pa.ArrowInvalid:
+        return False
+    return bool(pc.all(pc.is_finite(values)).as_py())
+
+
 def _level(text: str, numeral: Numeral | None, decided: marks.Marks) -> Level:
     if numeral is None or numeral.bound or numeral.footnote or abs(numeral.exponent) > 400:
         return Level(text, None, "")
@@ -70,7 +100,7 @@ def _order(levels: Sequence[Level]) -> list[int]:
     amounts = [level.amount for level in levels if level.amount is not None]
     if len(amounts) == len(levels) and len({level.unit for level in levels} - {""}) <= 1:
         return sorted(range(len(levels)), key=lambda index: amounts[index])
-    return level_order.natural([level.label for level in levels])
+    return level_order.natural([level.label for level in levels]) if len(levels) <= _MANY else list(range(len(levels)))
 
 
 def _amounts(levels: Sequence[Level]) -> tuple[float, ...] | None:

@@ -1,26 +1,23 @@
 """How the sheets of a workbook become records and columns; cells give their value, not their format."""
 
 import datetime
-import io
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 from functools import cached_property, partial
-from typing import TypeVar
 
 import numpy as np
 import pyarrow as pa
-import python_calamine as calamine
 
 from analysis import refusals
-from analysis.reading import archives, cell_values, ods_marks, spaces, xls_marks, xlsx_marks
+from analysis.reading import archives, books, cell_values, ods_marks, ole, xls_marks, xlsx_marks
+from analysis.reading.books import Book
 from analysis.reading.cell_values import Value
-from analysis.reading.records import HEAD, Body, Found, Record, Span, trimmed
+from analysis.reading.records import HEAD, Body, Found, Record, record_of
 from analysis.reading.sheet_marks import Marks
 from analysis.reading.signatures import Kind
 from analysis.reading.words import several
 from analysis.table import Decision
 
-T = TypeVar("T")
 MOST_CELLS = 40_000_000  # of the rectangle that a sheet spans
 
 
@@ -37,7 +34,7 @@ class Sheet:
     def head(self) -> Sequence[Record]:
         """The first rows as records."""
         rows = enumerate(self.values[:HEAD])
-        return tuple(Record(i + 1, trimmed([spaces.tidy(cell_values.text_of(value)) for value in row])) for i, row in rows)
+        return tuple(record_of(i + 1, [cell_values.text_of(value) for value in row]) for i, row in rows)
 
     def body(self, start: int, width: int) -> Body:
         """The columns below the header; raises TooManyFields where a cell beside the header is filled, or CellTooLong."""
@@ -68,35 +65,16 @@ def read(data: bytes, kind: Kind, wanted: str | None) -> Sheet:
     if kind != "xls":
         archives.check(data)
     marks = _marks(data, kind)
-    book = _guarded(lambda: calamine.CalamineWorkbook.from_filelike(io.BytesIO(data)))
-    known = _sheet_names(book)
-    if wanted is not None and wanted not in known:
-        raise refusals.MissingSheet(wanted, known)
+    book = books.opened_apart(data) if kind == "xls" else books.opened(data)
+    if wanted is not None and wanted not in book.names:
+        raise refusals.MissingSheet(wanted, book.names)
     if wanted is not None:
         return _sheet(book, marks, wanted, [])
-    for name in known:
-        sheet = _sheet(book, marks, name, [other for other in known if other != name])
-        if _holds_table(sheet) or len(known) == 1:
+    for name in book.names:
+        sheet = _sheet(book, marks, name, [other for other in book.names if other != name])
+        if _holds_table(sheet) or len(book.names) == 1:
             return sheet
-    raise refusals.NoSheetWithTable(known)
-
-
-def _guarded(call: Callable[[], T]) -> T:
-    """Run a part of the workbook library; whatever it stumbles over in a file means that the file is damaged."""
-    try:
-        return call()
-    except calamine.PasswordError as error:
-        raise refusals.Encrypted() from error
-    except (KeyboardInterrupt, SystemExit, MemoryError):
-        raise
-    except BaseException as error:  # a fault inside the library is no ordinary exception
-        raise refusals.DamagedFile("workbook") from error
-
-
-def _sheet_names(book: calamine.CalamineWorkbook) -> list[str]:
-    """Sheets of cells, the visible ones first."""
-    sheets = [sheet for sheet in book.sheets_metadata if sheet.typ == calamine.SheetTypeEnum.WorkSheet]
-    return [s.name for s in sorted(sheets, key=lambda sheet: sheet.visible != calamine.SheetVisibleEnum.Visible)]
+    raise refusals.NoSheetWithTable(book.names)
 
 
 def _marks(data: bytes, kind: Kind) -> Callable[[str], Marks]:
@@ -106,6 +84,8 @@ def _marks(data: bytes, kind: Kind) -> Callable[[str], Marks]:
         for name, marks in sheets.items():
             _refuse_vast(name, marks)
         return lambda name: sheets.get(name, Marks())
+    if kind == "xls":
+        ole.stream(data, xls_marks.STREAMS)  # broken chains are told before the workbook is opened
     return partial(xlsx_marks.read if kind == "xlsx" else xls_marks.read, data)
 
 
@@ -114,14 +94,12 @@ def _refuse_vast(name: str, marks: Marks) -> None:
         raise refusals.TooManyCellsInSheet(name, marks.rows, marks.columns)
 
 
-def _sheet(book: calamine.CalamineWorkbook, marks_of: Callable[[str], Marks], name: str, others: Sequence[str]) -> Sheet:
+def _sheet(book: Book, marks_of: Callable[[str], Marks], name: str, others: Sequence[str]) -> Sheet:
     marks = marks_of(name)
     _refuse_vast(name, marks)
-    found = _guarded(lambda: book.get_sheet_by_name(name))
-    if not marks.spans:  # those of .ods are known already
-        marks.spans.extend(Span(a[0] + 1, b[0] + 1, a[1], b[1]) for a, b in _guarded(lambda: found.merged_cell_ranges) or [])
-    values = cell_values.marked(_guarded(lambda: found.to_python(skip_empty_area=False)), marks)
-    return Sheet(name, values, marks, Found(_decisions(name, others, marks), spans=tuple(marks.spans)))
+    values, spans = book.load(name)
+    marks.spans.extend([] if marks.spans else spans)  # those of .ods are known already
+    return Sheet(name, cell_values.marked(values, marks), marks, Found(_decisions(name, others, marks), spans=tuple(marks.spans)))
 
 
 def _decisions(name: str, others: Sequence[str], marks: Marks) -> tuple[Decision, ...]:

@@ -9,6 +9,7 @@ from analysis import refusals
 from analysis.reading import ole
 from analysis.reading.sheet_marks import Marks
 
+STREAMS = ("Workbook", "Book")
 _PERCENT_FORMATS = (9, 10)
 _LITERAL = re.compile(r'"[^"]*"|\\.')
 _ERRORS: Mapping[int, str] = {0: "#NULL!", 7: "#DIV/0!", 15: "#VALUE!", 23: "#REF!", 29: "#NAME?", 36: "#NUM!", 42: "#N/A"}
@@ -19,7 +20,7 @@ _UNICODE = 0x0600  # the version from which text may have two bytes for a charac
 
 def read(data: bytes, sheet: str) -> Marks:
     """Return the marks of one sheet of an .xls file; raises DamagedFile where its records do not hold."""
-    book = ole.stream(data, ("Workbook", "Book"))
+    book = ole.stream(data, STREAMS)
     try:
         return _read(book, sheet)
     except (struct.error, IndexError) as error:

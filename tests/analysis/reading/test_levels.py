@@ -120,3 +120,12 @@ def test_measurements_are_never_filled_down() -> None:
     table = read("feed,shade,y\nA,low,1\nA,high,\nB,low,3\nB,high,\n")
     assert [entry.row for entry in table.column("y").as_response().missing] == [3, 5]
     assert "filled" not in " ".join(table.notes)
+
+
+def test_a_great_many_levels_are_read_by_the_same_rules() -> None:
+    numbers = read("plot,y\n" + "".join(f"{30_000 - index}.0,1\n{30_000 - index},1\n" for index in range(25_000)))
+    found = numbers.column("plot").as_levels()
+    assert (len(found.labels), found.labels[0], found.labels[-1]) == (25_000, "5001.0", "30000.0")
+    assert found.codes[:2].tolist() == [24_999, 24_999]
+    words = read("plot,y\n" + "".join(f"p{index} ,1\np{index},1\n" for index in range(25_000))).column("plot").as_levels()
+    assert (len(words.labels), words.labels[1], words.amounts) == (25_000, "p1", None)

@@ -84,3 +84,14 @@ def test_long_texts_do_not_break_the_sentence() -> None:
     with pytest.raises(refusals.UnknownColumn) as unknown:
         table.column("m" * 5000)
     assert is_one_sentence(str(unknown.value))
+
+
+def test_line_breaks_in_names_stay_out_of_the_sentence() -> None:
+    with pytest.raises(Refusal) as refusal:
+        read_table("no\nsuch\u2028file.csv")
+    assert is_one_sentence(str(refusal.value))
+
+
+def test_a_long_cell_in_a_header_or_a_workbook() -> None:
+    with pytest.raises(refusals.CellTooLong, match="row 1"):
+        read("feed," + "s" * 40_000 + ",y\nA,low,1\nB,high,2\n")

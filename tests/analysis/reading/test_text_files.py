@@ -185,3 +185,12 @@ def test_the_preview_shows_the_first_rows_as_understood() -> None:
     preview = read("Title\n" + text(BALANCED)).preview(2)
     assert preview.index.tolist() == [3, 4]
     assert preview["yield"].tolist() == ["12.5", "13.0"]
+
+
+def test_trimmed_names_are_told() -> None:
+    assert "names of columns was trimmed" in told(read("feed , shade,y\nA,low,1\nB,high,2\n"))
+
+
+def test_bytes_of_other_kinds() -> None:
+    assert read_table(bytearray(text(BALANCED).encode())).rows == 8
+    assert read_table(memoryview(text(BALANCED).encode())).rows == 8
