@@ -14,7 +14,7 @@ from analysis.checks.outcomes import ChiSquare, FTest, chi_square, f_test
 
 Floats = NDArray[np.float64]
 Codes = NDArray[np.intp]
-ROUNDING = 16 * np.finfo(np.float64).eps  # deviations below this share of the largest value are rounding
+ROUNDING = 1e-10  # deviations below this share of the largest value are rounding, of residuals too small beside what they were left from
 
 
 @dataclass(frozen=True, eq=False)

@@ -93,6 +93,9 @@ def test_pairs_have_no_spread_of_their_deviations() -> None:
     assert spread.levene(*pairs) is None
     assert spread.brown_forsythe(*pairs) is None
     assert spread.bartlett(*pairs) is not None
+    # Residuals carry the rounding of the values that they were left from.
+    residuals, codes, count = coded([[value - (a + b) / 2 for value in (a, b)] for a, b in ((3001.1, 3001.7), (2990.3, 2993.9))])
+    assert spread.levene(residuals, codes, count) is None
 
 
 def test_one_still_cell_is_enough_to_leave_bartlett_undefined() -> None:
