@@ -114,7 +114,16 @@ def _totals(body: Body, rows: npt.NDArray[np.intp]) -> list[tuple[int, str]]:
         if not label:
             break
         found.append((int(index), label))
-    return found if any(is_total(label) for _, label in found) and len(found) < rows.size else []
+    above = rows[: rows.size - len(found)]
+    if not above.size or not any(is_total(label) for _, label in found):
+        return []
+    return [] if any(_occurs(body, above, label) for _, label in found) else found
+
+
+def _occurs(body: Body, rows: npt.NDArray[np.intp], label: str) -> bool:
+    """Whether a heading is also a level of observations, and therefore no sign of a summary."""
+    chosen = pa.array(rows)
+    return any(pc.any(pc.equal(column.take(chosen), label)).as_py() for column in body.columns)
 
 
 def _label_columns(body: Body, rows: npt.NDArray[np.intp]) -> int:

@@ -33,6 +33,7 @@ class Reading:
     values: Floats
     odd: Odd
     decided: marks.Marks = field(default_factory=marks.Marks)
+    grouped: bool = False  # whether plain cells turned out to hold a thousands mark (1.234)
 
     @cached_property
     def is_number(self) -> npt.NDArray[np.bool_]:

@@ -96,6 +96,8 @@ def _usual_width(head: Sequence[Record], places: Sequence[int]) -> int:
 
 def _names_columns(record: Record, width: int) -> bool:
     """Whether a row above the first full one is the header, some of its cells blank."""
+    if record.cells[0] == "" and len(record.cells) == width == record.filled + 1:
+        return True  # a grid's blank corner before its levels, which may be numbers
     if any(is_number(cell) for cell in record.cells):
         return False
     return record.filled >= max(2, width - 1) or (record.filled > 2 and len(record.cells) >= width - 1)

@@ -11,7 +11,7 @@ _SIGN = "[+" + re.escape(MINUS_SIGNS) + "]"
 FOOTNOTES = "*\u2020\u2021\u00a7\u00b6#"
 _SUPERSCRIPTS = str.maketrans("⁰¹²³⁴⁵⁶⁷⁸⁹⁻⁺", "0123456789-+")
 _CELL = re.compile(
-    rf"(?P<before>[*†‡]?) ?(?P<bound>[<>≤≥]=?)? ?(?P<sign>{_SIGN}?) ?"
+    rf"(?P<before>[*†‡]?) ?(?P<bound>[<>≤≥]=?)? ?(?P<money>[$€£¥]?)(?P<sign>{_SIGN}?) ?"
     r"(?P<body>[0-9]+(?:[ '’.,][0-9]+)*[.,]?|[.,][0-9]+)"
     rf"(?P<exponent>[eE]{_SIGN}?[0-9]+| ?[x×·] ?10(?:\^{_SIGN}?[0-9]+|[⁺⁻]?[⁰¹²³⁴⁵⁶⁷⁸⁹]+))?"
     r" ?(?P<rest>.*)",
@@ -64,14 +64,14 @@ def find(text: str) -> Numeral | None:
     body, spaced = _without_spaces(match["body"])
     shape = _shape(body, settled=spaced or bool(match["exponent"])) if body else None
     unit, after = _unit_and_footnote(match["rest"])
-    if shape is None or unit is None:
+    if shape is None or unit is None or (unit and match["money"]):
         return None
     return Numeral(
         sign="-" if match["sign"] and match["sign"] in MINUS_SIGNS else "",
         body=body,
         exponent=_exponent(match["exponent"] or ""),
         shape=shape,
-        unit=unit,
+        unit=match["money"] or unit,
         footnote=bool(match["before"]) or after,
         bound=(match["bound"] or "").replace("≤", "<").replace("≥", ">")[:1],
     )

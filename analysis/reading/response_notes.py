@@ -44,7 +44,7 @@ def _marks(reading: Reading) -> Iterator[str]:
         yield f"Column “{name}”: decimal commas were read."
     for mark, role in ((",", reading.decided.comma), (".", reading.decided.point)):
         grouped = any(shape.thousands == mark or (shape.either == mark and role == "thousands") for shape in shapes)
-        if (grouped or (mark == "." and role == "thousands")) and mark not in reading.decided.assumed:
+        if (grouped or (mark == "." and reading.grouped)) and mark not in reading.decided.assumed:
             yield f"Column “{name}”: the {_MARK_NAMES[mark]} was read as a thousands mark."
 
 

@@ -94,6 +94,7 @@ def _settle_plain_thousands(reading: Reading) -> None:
     either = pc.match_substring_regex(reading.written.texts, _PLAIN_EITHER).to_numpy(zero_copy_only=False).astype(bool)
     if reading.written.numbers is not None:
         either &= np.isnan(reading.written.numbers)
+    reading.grouped = bool(either.any())
     reading.values[either] *= 1000.0
     reading.values[either] = np.round(reading.values[either])
 

@@ -38,6 +38,7 @@ _PICTURES_AND_DOCUMENTS: tuple[tuple[bytes, str], ...] = (
 _OLE = b"\xd0\xcf\x11\xe0\xa1\xb1\x1a\xe1"
 _SOMETHING = re.compile(rb"[^\0\t\r\n \xef\xbb\xbf\xff\xfe]")
 _HTML = re.compile(rb"\s*(<!--.*?-->\s*)*<(!doctype\s+html|html|head|body|table|div|meta|style)\b", re.IGNORECASE | re.DOTALL)
+_JSON = re.compile(rb"\s*[\[{]\s*[\[{\"]")
 _XML = re.compile(rb"\s*<\?xml|\s*<[A-Za-z][\w:.-]*[^<>]*>\s*<", re.DOTALL)
 
 
@@ -98,5 +99,7 @@ def _refuse_other(data: bytes) -> None:
         raise refusals.NotATable("a film or a picture")
     if _HTML.match(start):
         raise refusals.NotATable("a web page (HTML)")
+    if _JSON.match(start):
+        raise refusals.NotATable("a JSON document")
     if _XML.match(start):
         raise refusals.NotATable("an XML document")

@@ -120,6 +120,12 @@ def test_numbers_down_and_across() -> None:
     assert values(table, "value") == [5.1, 4.2, 6.4, 5.5]
 
 
+def test_a_blank_corner_between_numbers() -> None:
+    table = read(",0,50\n10,5.1,4.2\n20,6.4,5.5\n")
+    assert table.names == ("row", "column", "value")
+    assert table.column("column").as_levels().amounts == (0.0, 50.0)
+
+
 def test_decimal_commas_in_a_grid() -> None:
     assert values(read("Cultivar / Shade;none;half\nRex;5,1;4,2\nNova;6,4;5,5\n"), "value") == [5.1, 4.2, 6.4, 5.5]
 

@@ -33,6 +33,7 @@ def response(*cells: str, separator: str = ";") -> Response:
         (("1.5 \u00d7 10^3", "2\u00b710\u207b\u00b2"), (1500, 0.02)),
         (("45%", "50 %", "12,5%"), (45, 50, 12.5)),
         ((".5", "5.", ",25"), (0.5, 5, 0.25)),
+        (("$5.2", "$-3", "$1,234.5"), (5.2, -3, 1234.5)),
         (("12.3*", "12.5\u2020", "13"), (12.3, 12.5, 13)),
         (("12.3\u00b2", "12.5", "13"), (12.3, 12.5, 13)),
         (("0.123", "0.456"), (0.123, 0.456)),
@@ -84,6 +85,9 @@ class TestOneMarkAndThreeDigits:
         found = response("1.234", "2.500", other)
         assert found.values[:2].tolist() == [1234, 2500]
         assert any("point was read as a thousands mark" in note for note in found.notes)
+
+    def test_marks_that_do_not_occur_are_not_told(self) -> None:
+        assert response("1,5", "2,25").notes == ("Column “y”: decimal commas were read.",)
 
     def test_decimal_commas_and_points_in_one_column_are_both_read(self) -> None:
         assert response("5,2", "5.3", "5.123").values.tolist() == [5.2, 5.3, 5.123]

@@ -29,6 +29,7 @@ ROWS = text(BALANCED).encode()
         (b"\x1f\x8b\x08" + bytes(100), "a gzip archive"),
         (b"<!DOCTYPE html><html><body><table><tr><td>1</td></tr></table></body></html>", "a web page"),
         (b"<table><tr><td>feed</td></tr></table>", "a web page"),
+        (b'[{"feed": "A", "y": 1}]', "a JSON document"),
         (b"<?xml version='1.0'?><Workbook/>", "an XML document"),
         (b"\x00\x01\x02\x03" * 100 + b"\xfe\xff\x80", "binary data"),
         (b"PK\x03\x04" + bytes(100), "damaged or cut short"),

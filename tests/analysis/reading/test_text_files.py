@@ -194,3 +194,24 @@ def test_trimmed_names_are_told() -> None:
 def test_bytes_of_other_kinds() -> None:
     assert read_table(bytearray(text(BALANCED).encode())).rows == 8
     assert read_table(memoryview(text(BALANCED).encode())).rows == 8
+
+
+@pytest.mark.parametrize(
+    ("last", "reason"),
+    [
+        ("Total,,5", "“Total” row, not an observation"),
+        ("Mean:,,2.5", "“Mean:” row, not an observation"),
+        ("Mittelwert,,2.5", "“Mittelwert” row, not an observation"),
+        ("Grand total,,5", "“Grand total” row, not an observation"),
+        ("Mean,Mean,2.5", "“Mean” row, not an observation"),
+    ],
+)
+def test_totals_and_means_are_left_out_with_their_reason(last: str, reason: str) -> None:
+    table = read(f"feed,shade,y\nA,low,1\nA,high,2\nB,low,3\nB,high,4\n{last}\n")
+    assert [(entry.row, entry.why) for entry in table.left_out] == [(6, reason)]
+    assert table.rows == 4
+
+
+def test_a_level_called_total_is_a_level() -> None:
+    table = read("light,rep,y\ntotal,1,1\ntotal,2,2\npartial,1,3\npartial,2,4\ntotal,3,2\n")
+    assert (table.rows, table.left_out) == (5, ())
