@@ -10,7 +10,7 @@ from analysis.cells import Cells, Strata
 from analysis.model import Model, row_column_parts
 from analysis.observations import Factor, Observations
 from analysis.refusals import BlockIsFactor, ConstantResponse, FactorsGoTogether, OneLevel, TooFewObservations
-from analysis.rounding import significant
+from analysis.rounding import shortest
 from analysis.surfaces import BLOCK, ROW, codes_of, connected_parts
 
 
@@ -74,7 +74,7 @@ def refuse_unusable(design: Design) -> None:
     """Raise a Refusal for a response that never varies, columns that go together, or too few observations to judge chance."""
     observed = design.observed
     if design.strata.without_rounding(float(np.ptp(observed.offsets)) ** 2 * observed.size) == 0:
-        raise ConstantResponse(observed.response, significant(float(observed.values[0]), 6), observed.size)
+        raise ConstantResponse(observed.response, shortest(float(observed.values[0])), observed.size)
     _refuse_aliases(design)
     model = design.analysed
     if model.residual_df < 2:
@@ -106,7 +106,7 @@ def _refuse_aliases(design: Design) -> None:
 
 def notes(design: Design) -> tuple[str, ...]:
     """Return what the layout means for the answers, in sentences."""
-    return (*_untestable(design), *_empties(design), *_parts_told(design), *_nesting(design), *_units(design))
+    return (*_untestable(design), *_empties(design), *_parts_told(design), *_nesting(design), *_blocks_told(design), *_units(design))
 
 
 def _untestable(design: Design) -> tuple[str, ...]:
@@ -161,6 +161,22 @@ def _lonely_levels(row: Factor, column: Factor, filled: np.ndarray) -> tuple[str
             with_level = outer.levels[int(np.flatnonzero(across[level])[0])]
             notes.append(f"“{inner.levels[level]}” of “{inner.name}” was tried with “{with_level}” of “{outer.name}” only.")
     return tuple(notes)
+
+
+def _blocks_told(design: Design) -> tuple[str, ...]:
+    """Say where a block column takes no part, or keeps means from being estimated."""
+    block = design.observed.block
+    if block is None:
+        return ()
+    if block.size == 1:
+        return (f"All usable rows are in one block of “{block.name}”, so the block takes no part.",)
+    filled = design.cells.n.ravel() > 0
+    if design.analysed.cells.estimable[filled].all():
+        return ()
+    return (
+        f"Some combinations share no block of “{block.name}”, not even through others: their differences cannot be told apart from "
+        "differences between blocks, and means over the blocks are not given for them.",
+    )
 
 
 def _units(design: Design) -> tuple[str, ...]:

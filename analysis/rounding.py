@@ -50,6 +50,11 @@ def significant(value: float | None, digits: int = 3) -> str:
     return fixed(value, max(0, min(12, digits - 1 - magnitude)))
 
 
+def shortest(value: float) -> str:
+    """Write one observed value as briefly as its digits allow."""
+    return f"{value:.12g}".replace("-", MINUS)
+
+
 def p_value(p: float | None) -> str:
     """Write a p-value as "p = 0.023", or "p < 0.001" below the floor (SAMPL guideline: two or three digits, exact)."""
     if p is None or not math.isfinite(p):
