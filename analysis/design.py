@@ -1,6 +1,5 @@
 """What can be said of the crossed layout before any test: counts, balance, empty cells, connection, and what follows from them."""
 
-from collections import Counter
 from dataclasses import dataclass
 from functools import cached_property
 
@@ -188,10 +187,3 @@ def _units(design: Design) -> tuple[str, ...]:
     return (
         f"Residual degrees of freedom: {df} with the unit as the observation; {before} if every reading had been counted as independent.",
     )
-
-
-def counts_told(design: Design) -> str:
-    """Return the counts per cell in words: "6 in every cell" or "between 1 and 6 a cell"."""
-    counts = Counter(design.cells.n.ravel().tolist())
-    low, high = min(counts), max(counts)
-    return f"{low} in every cell" if low == high else f"between {low} and {high} a cell"
