@@ -44,17 +44,17 @@ def _tests_of_spread(findings: Findings) -> list[str]:
     test = plain.plain(findings.checks.get("brown_forsythe"))
     if not test or test["p"] is None:
         return ["A test of equal spread is not defined for these cells."]
-    told = f"Brown–Forsythe {words.statistic(test['f'], test['df1'], test['df2'])}, {p_value(test['p'])}"
-    beside_it = (("Levene", _p(findings, "levene")), ("Bartlett", _p(findings, "bartlett")))
-    others = [f"{name} {p_value(p)}" for name, p in beside_it if p is not None]
-    beside = f"The same question asked otherwise: {', '.join(others)}." if others else ""
-    if test["p"] < _alpha(findings):
-        said = f"The cells do not spread alike ({told}): comparisons between quiet and noisy cells are less certain than they look."
-    elif _fewest_and_most(findings)[0] <= BLIND:
-        said = f"No difference in spread was found ({told}), but with so few in a cell even a large one would often be missed."
-    else:
-        said = f"No difference in spread was found ({told}); that does not show that there is none."
-    return [sentence for sentence in (said, beside) if sentence]
+    others = {name: _p(findings, check) for name, check in (("Levene", "levene"), ("Bartlett", "bartlett"))}
+    beside = "".join(f"; {name} {p_value(p)}" for name, p in others.items() if p is not None)
+    told = f"Brown–Forsythe {words.statistic(test['f'], test['df1'], test['df2'])}, {p_value(test['p'])}{beside}"
+    alpha = _alpha(findings)
+    if test["p"] < alpha:
+        return [f"The cells do not spread alike ({told}): comparisons between quiet and noisy cells are less certain than they look."]
+    if any(p is not None and p < alpha for p in others.values()):
+        return [f"The tests do not agree whether the cells spread alike ({told}): look at the points before trusting either."]
+    if _fewest_and_most(findings)[0] <= BLIND:
+        return [f"No difference in spread was found ({told}), but with so few in a cell even a large one would often be missed."]
+    return [f"No difference in spread was found ({told}); that does not show that there is none."]
 
 
 def shape(findings: Findings) -> list[str]:

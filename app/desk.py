@@ -16,6 +16,7 @@ from analysis.table import Table
 from app import samples
 
 HISTORY = 200  # studies kept for undo
+TABLE, CHOICE = "table", "choice"
 STATE = "desk"  # the one entry of the session that matters; widgets are views of it
 
 
@@ -27,6 +28,7 @@ class State:
     past: tuple[Study | None, ...] = ()
     future: tuple[Study | None, ...] = ()
     complaint: str | None = None  # why the last file or choice was not taken
+    about: str = TABLE  # what the complaint is about
     views: Mapping[str, Any] | None = None  # what is looked at, which no analysis depends on
 
 
@@ -43,9 +45,9 @@ def study() -> Study | None:
     return _state().study
 
 
-def complaint() -> str | None:
-    """Return the sentence of the last refusal, until something is taken again."""
-    return _state().complaint
+def complaint(about: str) -> str | None:
+    """Return why the last table, or the last choice, was not taken, until something is taken again."""
+    return _state().complaint if _state().about == about else None
 
 
 def open_study(new: Study | None) -> None:
@@ -62,7 +64,7 @@ def change(**fields: Any) -> None:
     try:
         open_study(replace(now, **fields))
     except Refusal as refusal:
-        _remember(complaint=str(refusal))
+        _remember(complaint=str(refusal), about=CHOICE)
 
 
 def assign(role: str, column: str | None) -> None:
@@ -148,7 +150,7 @@ def bring(content: bytes, name: str) -> None:
         roles = guess_roles(table)
         open_study(Study(table, roles.response, roles.row_factor, roles.column_factor, roles.block, roles.unit))
     except Refusal as refusal:
-        _remember(complaint=str(refusal))
+        _remember(complaint=str(refusal), about=TABLE)
 
 
 @st.cache_resource(max_entries=64, show_spinner=False)

@@ -33,7 +33,7 @@ def anova(findings: Findings, table: pd.DataFrame) -> Sheet:
             str(r.term),
             fixed(r.df, 0),
             significant(r.ss, 5),
-            significant(r.ms, 4),
+            significant(r.ms, 4) if _known(r.ms) else "",
             significant(r.f) if _known(r.f) else "",
             p_number(r.p) if _known(r.f) else "",
             fixed(r.partial_eta2, 2) if _known(r.f) else "",
@@ -82,15 +82,7 @@ def comparisons(findings: Findings, family: str) -> Sheet:
     frame = records.family(findings, family)
     sliced = frame["within"].notna().any()
     rows = [
-        (
-            tabled.pair(c.left, c.right, findings.observed.scale.tells_ratios),
-            *((str(c.within),) if sliced else ()),
-            tabled.size(c),
-            significant(c.t),
-            p_number(c.p),
-            p_number(c.p_adjusted),
-            words.VERDICTS[c.verdict],
-        )
+        (tabled.pair(c.left, c.right, findings.observed.scale.tells_ratios), *((str(c.within),) if sliced else ()), *_compared(c))
         for c in records.lines(frame.head(MOST_ROWS))
     ]
     columns = ("compared", *(("within",) if sliced else ()), tabled.difference_head(findings), "t", "p", "p adjusted", "reading")
@@ -100,6 +92,14 @@ def comparisons(findings: Findings, family: str) -> Sheet:
         rows,
         frozenset({0, len(columns) - 1} | ({1} if sliced else set())),
     )
+
+
+def _compared(comparison: Any) -> tuple[str, ...]:
+    """Return what one comparison came to: size, t, both p-values and the reading."""
+    c = comparison
+    if not _known(c.difference):
+        return ("", "", "", "", words.NOT_ESTIMABLE)
+    return (tabled.size(c), significant(c.t), p_number(c.p), p_number(c.p_adjusted), words.VERDICTS[c.verdict])
 
 
 def letters(findings: Findings, family: str) -> Sheet | None:

@@ -31,9 +31,9 @@ def findings(title: str) -> Findings | None:
     return None
 
 
-def complaint() -> None:
-    """Show why the last file or choice was not taken, until something is taken again."""
-    sentence = desk.complaint()
+def complaint(about: str = desk.CHOICE) -> None:
+    """Show why the last choice or table was not taken, until something is taken again."""
+    sentence = desk.complaint(about)
     if sentence:
         st.html(paper.notice(sentence))
 

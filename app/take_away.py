@@ -67,8 +67,9 @@ def figures(findings: Findings) -> bytes:
     }
     packed = io.BytesIO()
     with zipfile.ZipFile(packed, "w", zipfile.ZIP_DEFLATED) as archive:
-        for name, (figure, caption) in drawn.items():
-            archive.writestr(f"{name}.png", images.png(figure))
-            archive.writestr(f"{name}.svg", images.svg(figure))
+        pictures = images.pngs_and_svgs([figure for figure, _ in drawn.values()])
+        for (name, (_, caption)), (png, svg) in zip(drawn.items(), pictures, strict=True):
+            archive.writestr(f"{name}.png", png)
+            archive.writestr(f"{name}.svg", svg)
             archive.writestr(f"{name}.txt", caption + "\n")
     return packed.getvalue()

@@ -14,6 +14,7 @@ from analysis.study import Study
 from app import records
 
 EMPTY = "empty"
+NOT_ESTIMABLE = "cannot be estimated"
 NONE = "none"
 MODELS: Mapping[str, str] = MappingProxyType({"full": "With interaction", "additive": "Without"})
 SCALES: Mapping[str, str] = MappingProxyType({"none": "As measured", "log": "Logarithm", "sqrt": "Square root", "reciprocal": "Reciprocal"})
@@ -23,6 +24,7 @@ MATTERS_HELP = (
     "The smallest difference that matters, in units of the response. With it, a small difference can be told from an open question."
 )
 NOT_GIVEN = "not given"
+MATTERS_NOT_APPLIED = "The difference that matters is in the units of the response and is not applied on another scale."
 ADJUST, FAMILY, LETTERS = "Adjusted by", "What is compared", "Letters for a figure or table"
 DROP, SAMPLE = "Drop a file here or browse for one", "Or look around with an invented experiment"
 CHOOSE = "choose a column"
@@ -93,8 +95,8 @@ def response_label(findings: Findings) -> str:
     """Return the response with its unit and the scale it is analysed on, as an axis names it."""
     study = findings.study
     unit = unit_of(study)
-    scale = "" if study.scale == "none" else f", {scale_name(study.scale).lower()}"
-    return f"{study.response}{f' ({unit})' if unit else ''}{scale}"
+    scale = "" if study.scale == "none" else f"{scale_name(study.scale).lower()} of "
+    return f"{scale}{study.response}{f' ({unit})' if unit else ''}"
 
 
 def unit_of(study: Study) -> str | None:
@@ -263,4 +265,5 @@ def table_used(findings: Findings) -> str:
 
 def family_told(findings: Findings, name: str) -> str:
     """Return how many comparisons a family holds and how they are adjusted."""
-    return f"{family_size(findings, name)}, adjusted together ({adjusted_by(findings)})"
+    size = family_size(findings, name)
+    return size if size == "1 comparison" else f"{size}, adjusted together ({adjusted_by(findings)})"

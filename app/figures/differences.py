@@ -70,7 +70,7 @@ def _ground(findings: Findings, look: Look, frame: pd.DataFrame, names: list[str
             "automargin": False,
         },
         margin={"l": lettering.widest(names, look.text) + 10},
-        height=round(len(names) * look.text * LINE_HEIGHT + 4.5 * look.text + 24),
+        height=round(max(len(names), 2) * look.text * LINE_HEIGHT + 4.5 * look.text + 24),
     )
 
 
@@ -116,8 +116,8 @@ def _marks(findings: Findings, look: Look, frame: pd.DataFrame, heights: list[fl
 
 def differences_caption(findings: Findings, family: str) -> str:
     """Say what marks and bars are, how large the family is and how it was adjusted."""
-    total, drawn = len(records.family(findings, family)), len(shown(findings, family))
-    cut = f" The {drawn} that lie farthest from zero for their error are drawn; the table holds all {total}." if drawn < total else ""
+    known, drawn = int(records.family(findings, family)["difference"].notna().sum()), len(shown(findings, family))
+    cut = f" The {drawn} that lie farthest from zero for their error are drawn; the table holds all {known}." if drawn < known else ""
     matters = findings.choices.matters
     band = "" if matters is None else f" The band marks differences below {measured(matters, matters)}, which do not matter."
     return (

@@ -15,7 +15,7 @@ from app.figures import lettering
 from app.look import Look, shade, text_on
 
 GAP = 0.03  # between fields, as a share of a field
-TALLEST, LOWEST = 66, 24  # px, of a field
+TALLEST, LOWEST = 66, 20  # px, of a field
 ONE_LINE = 40  # px; a lower field has room for one line only
 EMPTY, SINGLE, PLAIN = "empty", "single", "plain"
 
@@ -65,7 +65,7 @@ def _mean_field(cell: Any, place: int, columns: int, share: float, look: Look) -
 
 def _count_field(row: int, column: int, n: int, word: str, look: Look) -> Field:
     colour = look.paper if n == 0 else look.shades[2] if n == 1 else look.shades[0]
-    lines = (f"n {n}", word) if word else (f"n {n}",)
+    lines = (words.EMPTY,) if n == 0 else (f"n {n}", word) if word else (f"n {n}",)
     return Field(row, column, colour, lines, " · ".join(lines))
 
 
@@ -132,7 +132,8 @@ def _lettered(lines: tuple[str, ...], size: float, look: Look) -> str:
 def grid_caption(findings: Findings) -> str:
     """Say what stands in a field."""
     design = findings.design
-    return f"{design['row_factor']} down, {design['column_factor']} across: cell mean, n and standard deviation; the stronger the colour, the higher."
+    what = "" if findings.study.scale == "none" else f" of {words.response_label(findings)}"
+    return f"{design['row_factor']} down, {design['column_factor']} across. In each cell mean, n and standard deviation (sd){what}."
 
 
 def grid_alt(findings: Findings) -> str:

@@ -12,7 +12,7 @@ from app.figures.interaction import MANY_POINTS
 from app.figures.scene import Scene
 from app.look import Look
 
-MOST_CELLS = 40  # lines of the view by cell; beyond it the cells with the largest spread are drawn
+MOST_CELLS = 24  # lines of the view by cell; beyond it the cells with the largest spread are drawn
 
 
 def by_cell(findings: Findings, look: Look) -> go.Figure:

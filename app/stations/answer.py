@@ -26,6 +26,8 @@ def show() -> None:
         stage.figure(grid.grid(findings, stage.at_hand()), "grid", grid.grid_caption(findings), grid.grid_alt(findings))
     with right, st.container(gap="xsmall"):
         _switches(findings.study)
+        if findings.study.matters is not None and findings.choices.matters is None:
+            st.html(paper.notice(words.MATTERS_NOT_APPLIED))
         stage.complaint()
         drawn = interaction.interaction(findings, stage.at_hand())
         stage.figure(drawn, "interaction", interaction.interaction_caption(findings), interaction.interaction_alt(findings))

@@ -16,7 +16,7 @@ def show() -> None:
     left, right = st.columns([5, 7], gap="large")
     with left:
         st.file_uploader(words.DROP, type=FILES, **desk.bind_upload("bring_file"))
-        stage.complaint()
+        stage.complaint(desk.TABLE)
         st.radio(
             words.SAMPLE, [sample.file for sample in samples.SAMPLES], index=None, format_func=samples.question_of,
             captions=[words.literal(sample.sentence) for sample in samples.SAMPLES], **desk.bind_sample("bring_sample"),
