@@ -25,8 +25,8 @@ class Answer:
     statistic: str
     term: str
     f: float | None = None
-    df1: float | None = None
-    df2: float | None = None
+    df1: int | None = None
+    df2: int | None = None
     p: float | None = None
     partial_eta2: float | None = None
     partial_eta2_lower: float | None = None
@@ -124,7 +124,7 @@ def _answer(question: str, verdict: str, sentence: str, statistic: str, tested: 
         statistic=statistic,
         term=str(tested["term"]),
         f=float(tested["f"]),
-        df1=float(tested["df"]),
+        df1=int(tested["df"]),
         df2=residual_df,
         p=float(tested["p"]),
         partial_eta2=float(tested["partial_eta2"]),

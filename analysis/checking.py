@@ -77,6 +77,12 @@ def reasons(layout: Design) -> dict[str, bool]:
         "With at most two observations a cell, Levene's and Brown and Forsythe's tests are not defined.": repeated >= 2
         and int(n.max()) == 2,
         "The power that suits the response best is not looked for, because some values are not above 0.": lowest <= 0,
+        "An observation that alone determines its own fitted value has no studentised residual, and the tests that allow unequal "
+        "spread (HC3) are not defined with it.": bool((1 - layout.analysed.surface.leverage() < hc3.FITTED_BY_ITSELF).any()),
+        "The tests that allow unequal spread (HC3) compare equal-weight means, which need an observation in every combination.": (
+            layout.analysed.interaction and bool(layout.empty_cells)
+        ),
+        "The non-additivity test is not defined in a layout of separate parts.": not layout.connected,
         "The non-additivity test needs at least three levels of one factor.": max(layout.observed.shape) < 3
         or min(layout.observed.shape) < 2,
     }

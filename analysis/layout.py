@@ -7,13 +7,15 @@ import numpy as np
 from numpy.typing import NDArray
 
 from analysis.observations import Factor, Observations
-from analysis.refusals import LevelForEveryRow, NoUsableRow, TooManyCells, UnknownLevel
+from analysis.refusals import LevelForEveryRow, NoUsableRow, SpanOutOfReach, TooManyCells, UnknownLevel
+from analysis.relabelling import relabelled
 from analysis.scales import NAMED, scale_named, transformed
 from analysis.study import Study
-from analysis.table import LeftOut, Levels, Response, Table, counts
+from analysis.table import LeftOut, Levels, Response, counts
 from analysis.units import averaged_to_units
 
 MOST_CELLS = 40_000
+SMALLEST_SPAN, LARGEST_SPAN = 1e-70, 1e70  # the fourth powers of what lies between stay within double precision
 Chosen = slice | NDArray[np.intp]  # the table rows analysed; a slice takes all of them without a copy
 Kept = Mapping[str, tuple[int, ...] | None]
 
@@ -27,9 +29,9 @@ def lay_out(study: Study) -> Observations:
     study.require_roles()
     table = study.table
     response = table.column(str(study.response)).as_response()
-    parts = {name: table.column(name).as_levels() for name in _level_columns(study)}
+    parts = {name: relabelled(table.column(name).as_levels(), study.relabel.get(name, {})) for name in _level_columns(study)}
     kept = {name: _kept(name, levels, study.keep.get(name)) for name, levels in parts.items()}
-    usable, reasons = _usable(table, response, parts, kept)
+    usable, reasons = _usable(study, response, parts, kept)
     if not usable.any():
         raise NoUsableRow(str(study.response), table.rows)
     rows: Chosen = slice(None) if usable.all() else np.flatnonzero(usable)
@@ -66,10 +68,15 @@ def _kept(name: str, levels: Levels, asked: object) -> tuple[int, ...] | None:
     return tuple(place[level] for level in wanted)
 
 
-def _usable(table: Table, response: Response, parts: Mapping[str, Levels], kept: Kept) -> tuple[NDArray[np.bool_], tuple[LeftOut, ...]]:
+def _usable(study: Study, response: Response, parts: Mapping[str, Levels], kept: Kept) -> tuple[NDArray[np.bool_], tuple[LeftOut, ...]]:
     """Return which table rows are analysed, and the first reason that applies to each that is not."""
+    table = study.table
     usable = np.isfinite(response.values)
     reasons = list(response.missing)
+    if study.set_aside:
+        aside = usable & np.isin(table.file_rows, list(study.set_aside))
+        reasons += [LeftOut(int(row), f"set aside: {study.set_aside[int(row)]}") for row in table.file_rows[aside]]
+        usable &= ~aside
     for name, levels in parts.items():
         empty = usable & (levels.codes < 0)
         reasons += [LeftOut(int(table.file_rows[i]), f"“{name}” is empty") for i in np.flatnonzero(empty)]
@@ -152,8 +159,11 @@ def _pivot(values: NDArray[np.float64]) -> float:
 
 def _on_scale(observed: Observations, choice: str) -> Observations:
     scale = scale_named(choice)
-    if scale.is_identity:
-        return observed
-    on_scale = transformed(scale, observed.values, observed.response, observed.file_rows)
-    pivot = float(on_scale[0])
-    return replace(observed, scale=scale, pivot=pivot, offsets=on_scale - pivot)
+    if not scale.is_identity:
+        on_scale = transformed(scale, observed.values, observed.response, observed.file_rows)
+        pivot = float(on_scale[0])
+        observed = replace(observed, scale=scale, pivot=pivot, offsets=on_scale - pivot)
+    span = float(np.ptp(observed.offsets))
+    if span != 0 and not SMALLEST_SPAN < span < LARGEST_SPAN:
+        raise SpanOutOfReach(observed.response, scale.name)
+    return observed

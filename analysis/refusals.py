@@ -53,6 +53,14 @@ class OutsideScale(Refusal):
         )
 
 
+class SpanOutOfReach(Refusal):
+    """Values so far apart, or so close together, that their squares leave the range of double precision."""
+
+    def __init__(self, response: str, scale: str) -> None:
+        what = f"“{response}”" if scale == "none" else f"“{response}” on the {scale} scale"
+        super().__init__(f"The numbers of {what} are too large or too small to be squared: use another unit or another scale.")
+
+
 class UnknownChoice(Refusal):
     """A choice with a value that it does not offer."""
 
@@ -79,6 +87,13 @@ class SameColumnTwice(Refusal):
 
     def __init__(self, column: str, first: str, second: str) -> None:
         super().__init__(f"Column “{column}” is given as {first} and as {second}: choose a different column for one of them.")
+
+
+class NameTaken(Refusal):
+    """A factor or block named like a line of the results."""
+
+    def __init__(self, column: str) -> None:
+        super().__init__(f"The results call something else “{column}”: give that column another name, such as “{column} 1”.")
 
 
 class UnknownLevel(Refusal):
@@ -412,3 +427,10 @@ class NoNumbers(Refusal):
 
     def __init__(self, column: str, rows: int) -> None:
         super().__init__(f"Column “{column[:60]}” holds no number in any of its {rows} rows: choose a column of numbers as the response.")
+
+
+class ReasonMissing(Refusal):
+    """A row set aside without a reason."""
+
+    def __init__(self, row: int) -> None:
+        super().__init__(f"Row {row} is to be set aside without a reason: say in a few words why it does not belong to the experiment.")

@@ -7,7 +7,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from analysis.refusals import OutsideScale, UnknownScale
+from analysis.refusals import OutsideScale, SpanOutOfReach, UnknownScale
 
 Values = NDArray[np.float64]
 
@@ -78,8 +78,12 @@ def scale_named(text: str) -> Scale:
 
 
 def transformed(scale: Scale, values: Values, response: str, file_rows: NDArray[np.int64] | NDArray[np.int32]) -> Values:
-    """Return the values on the scale; raise OutsideScale with the rows that it cannot take."""
+    """Return the values on the scale; raise OutsideScale with the rows that it cannot take, SpanOutOfReach where one overflows."""
     bad = scale.unusable(values)
     if bad.any():
         raise OutsideScale(response, scale.name, str(scale.needs), tuple(int(r) for r in file_rows[bad]))
-    return scale.forward(values)
+    with np.errstate(over="ignore"):
+        on_scale = scale.forward(values)
+    if not np.isfinite(on_scale).all():
+        raise SpanOutOfReach(response, scale.name)
+    return on_scale

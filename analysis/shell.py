@@ -68,11 +68,16 @@ def answer_to(asked: argparse.Namespace) -> str:
 
 def study_asked(asked: argparse.Namespace, table: Table) -> Study:
     """Return the study that the shell's choices describe."""
+    row, column = (table.column(name).name for name in asked.factors)
+    control = {table.column(name).name: ",".join(levels) for name, levels in map(_assignment, asked.control)}
+    for name in control:
+        if name not in (row, column):
+            raise UnreadableChoice(f"--control names “{name}”, which is neither of the factors")
     return Study(
         table=table,
         response=table.column(asked.response).name,
-        row_factor=table.column(asked.factors[0]).name,
-        column_factor=table.column(asked.factors[1]).name,
+        row_factor=row,
+        column_factor=column,
         block=None if asked.block is None else table.column(asked.block).name,
         unit=None if asked.unit is None else table.column(asked.unit).name,
         keep={table.column(name).name: levels for name, levels in map(_assignment, asked.keep)},
@@ -80,7 +85,7 @@ def study_asked(asked: argparse.Namespace, table: Table) -> Study:
         scale=asked.scale,
         confidence=_number("--confidence", asked.confidence),
         adjust=asked.adjust,
-        control={table.column(name).name: ",".join(levels) for name, levels in map(_assignment, asked.control)},
+        control=control,
         matters=None if asked.matters is None else _number("--matters", asked.matters),
     )
 

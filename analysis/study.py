@@ -10,7 +10,7 @@ from types import MappingProxyType
 from typing import Any
 
 from analysis.adjustments import ADJUSTMENTS
-from analysis.refusals import LevelTwice, OutOfRange, RoleMissing, SameColumnTwice, UnknownChoice
+from analysis.refusals import LevelTwice, NameTaken, OutOfRange, ReasonMissing, RoleMissing, SameColumnTwice, UnknownChoice
 from analysis.scales import scale_named
 from analysis.table import Table
 
@@ -25,6 +25,7 @@ ROLES: Mapping[str, str] = MappingProxyType(
     }
 )
 NEEDED_ROLES = ("response", "row_factor", "column_factor")
+TAKEN_NAMES = frozenset({"interaction", "residual", "total", "cells"})  # lines of the tables, and the family of all cells
 
 
 def _frozen(choice: Mapping[str, Any]) -> Mapping[str, Any]:
@@ -48,11 +49,15 @@ class Study:
     adjust: str = "tukey"
     control: Mapping[str, str] = field(default_factory=dict)  # factor -> level that the others are compared with
     matters: float | None = None  # smallest difference that matters, in units of the response
+    relabel: Mapping[str, Mapping[str, str]] = field(default_factory=dict)  # column -> level as read -> level as used; equal ones merge
+    set_aside: Mapping[int, str] = field(default_factory=dict)  # file row -> why it is not analysed
 
     def __post_init__(self) -> None:
         """Freeze the mappings and raise a Refusal for a choice that does not exist."""
         object.__setattr__(self, "keep", _frozen(self.keep))
         object.__setattr__(self, "control", _frozen(self.control))
+        object.__setattr__(self, "relabel", MappingProxyType({column: _frozen(names) for column, names in self.relabel.items()}))
+        object.__setattr__(self, "set_aside", MappingProxyType({int(row): why.strip() for row, why in self.set_aside.items()}))
         _check_choices(self)
         for column, levels in self.keep.items():
             twice = [level for k, level in enumerate(levels) if level in levels[:k]]
@@ -69,7 +74,7 @@ class Study:
         return str(self.row_factor), str(self.column_factor)
 
     def require_roles(self) -> None:
-        """Raise RoleMissing or SameColumnTwice unless the roles needed for an analysis stand."""
+        """Raise RoleMissing, SameColumnTwice or NameTaken unless the roles needed for an analysis stand."""
         taken: dict[str, str] = {}
         for role, word in ROLES.items():
             column = getattr(self, role)
@@ -77,6 +82,8 @@ class Study:
                 raise RoleMissing(word.removeprefix("the "))
             if column in taken:
                 raise SameColumnTwice(column, taken[column], word)
+            if column in TAKEN_NAMES and role in ("row_factor", "column_factor", "block"):
+                raise NameTaken(column)
             if column is not None:
                 taken[column] = word
 
@@ -85,6 +92,8 @@ class Study:
         plain = {f.name: getattr(self, f.name) for f in fields(self) if f.name != "table"}
         plain["keep"] = {column: list(levels) for column, levels in self.keep.items()}
         plain["control"] = dict(self.control)
+        plain["relabel"] = {column: dict(names) for column, names in self.relabel.items()}
+        plain["set_aside"] = dict(self.set_aside)
         return plain
 
     def to_json(self) -> str:
@@ -111,5 +120,8 @@ def _check_choices(study: Study) -> None:
     scale_named(study.scale)
     if not (isinstance(study.confidence, (int, float)) and 0 < study.confidence < 1):
         raise OutOfRange("the confidence", study.confidence, "a number between 0 and 1, such as 0.95")
+    unexplained = [row for row, why in study.set_aside.items() if not why]
+    if unexplained:
+        raise ReasonMissing(unexplained[0])
     if study.matters is not None and not (math.isfinite(study.matters) and study.matters > 0):
         raise OutOfRange("the smallest difference that matters", study.matters, "a number above 0, in units of the response")
