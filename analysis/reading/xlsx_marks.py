@@ -4,10 +4,12 @@ import posixpath
 import re
 from xml.parsers import expat
 
-from analysis.reading import archives
+from analysis import refusals
+from analysis.reading import archives, xlsx_scan
 from analysis.reading.archives import local
 from analysis.reading.sheet_marks import Marks
 
+_VAST = 20_000_000  # cells of the rectangle that a sheet spans
 _PERCENT_FORMATS = frozenset((9, 10))  # the built-in formats 0% and 0.00%
 _LITERAL = re.compile(r'"[^"]*"|\\.')  # text in a number format that is shown as it stands
 _REFERENCE = re.compile(r"([A-Z]{1,3})([0-9]{1,7})")
@@ -15,10 +17,16 @@ _REFERENCE = re.compile(r"([A-Z]{1,3})([0-9]{1,7})")
 
 def read(data: bytes, sheet: str) -> Marks:
     """Return the marks of one sheet of an .xlsx file, checked against the zip limit before."""
-    marks = Marks()
     xml = archives.part(data, _sheet_path(data, sheet))
-    if xml:
-        archives.parse(xml, _SheetParser(marks, _percent_styles(data)).parser)
+    percent = _percent_styles(data)
+    if not xml:
+        return Marks()
+    if b"<!DOCTYPE" in xml:
+        raise refusals.DamagedFile("workbook")
+    marks = xlsx_scan.scan(xml, percent)
+    if marks is None or marks.rows * marks.columns > _VAST:
+        marks = Marks()  # the walk is slower and exact: blank cells that only carry a format do not count
+        archives.parse(xml, _SheetParser(marks, percent).parser)
     return marks
 
 

@@ -2,13 +2,15 @@
 
 import datetime
 import io
+import re
 import zipfile
 
 import openpyxl
 import pytest
 
 from analysis import refusals
-from analysis.reading import read_table
+from analysis.reading import archives, read_table, xlsx_marks, xlsx_scan
+from analysis.reading.sheet_marks import Marks
 from tests.analysis.reading.files import (
     BALANCED,
     YIELDS,
@@ -313,3 +315,42 @@ def bomb(declared: int | None) -> bytes:
     size = (600 * 2**20).to_bytes(4, "little")
     place = data.rindex(size)  # in the directory at the end
     return data[:place] + declared.to_bytes(4, "little") + data[place + 4 :]
+
+
+def full_of_marks() -> bytes:
+    """A workbook with every mark that a sheet can carry."""
+
+    def mark(sheet) -> None:  # type: ignore[no-untyped-def]
+        sheet["C3"], sheet["C4"], sheet["C5"] = "=C2+1", 0.5, "#N/A"
+        sheet["C4"].number_format, sheet["C5"].data_type = '0.0"%"%', "e"
+        sheet["C6"].number_format = '0.0"%"'
+        sheet.row_dimensions[4].hidden = True
+        sheet["Z99"].number_format = "0%"
+
+    return xlsx(BALANCED, mark)
+
+
+@pytest.mark.parametrize("prefix", ["", "x:"])
+def test_the_quick_look_and_the_walk_find_the_same_marks(prefix: str) -> None:
+    percent = frozenset({"1", "3"})
+    with zipfile.ZipFile(io.BytesIO(full_of_marks())) as packed:
+        xml = packed.read("xl/worksheets/sheet1.xml")
+    if prefix:
+        xml = re.sub(rb"<(/?)(?=[a-zA-Z])", rb"<\1x:", xml).replace(b"xmlns=", b"xmlns:x=")
+    quick, walked = xlsx_scan.scan(xml, percent), Marks()
+    archives.parse(xml, xlsx_marks._SheetParser(walked, percent).parser)
+    assert quick is not None
+    assert (quick.errors, quick.unsaved, quick.hidden) == (walked.errors, walked.unsaved, walked.hidden)
+    assert (quick.errors, quick.unsaved, quick.hidden) == ({(4, 2): "#N/A"}, [(2, 2)], [4])
+    assert walked.percent <= quick.percent
+    assert (walked.rows, walked.columns) == (9, 3)
+
+
+def test_cells_without_references_are_read() -> None:
+    book = replaced(xlsx(BALANCED), "xl/worksheets/sheet1.xml", lambda xml: re.sub(rb'<c r="[A-Z]+\d+"', b"<c", xml))
+    assert values(read_table(book), "yield") == YIELDS
+
+
+def test_a_format_far_below_the_table_is_no_cell() -> None:
+    table = read_table(xlsx(BALANCED, lambda sheet: setattr(sheet["XFD1000000"], "number_format", "0%")))
+    assert table.rows == 8
