@@ -10,7 +10,8 @@ from types import MappingProxyType
 import numpy as np
 
 from analysis import refusals
-from analysis.reading import words
+from analysis.reading import look_alikes, words
+from analysis.relabelling import relabelled
 from analysis.table import Codes, Column, Levels, Response, Table
 
 _SAMPLE = 5000  # rows looked at before a long column is read as a whole
@@ -24,6 +25,9 @@ _UNIT = re.compile(
 _ORDER = re.compile(
     r"\b(order|sequence|row|position|no|nr|number|index|obs|observation|leaf|leaves|reading|subsample|technical|time)\b", re.IGNORECASE
 )
+
+
+_PERSON = re.compile(r"\b(\w+ by|operator|observer|technician|person|reader|assessor|scorer|initials|who)\b", re.IGNORECASE)
 
 
 @dataclass(frozen=True)
@@ -48,8 +52,9 @@ class Look:
 
     @cached_property
     def levels(self) -> Levels:
-        """The column as levels."""
-        return self.column.as_levels()
+        """The column as levels, those written in several ways taken for one: a typing error makes no level of a factor."""
+        levels = self.column.as_levels()
+        return relabelled(levels, look_alikes.merges(levels))
 
     @cached_property
     def response(self) -> Response | None:
@@ -142,9 +147,10 @@ def _factors(looks: Sequence[Look]) -> list[Look]:
 
 
 def _factor_score(look: Look) -> float:
-    """How much a column looks like a factor: words or few numbers, balanced, not named like a block, unit or run order."""
+    """How much a column looks like a factor: words or few numbers, balanced, not named like a block, a person, a unit or a run order."""
     score = 1.0 * (not look.column.looks_numeric) + 0.5 * look.is_balanced + 0.5 * (look.count <= 8) - 0.05 * look.place
-    return score - 3.0 * look.named(_BLOCK) - 3.0 * (look.named(_UNIT) or look.named(_ORDER)) - 1.0 * look.has_decimals
+    score -= 3.0 * (look.named(_BLOCK) or look.named(_PERSON))
+    return score - 3.0 * (look.named(_UNIT) or look.named(_ORDER)) - 1.0 * look.has_decimals
 
 
 def _crossing(left: Look, right: Look) -> float:

@@ -1,7 +1,9 @@
 """Which levels may be one level written in several ways: case, inner spaces, one letter, look-alike letters."""
 
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from itertools import combinations
+
+from analysis.table import Levels, counts
 
 _CYRILLIC_AND_GREEK = str.maketrans(
     "АВЕЅІЈКМНОРСТУХавеѕіјкмнорстухΑΒΕΖΗΙΚΜΝΟΡΤΥΧοανικρυχ",
@@ -25,6 +27,24 @@ def notes(name: str, labels: Sequence[str]) -> tuple[str, ...]:
         f"Column “{name}”: the levels “{left}” and “{right}” differ only in {how} and were kept apart; merge them if they are one."
         for left, right, how in pairs(labels)
     )
+
+
+def merges(levels: Levels) -> dict[str, str]:
+    """Return, for each level that looks like a commoner one, that one: what a merge would make of it."""
+    often = dict(zip(levels.labels, counts(levels.codes, len(levels.labels)).tolist(), strict=True))
+    found: dict[str, str] = {}
+    for left, right, _ in pairs(levels.labels):
+        rarer, commoner = sorted((right, left), key=lambda label: often[label])
+        if often.get(found.get(rarer, ""), -1) < often[commoner]:
+            found[rarer] = commoner
+    return {rarer: _end_of(commoner, found) for rarer, commoner in found.items()}
+
+
+def _end_of(label: str, found: Mapping[str, str]) -> str:
+    """Follow merges of merges to the level that stays."""
+    while label in found:
+        label = found[label]
+    return label
 
 
 def difference(left: str, right: str) -> str:
