@@ -59,6 +59,6 @@ def _design(findings: Findings) -> None:
     if design["left_out"]:
         with st.expander(f"The {words.counted(len(design['left_out']), 'row')} left out, with reasons"):
             st.html(paper.table(sheets.left_out(design["left_out"])))
-    if design["notes"]:
+    if findings.notes:
         st.html(paper.question("Worth knowing"))
-        st.html(paper.bullets(design["notes"]))
+        st.html(paper.bullets(findings.notes))
