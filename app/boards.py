@@ -82,13 +82,14 @@ def answers_board(findings: Findings) -> Board:
 def comparisons_board(findings: Findings) -> Board:
     """Tell which levels differ and by how much: inside the slices where the effect depends, on average otherwise."""
     families = families_told(findings)
+    table = tabled.comparisons(findings, families)
     return Board(
         "comparisons",
         compared(findings).sentence,
         speaker.family_line(findings, families),
-        speaker.notes(findings, speaker.family_notes(findings, families)),
-        tabled.comparisons_alt(findings, families),
-        table=tabled.comparisons(findings, families),
+        speaker.notes(findings, speaker.family_notes(findings, families, table)),
+        tabled.comparisons_alt(findings, table),
+        table=table,
     )
 
 

@@ -2,12 +2,15 @@
 
 from collections.abc import Iterable, Sequence
 
+import pandas as pd
+
 from analysis import rounding
 from analysis.answers import Answer
 from analysis.findings import Findings
 from app import tabled, words
 
 CAUTION = "Where a result may bear on someone's health or safety, a qualified person reviews it first and local rules come first."
+COMPARISONS_TOLD = 60  # comparisons that the notes tell one by one
 ROWS_TOLD = 12  # rows left out that the notes name one by one; the workbook names all
 
 
@@ -103,19 +106,19 @@ def caveats(findings: Findings) -> list[str]:
 
 def family_line(findings: Findings, families: Sequence[str]) -> str:
     """Tell which families are shown, their size and how they are adjusted."""
-    if tabled.by_size(findings, families).empty:
+    frames = [findings.comparisons[name] for name in families]
+    if not any(frame is not None and len(frame) for frame in frames):
         return tabled.NOTHING_TO_COMPARE
     names = "; ".join(f"{words.family(name, findings.study.factors)} ({words.family_size(findings, name)})" for name in families)
     return f"adjusted: {words.adjusted_by(findings)} · {names}"
 
 
-def family_notes(findings: Findings, families: Sequence[str]) -> list[str]:
-    """Tell every comparison of the families in full, the largest first."""
-    told = tabled.comparisons(findings, families)
+def family_notes(findings: Findings, families: Sequence[str], told: pd.DataFrame) -> list[str]:
+    """Tell the comparisons of the families in full, the largest first."""
     if told.empty:
         return [tabled.NOTHING_TO_COMPARE]
     place, _, head, *_ = told.columns
-    shown = told.head(60)
+    shown = told.head(COMPARISONS_TOLD)
     lines = [f"{row[place]}: {row['compared']}: {head} {row[head]}, p {row['p adjusted']}, {row['reading']}" for _, row in shown.iterrows()]
     rest = [f"{len(told) - len(shown)} more stand in the workbook."] if len(told) > len(shown) else []
     bounds = ["The intervals are Bonferroni's, since Holm has none of its own."] if findings.study.adjust == "holm" else []

@@ -126,9 +126,8 @@ def size(comparison: Any) -> str:
     return words.with_interval(c.difference, c.lower_adjusted, c.upper_adjusted, c.se)
 
 
-def comparisons_alt(findings: Findings, families: Sequence[str]) -> str:
+def comparisons_alt(findings: Findings, told: pd.DataFrame) -> str:
     """Read out what the table of comparisons holds and its three largest differences."""
-    told = comparisons(findings, families)
     if told.empty:
         return f"No comparisons on {factors_with_levels(findings)}; {numbers(findings)}. {NOTHING_TO_COMPARE}"
     place, _, head, *_ = told.columns

@@ -10,6 +10,7 @@ from app.exports import fit
 from app.exports.master import BODY, SMALLEST
 
 PAD_SIDE, PAD_END = 0.12, 0.06  # inches between a text and the edges of its cell
+MOST_ROWS = 20  # more never fit a slide; the rest of a long table is not measured
 HEAD_LINES, MOST_LINES, EVERY_LINE = 4, 3, 9  # of one cell: in the head, where rows may be left away, where none may
 WIDEST_FIELD, TALLEST_FIELD = 2.6, 0.9  # inches of a field in a table of counts
 ONE_LINE_ABOVE = 20  # points; larger type is not worth a wrapped line
@@ -89,14 +90,15 @@ def fitted(table: pd.DataFrame, dress: Dress) -> Fitted:
     that would get too narrow to read go from the right.
     """
     columns = min(len(table.columns), int(BODY.wide // NARROWEST))
-    everything: list[tuple[object, ...]] = [tuple(table.columns), *table.itertuples(index=False, name=None)]
+    kept = table if dress.every_row else table.head(MOST_ROWS)
+    everything: list[tuple[object, ...]] = [tuple(table.columns), *kept.itertuples(index=False, name=None)]
     texts = [tuple(map(str, row[:columns])) for row in everything]
     for points in dress.sizes:
         measure = Measure(points, _widths(texts, points, dress), dress)
         rows = _short(texts, measure)
-        if columns == len(table.columns) and rows == texts and measure.holds(rows):
+        if columns == len(table.columns) and rows == texts and len(kept) == len(table) and measure.holds(rows):
             break
-    found = _cut(rows, texts, measure, len(table.columns) - columns)
+    found = _cut(rows, texts, measure, table)
     return _spread(found) if dress.tiles else found
 
 
@@ -105,15 +107,15 @@ def is_numeric(column: Iterable[str]) -> bool:
     return all(_NUMBER.fullmatch(text) for text in column)
 
 
-def _cut(rows: Sequence[Row], texts: Sequence[Row], measure: Measure, columns_gone: int) -> Fitted:
+def _cut(rows: Sequence[Row], texts: Sequence[Row], measure: Measure, table: pd.DataFrame) -> Fitted:
     """Return as many rows as the body holds, with the rule where some are left away."""
     shown = len(rows)
     while shown > 2 and not measure.dress.every_row and measure.tall(rows[:shown]) > BODY.tall:
         shown -= 1
-    kept = len(rows[0]) - 1
+    columns = len(rows[0])
     rules = (
-        f"{kept} of {kept + columns_gone} columns" if columns_gone else "",
-        f"{measure.dress.kept.format(shown - 1)} of {len(rows) - 1} rows" if shown < len(rows) else "",
+        f"{columns - 1} of {len(table.columns) - 1} columns" if columns < len(table.columns) else "",
+        f"{measure.dress.kept.format(shown - 1)} of {len(table)} rows" if shown - 1 < len(table) else "",
     )
     pairs = dict.fromkeys(
         (a, b) for mine, whole in zip(rows[:shown], texts, strict=False) for a, b in zip(mine, whole, strict=True) if a != b

@@ -8,7 +8,9 @@ import pandas as pd
 from analysis.findings import Findings
 from app import speaker, tabled, words
 
-MOST_ROWS = 100_000  # of one sheet; what is beyond is counted in the first sheet
+# How many rows a sheet holds; what is beyond is counted in the first sheet.
+DATA_ROWS, OTHER_ROWS = 100_000, 20_000
+DATA = "data as analysed"
 TYPES: Mapping[str, str] = {
     "type_1": "Type I, {row} first",
     "type_1_column_first": "Type I, {column} first",
@@ -20,7 +22,7 @@ TYPES: Mapping[str, str] = {
 def all_sheets(findings: Findings) -> dict[str, pd.DataFrame]:
     """Return every sheet but the first by name, in their order; a sheet without content is not there."""
     sheets = {
-        "data as analysed": data(findings),
+        DATA: data(findings),
         "cells": cells(findings),
         "ANOVA": anova(findings),
         "means": means(findings),
@@ -176,16 +178,20 @@ def read_me(findings: Findings, others: Mapping[str, pd.DataFrame]) -> list[tupl
         ("Smallest difference that matters", "not given" if study.matters is None else float(study.matters)),
         ("Caution", speaker.CAUTION),
     ]
-    lines += [(f"Sheet “{name}”", _extent(frame)) for name, frame in others.items()]
+    lines += [(f"Sheet “{name}”", _extent(name, frame)) for name, frame in others.items()]
     lines += [("Note", sentence) for sentence in speaker.caveats(findings)]
     return [*lines, ("Computed with", ", ".join(f"{name} {version}" for name, version in findings.versions.items()))]
 
 
-def _extent(frame: pd.DataFrame) -> str:
+def held(name: str, frame: pd.DataFrame) -> pd.DataFrame:
+    """Return the rows of a frame that its sheet holds."""
+    return frame.head(DATA_ROWS if name == DATA else OTHER_ROWS)
+
+
+def _extent(name: str, frame: pd.DataFrame) -> str:
     """Tell how much of a frame its sheet holds."""
-    if len(frame) <= MOST_ROWS:
-        return f"{len(frame)} rows, numbers at full precision"
-    return f"the first {MOST_ROWS} of {len(frame)} rows, numbers at full precision"
+    rows = len(held(name, frame))
+    return f"{rows} rows, numbers at full precision" if rows == len(frame) else f"the first {rows} of {len(frame)} rows"
 
 
 def number_or_text(value: object) -> object:

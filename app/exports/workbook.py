@@ -43,7 +43,7 @@ def build(findings: Findings) -> bytes:
     _write_first(book.active, sheets.read_me(findings, others))
     formats = _formats(findings)
     for name, frame in others.items():
-        _write_sheet(book.create_sheet(name), frame.head(sheets.MOST_ROWS), formats)
+        _write_sheet(book.create_sheet(name), sheets.held(name, frame), formats)
     book.properties.creator, book.properties.title = "Crossgrain", words.response_label(findings)
     stream = io.BytesIO()
     book.save(stream)
