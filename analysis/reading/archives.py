@@ -11,7 +11,7 @@ UNPACKED = 512 * 2**20  # bytes, the limit for a whole workbook
 _MOST_ENTRIES = 10_000
 _DEFLATE_RATIO = 1032  # no deflate stream unpacks to more than so many times its size
 _STEP = 1 << 20
-_FAULTS = (zipfile.BadZipFile, zlib.error, OSError, ValueError, NotImplementedError, RuntimeError, EOFError, KeyError)
+FAULTS = (zipfile.BadZipFile, zlib.error, OSError, ValueError, NotImplementedError, RuntimeError, EOFError, KeyError)
 
 
 def check(data: bytes) -> None:
@@ -27,7 +27,7 @@ def check(data: bytes) -> None:
                 _measure(data, entries)
             if "META-INF/manifest.xml" in archive.namelist() and b"encryption-data" in archive.read("META-INF/manifest.xml"):
                 raise refusals.Encrypted()
-    except _FAULTS as error:
+    except FAULTS as error:
         raise refusals.DamagedFile("workbook") from error
 
 
@@ -62,7 +62,7 @@ def part(data: bytes, name: str) -> bytes:
             names = {known.lower(): known for known in archive.namelist()}
             known = names.get(name.lower())
             return archive.read(known) if known is not None else b""
-    except _FAULTS as error:
+    except FAULTS as error:
         raise refusals.DamagedFile("workbook") from error
 
 

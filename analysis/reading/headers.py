@@ -88,10 +88,15 @@ def _header_place(head: Sequence[Record], places: Sequence[int]) -> int | None:
 
 
 def _usual_width(head: Sequence[Record], places: Sequence[int]) -> int:
-    """The commonest number of filled cells, the larger of two equally common ones."""
-    counts = Counter(head[index].filled for index in places)
+    """How many columns are filled by the records that reach as far to the right as most do (the farther of two common reaches).
+
+    A level written once leaves blanks below it, so that single records say little.
+    """
+    counts = Counter(len(head[index].cells) for index in places)
     most = max(counts.values())
-    return max(filled for filled, count in counts.items() if count == most)
+    usual = max(reach for reach, count in counts.items() if count == most)
+    records = [head[index].cells for index in places if len(head[index].cells) == usual]
+    return sum(any(cells) for cells in zip(*records, strict=True))
 
 
 def _names_columns(record: Record, width: int) -> bool:
@@ -114,7 +119,7 @@ def _has_numbers(record: Record) -> bool:
 
 def _without_header(head: Sequence[Record], places: Sequence[int], remarks: Sequence[int]) -> Heading:
     width = _usual_width(head, places)
-    start = next(index for index in places if head[index].filled >= width)
+    start = next((index for index in places if head[index].filled >= width), places[0])
     cells = tuple(f"column {index + 1}" for index in range(len(head[start].cells)))
     sentence = f"The file has no header: its columns were named {cells[0]} to {cells[-1]}."
     passed = _passed_over(head, [*remarks, *(index for index in places if index < start)])

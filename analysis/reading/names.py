@@ -44,10 +44,13 @@ def distinct(wanted: Sequence[str]) -> tuple[tuple[str, ...], tuple[Decision, ..
     """Give every column a name of its own: “column 3” for a blank, “reading 2” for the second “reading”."""
     given = [name or f"column {index + 1}" for index, name in enumerate(wanted)]
     counts = Counter(given)
-    taken = set(given)
-    names: list[str] = []
-    for name in given:
-        names.append(name if name not in names else _numbered(name, taken | set(names)))
+    free = dict.fromkeys(given, 2)  # the next number for each repeated name
+    taken, names = set(given), list[str]()
+    for name, first in zip(given, _firsts(given), strict=True):
+        while not first and f"{name} {free[name]}" in taken:
+            free[name] += 1
+        names.append(name if first else f"{name} {free[name]}")
+        taken.add(names[-1])
     decisions = []
     blank = [name for name, before in zip(names, wanted, strict=True) if not before]
     if blank:
@@ -58,8 +61,7 @@ def distinct(wanted: Sequence[str]) -> tuple[tuple[str, ...], tuple[Decision, ..
     return tuple(names), tuple(decisions)
 
 
-def _numbered(name: str, taken: set[str]) -> str:
-    number = 2
-    while f"{name} {number}" in taken:
-        number += 1
-    return f"{name} {number}"
+def _firsts(names: Sequence[str]) -> list[bool]:
+    """For each name, whether it stands there for the first time."""
+    seen: set[str] = set()
+    return [not (name in seen or seen.add(name)) for name in names]  # type: ignore[func-returns-value]

@@ -6,6 +6,7 @@ import zipfile
 from typing import Literal
 
 from analysis import refusals
+from analysis.reading import archives
 
 Kind = Literal["text", "xlsx", "xls", "ods", "parquet"]
 
@@ -63,7 +64,7 @@ def _kind_of_archive(data: bytes) -> Kind:
         with zipfile.ZipFile(io.BytesIO(data)) as archive:
             names = set(archive.namelist())
             mimetype = archive.read("mimetype")[:200] if "mimetype" in names and archive.getinfo("mimetype").file_size < 1000 else b""
-    except (zipfile.BadZipFile, OSError, ValueError, NotImplementedError, RuntimeError, EOFError) as error:
+    except archives.FAULTS as error:
         raise refusals.DamagedFile("workbook") from error
     if b"opendocument.spreadsheet" in mimetype:
         return "ods"

@@ -215,3 +215,9 @@ def test_totals_and_means_are_left_out_with_their_reason(last: str, reason: str)
 def test_a_level_called_total_is_a_level() -> None:
     table = read("light,rep,y\ntotal,1,1\ntotal,2,2\npartial,1,3\npartial,2,4\ntotal,3,2\n")
     assert (table.rows, table.left_out) == (5, ())
+
+
+def test_a_title_of_two_cells_above_levels_written_once() -> None:
+    table = read("Trial 7; lower farm\n\nfeed;shade;y\nhay;low;1,5\n;high;2,5\nstraw;low;3,5\n;high;4,5\nTotal;;12\n")
+    assert table.names == ("feed", "shade", "y")
+    assert labels(table, "feed") == ["hay", "hay", "straw", "straw"]
