@@ -6,7 +6,7 @@ import pytest
 
 from app import boards, speaker, tabled
 from app.look import SLIDE
-from tests.app import designs
+from tests.app import designs, opening
 
 
 @pytest.mark.parametrize("name", designs.DESIGNS)
@@ -49,3 +49,8 @@ def test_the_story_follows_the_choices(choices: dict[str, object]) -> None:
     assert len(told.table) == (9 if choices.get("adjust") == "dunnett" else 18)
     assert speaker.family_line(findings, boards.families_told(findings)) in told.notes
     assert ("Bonferroni" in told.notes.partition("\n\n")[0]) == (choices.get("adjust") == "holm")
+
+
+def test_differences_carry_the_unit_of_the_response() -> None:
+    findings = opening.findings(opening.sample())
+    assert tabled.difference_head(findings).startswith("difference in g (95")
