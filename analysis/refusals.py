@@ -145,7 +145,7 @@ class TooManyCells(Refusal):
     def __init__(self, row_factor: str, a: int, column_factor: str, b: int, most: int) -> None:
         super().__init__(
             f"“{row_factor}” has {a} levels and “{column_factor}” has {b}, which makes {a * b} cells where {most} can be "
-            f"handled: is one of them a label or a measurement? Choose another column, or keep fewer levels."
+            f"handled: one of them may be a label or a measurement, so choose another column or keep fewer levels."
         )
 
 
