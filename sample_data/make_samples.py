@@ -72,9 +72,7 @@ def yeast() -> list[Row]:
         ("Flask", "Strain", "Sugar", "CO2 after 24 h (mL)", "Read by"),
     ]
     gas = []
-    for flask, ((i, strain), (j, sugar), _) in enumerate(
-        itertools.product(enumerate(STRAINS), enumerate(SUGARS), range(FLASKS)), start=1
-    ):
+    for flask, ((i, strain), (j, sugar), _) in enumerate(itertools.product(enumerate(STRAINS), enumerate(SUGARS), range(FLASKS)), start=1):
         gas.append(round(float(random.normal(YEAST_MEANS[i][j], YEAST_SD)), 1))
         rows.append((flask, strain, MISTYPED.get(flask, sugar), with_comma(gas[-1]), "AK" if flask % 2 else "MO"))
     rows.append(("Mean", "", "", with_comma(sum(gas) / len(gas)), ""))

@@ -21,28 +21,50 @@ STATISTICS = {"mean", "std", "var", "sem", "median", "quantile", "percentile", "
 
 
 def test_analysis_never_knows_the_screen() -> None:
-    found = [f"{relative(file)}:{i.line} {i.name}" for file in sources.files("analysis") for i in sources.imports(file)
-             if i.top in {"streamlit", "plotly", "app"}]
+    found = [
+        f"{relative(file)}:{i.line} {i.name}"
+        for file in sources.files("analysis")
+        for i in sources.imports(file)
+        if i.top in {"streamlit", "plotly", "app"}
+    ]
     assert not found
 
 
 def test_the_screen_computes_no_statistic() -> None:
-    imported = [f"{relative(file)}:{i.line} {i.name}" for file in sources.files("app") for i in sources.imports(file)
-                if i.top in {"scipy", "statsmodels", "statistics"}]
-    called = [f"{relative(file)}:{node.lineno} {node.func.attr}" for file in sources.files("app") for node in ast.walk(sources.tree(file))
-              if isinstance(node, ast.Call) and isinstance(node.func, ast.Attribute) and node.func.attr in STATISTICS]
+    imported = [
+        f"{relative(file)}:{i.line} {i.name}"
+        for file in sources.files("app")
+        for i in sources.imports(file)
+        if i.top in {"scipy", "statsmodels", "statistics"}
+    ]
+    called = [
+        f"{relative(file)}:{node.lineno} {node.func.attr}"
+        for file in sources.files("app")
+        for node in ast.walk(sources.tree(file))
+        if isinstance(node, ast.Call) and isinstance(node.func, ast.Attribute) and node.func.attr in STATISTICS
+    ]
     assert not imported + called
 
 
 def test_only_the_desk_touches_the_session() -> None:
-    found = [f"{relative(file)}:{node.lineno}" for file in sources.files("app") if file != ROOT / "app" / "desk.py"
-             for node in ast.walk(sources.tree(file)) if isinstance(node, ast.Attribute) and node.attr == "session_state"]
+    found = [
+        f"{relative(file)}:{node.lineno}"
+        for file in sources.files("app")
+        if file != ROOT / "app" / "desk.py"
+        for node in ast.walk(sources.tree(file))
+        if isinstance(node, ast.Attribute) and node.attr == "session_state"
+    ]
     assert not found
 
 
 def test_nothing_is_imported_inside_a_function() -> None:
-    found = [f"{relative(file)}:{node.lineno}" for file in EVERYTHING for function in sources.functions(file)
-             for node in ast.walk(function) if isinstance(node, ast.Import | ast.ImportFrom)]
+    found = [
+        f"{relative(file)}:{node.lineno}"
+        for file in EVERYTHING
+        for function in sources.functions(file)
+        for node in ast.walk(function)
+        if isinstance(node, ast.Import | ast.ImportFrom)
+    ]
     assert not found
 
 
@@ -82,8 +104,12 @@ def test_a_module_says_what_it_knows(file: Path) -> None:
 
 
 def test_no_function_is_over_sixty_lines() -> None:
-    found = [f"{relative(file)}:{f.lineno} {f.name} has {sources.body_lines(f)}" for file in EVERYTHING for f in sources.functions(file)
-             if sources.body_lines(f) > 60]
+    found = [
+        f"{relative(file)}:{f.lineno} {f.name} has {sources.body_lines(f)}"
+        for file in EVERYTHING
+        for f in sources.functions(file)
+        if sources.body_lines(f) > 60
+    ]
     assert not found
 
 
@@ -95,24 +121,38 @@ def test_most_functions_are_short() -> None:
 
 
 def test_public_things_say_what_they_are() -> None:
-    found = [f"{relative(file)}:{node.lineno} {node.name}" for file in CODE for node in sources.tree(file).body
-             if isinstance(node, sources.Function | ast.ClassDef) and not node.name.startswith("_") and not ast.get_docstring(node)]
+    found = [
+        f"{relative(file)}:{node.lineno} {node.name}"
+        for file in CODE
+        for node in sources.tree(file).body
+        if isinstance(node, sources.Function | ast.ClassDef) and not node.name.startswith("_") and not ast.get_docstring(node)
+    ]
     assert not found
 
 
 def test_no_fault_is_swallowed() -> None:
     broad = {None, "Exception", "BaseException"}
-    found = [f"{relative(file)}:{node.lineno}" for file in CODE for node in ast.walk(sources.tree(file))
-             if isinstance(node, ast.ExceptHandler) and (ast.unparse(node.type) if node.type else None) in broad
-             and not isinstance(node.body[-1], ast.Raise)]
+    found = [
+        f"{relative(file)}:{node.lineno}"
+        for file in CODE
+        for node in ast.walk(sources.tree(file))
+        if isinstance(node, ast.ExceptHandler)
+        and (ast.unparse(node.type) if node.type else None) in broad
+        and not isinstance(node.body[-1], ast.Raise)
+    ]
     assert not found
 
 
 def test_refusals_live_in_one_file() -> None:
     home = ROOT / "analysis" / "refusals.py"
     known = {node.name for node in sources.tree(home).body if isinstance(node, ast.ClassDef)}
-    found = [f"{relative(file)} {node.name}" for file in CODE if file != home for node in ast.walk(sources.tree(file))
-             if isinstance(node, ast.ClassDef) and {ast.unparse(base).rpartition(".")[2] for base in node.bases} & known]
+    found = [
+        f"{relative(file)} {node.name}"
+        for file in CODE
+        if file != home
+        for node in ast.walk(sources.tree(file))
+        if isinstance(node, ast.ClassDef) and {ast.unparse(base).rpartition(".")[2] for base in node.bases} & known
+    ]
     assert not found
 
 
@@ -158,8 +198,12 @@ def test_a_bare_python_can_read_the_start() -> None:
     """Everything that runs before the packages are there is standard library."""
     start = [file for file in sources.files("app/start") if file.name != "serve.py"]
     first = [ROOT / "app" / "__init__.py", ROOT / "app" / "__main__.py", ROOT / "tests" / "__main__.py"]
-    found = [f"{relative(file)}:{i.line} {i.name}" for file in start + first for i in sources.imports(file)
-             if i.top not in sys.stdlib_module_names and not i.name.startswith("app.start")]
+    found = [
+        f"{relative(file)}:{i.line} {i.name}"
+        for file in start + first
+        for i in sources.imports(file)
+        if i.top not in sys.stdlib_module_names and not i.name.startswith("app.start")
+    ]
     assert not found
 
 

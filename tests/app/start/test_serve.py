@@ -40,7 +40,12 @@ def running(*words: str) -> Iterator[tuple[int, subprocess.Popen[str]]]:
     port = launch.free_port()
     process = subprocess.Popen(
         [sys.executable, *words, "--no-browser", "--port", str(port)],
-        cwd=ROOT, env=environment.variables(), stdin=subprocess.DEVNULL, stdout=subprocess.PIPE, stderr=subprocess.PIPE, text=True,
+        cwd=ROOT,
+        env=environment.variables(),
+        stdin=subprocess.DEVNULL,
+        stdout=subprocess.PIPE,
+        stderr=subprocess.PIPE,
+        text=True,
     )
     try:
         assert process.stdout is not None
