@@ -11,7 +11,8 @@ from app.figures import lettering
 from app.look import Look
 
 MOST_LINES = 40  # a longer figure is no figure; the table holds all of them
-LINE_HEIGHT = 1.9  # of the type size
+FEW_LINES = 8
+ROOMY, TIGHT = 1.9, 1.55  # height of a line, of the type size, for few lines and for more
 
 
 def shown(findings: Findings, family: str) -> pd.DataFrame:
@@ -70,7 +71,7 @@ def _ground(findings: Findings, look: Look, frame: pd.DataFrame, names: list[str
             "automargin": False,
         },
         margin={"l": lettering.widest(names, look.text) + 10},
-        height=round(max(len(names), 2) * look.text * LINE_HEIGHT + 4.5 * look.text + 24),
+        height=round(max(len(names), 2) * look.text * (ROOMY if len(names) <= FEW_LINES else TIGHT) + 4.5 * look.text + 24),
     )
 
 
