@@ -112,7 +112,7 @@ def pair(left: object, right: object, ratio: bool) -> str:
 def difference_head(findings: Findings) -> str:
     """Return what heads the column of differences: what they are, in which unit, with which interval."""
     scale = findings.observed.scale
-    unit = findings.observed.response_unit if scale.is_identity else None
+    unit = findings.observed.unit if scale.is_identity else None
     what = "ratio" if scale.tells_ratios else f"difference{f' in {unit}' if unit else ''}"
     return f"{what} ({rounding.percent(findings.study.confidence)} interval)"
 
