@@ -16,5 +16,9 @@ def test_ruff_has_nothing_to_say() -> None:
     assert not _run("ruff", "check", "--quiet", ".")
 
 
+def test_the_code_is_laid_out_by_the_formatter() -> None:
+    assert not _run("ruff", "format", "--check", "--quiet", ".")
+
+
 def test_mypy_has_nothing_to_say() -> None:
     assert not _run("mypy", "--no-error-summary")
