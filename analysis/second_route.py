@@ -13,7 +13,7 @@ from analysis.coding import sum_to_zero
 from analysis.observations import Observations
 from analysis.refusals import TwoRoutesDisagree
 
-MOST_ENTRIES = 400_000  # entries of the design matrix beyond which a study is not of ordinary size
+MOST_ENTRIES = 1_000_000  # entries of the design matrix beyond which a study is not of ordinary size
 RELATIVE = 1e-8
 FLOOR = 1e-12  # of the total: what rounding of the row-by-row route can make of a sum of squares near zero
 RANK = 1e-9
@@ -21,7 +21,7 @@ RANK = 1e-9
 
 @dataclass(frozen=True, eq=False)
 class Route:
-    """Residual sums of squares and ranks of every model between the mean and the one analysed, by singular values."""
+    """Residual sums of squares and ranks of every model between the mean and the one analysed: QR, then singular values."""
 
     observed: Observations
     interaction: bool
@@ -49,9 +49,18 @@ class Route:
             self._known[frozenset(terms)] = self._solved(terms)
         return self._known[frozenset(terms)]
 
-    def _solved(self, terms: Sequence[str]) -> tuple[float, int]:
+    @cached_property
+    def _triangle(self) -> Matrix:
+        """The triangular factor of all columns with the response behind them: it holds every model's residual, in few rows."""
         y = self.observed.offsets - self.observed.offsets.mean()
-        x = np.column_stack([np.ones(y.size), *(self.columns[term] for term in terms)])
+        return np.asarray(np.linalg.qr(np.column_stack([np.ones(y.size), *self.columns.values(), y]), mode="r"))
+
+    def _solved(self, terms: Sequence[str]) -> tuple[float, int]:
+        places, start = [0], 1
+        for term, columns in self.columns.items():
+            places += range(start, start + columns.shape[1]) if term in terms else ()
+            start += columns.shape[1]
+        x, y = self._triangle[:, places], self._triangle[:, -1]
         effects, _, rank, _ = np.linalg.lstsq(x, y, rcond=RANK)
         apart = y - x @ effects
         return float(apart @ apart), int(rank)
@@ -77,8 +86,8 @@ class Route:
 def confirm(observed: Observations, interaction: bool, names: Names, tables: Mapping[str, pd.DataFrame]) -> None:
     """Raise TwoRoutesDisagree unless a second route gives the tables' degrees of freedom and sums of squares.
 
-    Studies whose design matrix is too large for this are passed over. Source: common practice; least squares by singular
-    values, Golub and Van Loan, Matrix Computations, section 5.5.
+    Studies whose design matrix is too large for this are passed over. Source: common practice; least squares by orthogonal
+    factors and singular values, Golub and Van Loan, Matrix Computations, sections 5.3 and 5.5.
     """
     a, b = observed.shape
     if observed.size * (a * b + (0 if observed.block is None else observed.block.size)) > MOST_ENTRIES:
