@@ -12,13 +12,17 @@ def inside(evidence: Evidence, factor: Factor, other: Factor) -> tuple[str, str]
     """Return verdict and sentence where the effect depends on the other factor: within which of its levels it is shown."""
     frame = evidence.simple_effects[evidence.simple_effects["factor"] == factor.name]
     where = frame.loc[frame["p_adjusted"] < evidence.alpha, "within"].tolist()
-    rest = [level for level in frame["within"] if level not in where]
+    rest = frame.loc[frame["p_adjusted"] >= evidence.alpha, "within"].tolist()
+    open_ = frame.loc[frame["p_adjusted"].isna(), "within"].tolist()
     if not where:
         return verdicts.UNDECIDED, f"Not decided within any single level of {other.word}, though its effect changes with {other.word}."
-    if not rest:
+    if not rest and not open_:
         return verdicts.DIFFERS, f"{_capital(factor)} matters at every level of {other.word}, and not by the same amount."
-    ending = "any difference is too small to matter" if _only_small(evidence, factor, other, rest) else "no difference is shown"
-    return verdicts.DIFFERS, f"{_capital(factor)} matters with {other.told(*where)}; with {other.told(*rest)} {ending}."
+    sentence = f"{_capital(factor)} matters with {other.told(*where)}"
+    if rest:
+        ending = "any difference is too small to matter" if _only_small(evidence, factor, other, rest) else "no difference is shown"
+        sentence += f"; with {other.told(*rest)} {ending}"
+    return verdicts.DIFFERS, f"{sentence}; with {other.told(*open_)} it cannot be told." if open_ else f"{sentence}."
 
 
 def shown(evidence: Evidence, factor: Factor, size: Size | None) -> tuple[str, str]:

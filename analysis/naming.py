@@ -3,6 +3,7 @@
 import re
 from collections.abc import Sequence
 
+NUMBER = re.compile(r"[-+−]?[0-9]+(?:[.,][0-9]+)?")
 BRACKETED = re.compile(r"(?P<word>\S.*?)\s*(?:\((?P<round>[^()\[\]]{1,24})\)|\[(?P<square>[^()\[\]]{1,24})\])")
 
 
@@ -15,8 +16,8 @@ def word_and_unit(name: str) -> tuple[str, str | None]:
 
 
 def level_told(word: str, unit: str | None, level: str) -> str:
-    """Return a level for a sentence; one that is a number carries its factor's unit or word, since "with 20" says nothing."""
-    if not level[:1].isdigit():
+    """Return a level for a sentence; a bare number carries its factor's unit or word, since "with 20" says nothing."""
+    if not NUMBER.fullmatch(level):
         return level
     return f"{level} {unit}" if unit else f"{word} {level}"
 

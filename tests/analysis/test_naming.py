@@ -24,6 +24,8 @@ def test_a_level_that_is_a_number_says_of_what() -> None:
     assert level_told("temperature", "°C", "120") == "120 °C"
     assert level_told("dose", None, "20") == "dose 20"
     assert level_told("light", None, "Full sun") == "Full sun"
+    assert level_told("shade", None, "30 %") == "30 %"
+    assert level_told("nitrogen", "kg/ha", "0,5") == "0,5 kg/ha"
 
 
 def test_lists_read_aloud() -> None:
