@@ -25,6 +25,8 @@ def one_way(parts: list[Vector]) -> Row | None:
     grand = sum(map(sum, parts)) / sum(map(len, parts))
     between = sum(len(part) * (mean - grand) ** 2 for part, mean in zip(parts, means, strict=True))
     inside = sum((v - mean) ** 2 for part, mean in zip(parts, means, strict=True) for v in part)
+    if inside == 0:  # two readings are equally far from their middle
+        return None
     f = number(between / df1 / (inside / df2))
     return {"f": f, "df1": df1, "df2": df2, "p": tails.f_tail(f, df1, df2)}
 
@@ -113,6 +115,8 @@ def subtract(left: Vector, right: Vector) -> Vector:
 
 def wald(a: Analysis, term: str, hypotheses: list[Vector], influences: list[Vector]) -> Row:
     """Estimates against the covariance of the weighted residuals: their quadratic form falls out of a least squares fit."""
+    if not hypotheses:  # a factor with one level
+        return {"term": term} | dict.fromkeys(("f", "df1", "df2", "p"))
     estimates = [a.model.value(h) for h in hypotheses]
     moves = [[sum(p * q for p, q in zip(h, row, strict=True)) for h in hypotheses] for row in influences]
     covariance = [[sum(row[i] * row[j] for row in moves) for j in range(len(hypotheses))] for i in range(len(hypotheses))]
@@ -128,6 +132,8 @@ def solve(matrix: list[Vector], right: Vector) -> Vector:
 
 def nonadditivity(x: Experiment) -> Row | None:
     """One degree of freedom for the squared additive fit (Tukey 1949; for any layout Milliken and Graybill 1970, JASA 65, 797-807)."""
+    if x.additive.rank < len(x.rows) + len(x.columns) - 1 + max(len(x.blocks) - 1, 0):
+        return None  # in separate parts the effects have no common origin, and their product depends on it
     rows = design_rows(x, False)
     grand = sum(r.y for r in x.readings) / len(x.readings)
     extended: Fit = fit([[*row, (x.additive.value(row) - grand) ** 2] for row in rows], [r.y for r in x.readings])

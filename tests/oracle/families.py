@@ -68,9 +68,11 @@ CRITICAL: dict[str, Callable[[Adjusting, mpf], mpf]] = {
 
 def many_to_one_point(a: Adjusting, alpha: mpf) -> mpf:
     """The bound that the largest of the comparisons with a control exceeds with probability alpha, to 12 digits."""
-    high = tails.t_point(alpha / len(a.p), a.df)  # Bonferroni: a little too large
+    high = tails.t_point(alpha / len(a.p), a.df)  # Bonferroni: a little too large, or exact for one comparison
+    if len(a.p) == 1:
+        return high
     brackets = (high * mpf("0.95"), high)
-    return mp.findroot(lambda d: tails.many_to_one_tail(d, a.loadings, a.df) - alpha, brackets, solver="secant", tol=1e-26)
+    return mp.findroot(lambda d: tails.many_to_one_tail(d, a.loadings, a.df) - alpha, brackets, solver="secant", tol=1e-24)
 
 
 def dimension(vectors: list[Vector]) -> int:

@@ -33,7 +33,7 @@ def leaves(whole: Any, path: str = "") -> Iterator[tuple[str, Any]]:
     """Every value with its path; rows of lists go by what names them, else by their place."""
     if isinstance(whole, Mapping):
         steps = whole.items()
-    elif isinstance(whole, list) and not all(isinstance(part, str) for part in whole):
+    elif isinstance(whole, list) and not (whole and all(isinstance(part, str) for part in whole)):
         steps = [(name_of(row) or place, row) for place, row in enumerate(whole)]
     else:
         yield path, whole

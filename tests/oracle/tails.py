@@ -125,14 +125,16 @@ def studentised_range_point(alpha: mpf, means: int, df: int) -> mpf:
 
 def many_to_one_tail(d: mpf, loadings: tuple[mpf, ...], df: int) -> mpf:
     """P(max |T_i| > d) for correlations l_i l_j (Dunnett 1955, JASA 50, 1096-1121), by the trapezoidal rule in both directions."""
-    with mp.workdps(25):
-        step, total = mpf(1) / 5, mpf(0)
-        for u in range(-60, 31):
-            s = mp.exp(u * mpf(4) / 100)
+    if len(loadings) == 1:
+        return t_two_sided(d, df)
+    with mp.workdps(20):
+        step, total = mpf(1) / 4, mpf(0)
+        for u in range(-40, 21):
+            s = mp.exp(u * STEP)
             density = scale_density(s, df)
-            if density > mpf(10) ** -22:
-                bells = (mp.npdf(step * i) * all_inside(step * i, d * s, loadings) for i in range(-50, 51))
-                total += density * mpf(4) / 100 * step * mp.fsum(bells)
+            if density > mpf(10) ** -16:
+                bells = (mp.npdf(step * i) * all_inside(step * i, d * s, loadings) for i in range(-34, 35))
+                total += density * STEP * step * mp.fsum(bells)
         return 1 - total
 
 
