@@ -14,8 +14,16 @@ import mpmath as mp
 
 HERE = Path(__file__).parent
 RANGE = [  # k, df, q
-    (3, 10, "3.877676"), (3, 1, "500"), (5, 3, "40"), (10, 20, "18"), (12, 24, "5.1"),
-    (20, 120, "13"), (100, 60, "3.5"), (6, 2.5, "9"), (200, 5, "30"), (4, 1000, "11"),
+    (3, 10, "3.877676"),
+    (3, 1, "500"),
+    (5, 3, "40"),
+    (10, 20, "18"),
+    (12, 24, "5.1"),
+    (20, 120, "13"),
+    (100, 60, "3.5"),
+    (6, 2.5, "9"),
+    (200, 5, "30"),
+    (4, 1000, "11"),
 ]
 DUNNETT = [  # loadings (correlation of i and j is their product), df, d
     (["0.7071067811865475"] * 3, 20, "2.54"),
@@ -83,8 +91,7 @@ def main() -> None:
     found = {
         "range": [{"k": k, "df": df, "q": q, "sf": mp.nstr(p, 18)} for (k, df, q), p in zip(RANGE, of_range, strict=True)],
         "dunnett": [
-            {"loadings": these, "df": df, "d": d, "sf": mp.nstr(p, 18)}
-            for (these, df, d), p in zip(DUNNETT, of_dunnett, strict=True)
+            {"loadings": these, "df": df, "d": d, "sf": mp.nstr(p, 18)} for (these, df, d), p in zip(DUNNETT, of_dunnett, strict=True)
         ],
     }
     (HERE / "high_precision.json").write_text(json.dumps(found, indent=1) + "\n", encoding="utf-8")
