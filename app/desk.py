@@ -119,6 +119,16 @@ def bind_view(key: str, options: list[Any]) -> dict[str, Any]:
     return {"key": key, "on_change": lambda: _remember(views={**(_state().views or {}), key: st.session_state[key]})}
 
 
+def view(key: str, otherwise: Any) -> Any:
+    """Return what is looked at under a key, or the other value where nothing was chosen."""
+    return (_state().views or {}).get(key, otherwise)
+
+
+def look_at(**chosen: Any) -> None:
+    """Choose what is looked at, which no result depends on."""
+    _remember(views={**(_state().views or {}), **chosen})
+
+
 def bind_upload(key: str) -> dict[str, Any]:
     """Tie an uploader to the desk: a file is read once, in its callback, and is not needed afterwards."""
     return {"key": key, "on_change": lambda: _take_upload(key)}

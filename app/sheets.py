@@ -8,7 +8,7 @@ import pandas as pd
 
 from analysis.findings import Findings
 from analysis.rounding import NOT_KNOWN, fixed, measured, p_number, percent, significant
-from app import checks_told, records, tabled, words
+from app import checks_told, original, records, tabled, words
 from app.paper import Sheet
 
 MOST_ROWS = 500  # of a table on screen; the workbook holds all
@@ -56,25 +56,26 @@ def cell_means(findings: Findings) -> Sheet:
     by_cell = {(c.row, c.column): c for c in records.lines(findings.cells)}
     margin = {factor: {m.level: m for m in records.lines(findings.marginal_means[factor])} for factor in (row, column)}
     rows = [
-        (level, *(_estimate(by_cell[level, c]) for c in design["column_levels"]), _mean(margin[row][level]))
+        (level, *(_estimate(findings, by_cell[level, c]) for c in design["column_levels"]), _mean(findings, margin[row][level]))
         for level in design["row_levels"]
     ]
     spread = findings.marginal_means[row]["se"].min()
-    last = ("mean", *(_mean(margin[column][c]) for c in design["column_levels"]), measured(findings.effects["grand_mean"], spread))
+    grand = original.number(findings, original.back(findings, findings.effects["grand_mean"]), spread)
+    last = ("mean", *(_mean(findings, margin[column][c]) for c in design["column_levels"]), grand)
     return Sheet(
-        f"Cell means of {words.response_label(findings)} with {words.intervals(findings)}",
+        f"Cell means of {original.label(findings)} with {words.intervals(findings)}",
         (f"{row} ╲ {column}", *design["column_levels"], "mean"),
         (*rows, last),
         foot=1,
     )
 
 
-def _estimate(cell: Any) -> str:
-    return words.EMPTY if cell.n == 0 else words.with_interval(cell.estimate, cell.lower, cell.upper, cell.se)
+def _estimate(findings: Findings, cell: Any) -> str:
+    return words.EMPTY if cell.n == 0 else original.with_interval(findings, cell)
 
 
-def _mean(level: Any) -> str:
-    return words.with_interval(level.mean, level.lower, level.upper, level.se) if level.estimable else NOT_KNOWN
+def _mean(findings: Findings, level: Any) -> str:
+    return original.with_interval(findings, level, "mean") if level.estimable else NOT_KNOWN
 
 
 def comparisons(findings: Findings, family: str) -> Sheet:

@@ -23,6 +23,7 @@ MODEL, SCALE, CONFIDENCE, MATTERS = "Model", "Scale", "Confidence", "Difference 
 MATTERS_HELP = (
     "The smallest difference that matters, in units of the response. With it, a small difference can be told from an open question."
 )
+AXIS = "Along the axis"
 NOT_GIVEN = "not given"
 MATTERS_NOT_APPLIED = "The difference that matters is in the units of the response and is not applied on another scale."
 ADJUST, FAMILY, LETTERS = "Adjusted by", "What is compared", "Letters for a figure or table"
@@ -94,9 +95,14 @@ def mean_hover(confidence: float) -> str:
 def response_label(findings: Findings) -> str:
     """Return the response with its unit and the scale it is analysed on, as an axis names it."""
     study = findings.study
-    unit = unit_of(study)
     scale = "" if study.scale == "none" else f"{scale_name(study.scale).lower()} of "
-    return f"{scale}{study.response}{f' ({unit})' if unit else ''}"
+    return f"{scale}{response_in_units(study)}"
+
+
+def response_in_units(study: Study) -> str:
+    """Return the response with its unit, as it was measured."""
+    unit = unit_of(study)
+    return f"{study.response}{f' ({unit})' if unit else ''}"
 
 
 def unit_of(study: Study) -> str | None:
@@ -251,8 +257,9 @@ def balance(findings: Findings) -> str:
 
 def margins(findings: Findings) -> str:
     """Return what stands in the table of cell means."""
+    what = "Geometric means in original units, estimates of the model" if findings.observed.scale.tells_ratios else "Estimates of the model"
     return (
-        f"Estimates of the model with {intervals(findings)}. The margins give every combination the same weight; "
+        f"{what} with {intervals(findings)}. The margins give every combination the same weight; "
         "with unequal cells they differ from the plain averages of the observations."
     )
 

@@ -9,8 +9,7 @@ import pandas as pd
 import plotly.graph_objects as go
 
 from analysis.findings import Findings
-from analysis.rounding import measured
-from app import records, words
+from app import original, records, words
 from app.figures import lettering
 from app.look import Look, shade, text_on
 
@@ -35,9 +34,7 @@ def grid(findings: Findings, look: Look, height: int = 174) -> go.Figure:
     """Draw the cells with mean, n and standard deviation, shaded by the mean."""
     rows, columns = findings.design["row_levels"], findings.design["column_levels"]
     low, high = findings.cells["mean"].min(), findings.cells["mean"].max()
-    fields = [
-        _mean_field(cell, k, len(columns), _share(cell.mean, low, high), look) for k, cell in enumerate(records.lines(findings.cells))
-    ]
+    fields = [_mean_field(findings, cell, k, _share(cell.mean, low, high), look) for k, cell in enumerate(records.lines(findings.cells))]
     return _drawn(fields, rows, columns, findings.design, look, height)
 
 
@@ -53,14 +50,14 @@ def _share(mean: float, low: float, high: float) -> float:
     return 0.5 if not high > low else (mean - low) / (high - low)
 
 
-def _mean_field(cell: Any, place: int, columns: int, share: float, look: Look) -> Field:
-    row, column = divmod(place, columns)
+def _mean_field(findings: Findings, cell: Any, place: int, share: float, look: Look) -> Field:
+    row, column = divmod(place, len(findings.design["column_levels"]))
     head = f"{lettering.plain(cell.row)} · {lettering.plain(cell.column)}"
     if cell.n == 0:
         return Field(row, column, look.paper, (words.EMPTY,), f"{head}<br>{words.EMPTY}")
     spread = words.spread(cell.sd, cell.se)
-    lines = (measured(cell.mean, cell.se), f"n {cell.n}{spread and f' · sd {spread}'}")
-    return Field(row, column, shade(look.shades, share), lines, f"{head}<br>mean {lines[0]}<br>{lines[1]}")
+    lines = (original.number(findings, original.back(findings, cell.mean), cell.se), f"n {cell.n}{spread and f' · sd {spread}'}")
+    return Field(row, column, shade(look.shades, share), lines, f"{head}<br>{original.mean_word(findings)} {lines[0]}<br>{lines[1]}")
 
 
 def _count_field(row: int, column: int, n: int, word: str, look: Look) -> Field:
@@ -133,18 +130,21 @@ def grid_caption(findings: Findings) -> str:
     """Say what stands in a field."""
     design = findings.design
     what = "" if findings.study.scale == "none" else f" of {words.response_label(findings)}"
-    return f"{design['row_factor']} down, {design['column_factor']} across. In each cell mean, n and standard deviation (sd){what}."
+    unit = " in original units" if original.is_told(findings) else ""
+    means = f"{original.mean_word(findings)}{unit}, n and standard deviation (sd){what}"
+    return f"{design['row_factor']} down, {design['column_factor']} across. In each cell {means}."
 
 
 def grid_alt(findings: Findings) -> str:
     """Read the grid out, cell by cell, for someone who does not see it."""
     cells: pd.DataFrame = findings.cells
-    told = "; ".join(
-        f"{c.row} with {c.column}: {words.EMPTY if c.n == 0 else f'mean {measured(c.mean, c.se)}, n {c.n}'}"
-        for c in records.lines(cells.head(36))
-    )
+    told = "; ".join(f"{c.row} with {c.column}: {words.EMPTY if c.n == 0 else _read(findings, c)}" for c in records.lines(cells.head(36)))
     rest = f"; and {len(cells) - 36} more cells" if len(cells) > 36 else ""
-    return f"Grid of cell means of {words.response_label(findings)}. {told}{rest}."
+    return f"Grid of cell means of {original.label(findings)}. {told}{rest}."
+
+
+def _read(findings: Findings, cell: Any) -> str:
+    return f"{original.mean_word(findings)} {original.number(findings, original.back(findings, cell.mean), cell.se)}, n {cell.n}"
 
 
 def counts_alt(design: Mapping[str, Any]) -> str:

@@ -7,6 +7,7 @@ import numpy as np
 import pandas as pd
 
 from analysis.findings import Findings
+from app import original
 from app.figures import placing
 
 
@@ -68,3 +69,62 @@ class Scene:
         low, high = float(np.nanmin(drawn)), float(np.nanmax(drawn))
         air = 0.05 * (high - low) or 1.0
         return low - air, high + air
+
+
+@dataclass(frozen=True, eq=False)
+class View(Scene):
+    """The scene in the units that means are told in, the factors changing sides where it is turned."""
+
+    turned: bool = False
+
+    @property
+    def line(self) -> str:
+        """Which side of the design the lines are: row, or column where turned."""
+        return "column" if self.turned else "row"
+
+    @property
+    def along(self) -> str:
+        """Which side of the design runs along the axis."""
+        return "row" if self.turned else "column"
+
+    @property
+    def is_log(self) -> bool:
+        """Whether the axis of the response is logarithmic."""
+        return original.is_told(self.findings)
+
+    @cached_property
+    def rows(self) -> tuple[str, ...]:
+        """Levels drawn as lines."""
+        return tuple(self.findings.design[f"{self.line}_levels"])
+
+    @cached_property
+    def columns(self) -> tuple[str, ...]:
+        """Levels along the axis."""
+        return tuple(self.findings.design[f"{self.along}_levels"])
+
+    @cached_property
+    def means(self) -> pd.DataFrame:
+        """One line per cell, estimate, lower and upper in the units told."""
+        return original.means(self.findings, super().means)
+
+    @cached_property
+    def observations(self) -> pd.DataFrame:
+        """The observations drawn, values in the units told."""
+        return original.observations(self.findings, super().observations)
+
+    def line_of(self, level: str) -> pd.DataFrame:
+        """Return the means of one line in the order of the axis."""
+        return self.means[self.means[self.line] == level].set_index(self.along).reindex(list(self.columns)).reset_index()
+
+    @cached_property
+    def reach(self) -> tuple[float, float]:
+        """Lowest and highest place drawn on the axis, with a little air; powers of ten where the axis is logarithmic."""
+        bars = self.means[["lower", "upper", "estimate"]].to_numpy(float).ravel()
+        places = self.places(np.concatenate([self.observations["value"].to_numpy(float), bars]))
+        low, high = float(np.nanmin(places)), float(np.nanmax(places))
+        air = 0.05 * (high - low) or 1.0
+        return low - air, high + air
+
+    def places(self, values: placing.Positions) -> placing.Positions:
+        """Return where values stand along the axis: themselves, or their powers of ten."""
+        return np.log10(values) if self.is_log else values

@@ -9,6 +9,7 @@ from analysis.study import MODELS, Study
 from app import desk, paper, sheets, stage, words
 from app.figures import grid, interaction
 
+AXIS = "choice_axis"
 OPEN = (verdicts.UNDECIDED, "not_tested")
 
 
@@ -29,13 +30,14 @@ def show() -> None:
         if findings.study.matters is not None and findings.choices.matters is None:
             st.html(paper.notice(words.MATTERS_NOT_APPLIED))
         stage.complaint()
-        drawn = interaction.interaction(findings, stage.at_hand())
-        stage.figure(drawn, "interaction", interaction.interaction_caption(findings), interaction.interaction_alt(findings))
+        turned = desk.view(AXIS, findings.study.factors[1]) == findings.study.factors[0]
+        drawn = interaction.interaction(findings, stage.at_hand(), turned)
+        stage.figure(drawn, "interaction", interaction.interaction_caption(findings), interaction.interaction_alt(findings, turned))
     _tables(findings)
 
 
 def _switches(study: Study) -> None:
-    model, scale, confidence, matters = st.columns(4, gap="small")
+    model, scale, confidence, matters, axis = st.columns([13, 11, 8, 14, 10], gap="small")
     with model:
         st.selectbox(words.MODEL, list(MODELS), format_func=words.MODELS.__getitem__, **desk.bind("choice_model", "model"))
     with scale:
@@ -49,6 +51,9 @@ def _switches(study: Study) -> None:
             words.MATTERS, min_value=0.0, value=None, placeholder=words.NOT_GIVEN, format="%g", help=words.MATTERS_HELP,
             **desk.bind("choice_matters", "matters", take=lambda value: value or None),
         )  # fmt: skip
+
+    with axis:
+        st.selectbox(words.AXIS, list(study.factors[::-1]), **desk.bind_view(AXIS, list(study.factors[::-1])))
 
 
 def _tables(findings: Findings) -> None:
