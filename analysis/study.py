@@ -51,12 +51,14 @@ class Study:
     matters: float | None = None  # smallest difference that matters, in units of the response
     relabel: Mapping[str, Mapping[str, str]] = field(default_factory=dict)  # column -> level as read -> level as used; equal ones merge
     set_aside: Mapping[int, str] = field(default_factory=dict)  # file row -> why it is not analysed
+    apart: Mapping[str, Mapping[str, str]] = field(default_factory=dict)  # column -> level -> the look-alike that it was not merged with
 
     def __post_init__(self) -> None:
         """Freeze the mappings and raise a Refusal for a choice that does not exist."""
         object.__setattr__(self, "keep", _frozen(self.keep))
         object.__setattr__(self, "control", _frozen(self.control))
         object.__setattr__(self, "relabel", MappingProxyType({column: _frozen(names) for column, names in self.relabel.items()}))
+        object.__setattr__(self, "apart", MappingProxyType({column: _frozen(names) for column, names in self.apart.items()}))
         object.__setattr__(self, "set_aside", MappingProxyType({int(row): why.strip() for row, why in self.set_aside.items()}))
         _check_choices(self)
         for column, levels in self.keep.items():
@@ -94,6 +96,7 @@ class Study:
         plain["control"] = dict(self.control)
         plain["relabel"] = {column: dict(names) for column, names in self.relabel.items()}
         plain["set_aside"] = dict(self.set_aside)
+        plain["apart"] = {column: dict(names) for column, names in self.apart.items()}
         return plain
 
     def to_json(self) -> str:

@@ -67,6 +67,19 @@ def change(**fields: Any) -> None:
         _remember(complaint=str(refusal), about=CHOICE)
 
 
+def edit(make: Callable[..., Mapping[str, Any]], *details: Any) -> None:
+    """Change the open study by the fields that `make` returns for it and the details; a refusal leaves it as it was."""
+    now = study()
+    if now is None:
+        return
+    try:
+        changes = make(now, *details)
+    except Refusal as refusal:
+        _remember(complaint=str(refusal), about=CHOICE)
+    else:
+        change(**changes)
+
+
 def assign(role: str, column: str | None) -> None:
     """Give a column a role; a role that held the column before takes over what this role held."""
     now = study()
@@ -110,6 +123,12 @@ def bind_role(key: str, role: str) -> dict[str, Any]:
     """Tie a select box to the role of a column."""
     st.session_state[key] = getattr(study(), role)
     return {"key": key, "on_change": lambda: assign(role, st.session_state[key])}
+
+
+def bind_edit(key: str, value: Any, make: Callable[..., Mapping[str, Any]], *details: Any) -> dict[str, Any]:
+    """Tie a widget that shows a value of the open study to the edit that a new value stands for."""
+    st.session_state[key] = value
+    return {"key": key, "on_change": lambda: edit(make, *details, st.session_state[key])}
 
 
 def bind_view(key: str, options: list[Any]) -> dict[str, Any]:

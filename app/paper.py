@@ -90,6 +90,16 @@ def levels(factor: str, counts: Sequence[tuple[str, int]]) -> str:
     return f"<div class='levels'><h3>{safe(factor)}</h3><ul>{told}</ul></div>"
 
 
+def offer(sentence: str) -> str:
+    """Return a question that is answered by the buttons beside it."""
+    return f"<p class='offer'>{safe(sentence)}</p>"
+
+
+def struck(name: str, aside: str) -> str:
+    """Return a name that takes no part, struck through and still legible."""
+    return f"<p class='text'><s>{safe(name)}</s> <span class='quiet'>{safe(aside)}, left out</span></p>"
+
+
 def table(sheet: Sheet) -> str:
     """Return a table with headings that a screen reader can follow."""
     head = "".join(f"<th scope='col'{_side(sheet, k)}>{safe(name)}</th>" for k, name in enumerate(sheet.columns))

@@ -9,6 +9,7 @@ from numpy.typing import NDArray
 
 from analysis.adjustments import ADJUSTMENTS
 from analysis.findings import Findings
+from analysis.level_edits import Suggestion
 from analysis.rounding import decimals_for, fixed, measured, percent, significant
 from analysis.study import Study
 from app import records
@@ -48,6 +49,10 @@ ROLE_MEANS: Mapping[str, str] = MappingProxyType(
     }
 )
 CHOSEN = "chosen by you"
+MERGE, KEEP_APART, LEAVE_OUT, TAKE_BACK = "Merge", "Keep apart", "Leave out", "Take back in"
+CONTROL, CONTROL_FIRST = "Control level", "the first level"
+CONTROL_HELP = "The level that the others are compared with, where Compare adjusts by Dunnett."
+LEVELS_HELP = "Write another name to rename a level; the name of another level makes the two one."
 NOTHING_OPEN = "There is no table yet."
 TO_BRING, TO_LAY_OUT = "Bring one", "Choose columns at Lay out"
 NOTHING_DECIDED = "Nothing: the file could be read in one way only."
@@ -221,6 +226,21 @@ def percent_told(share: float) -> str:
 def open_table(study: Study | None) -> str:
     """Return which table is open."""
     return "" if study is None else f"{study.table.name} · {counted(study.table.rows, 'row')}"
+
+
+def levels_alike(column: str, offer: Suggestion) -> str:
+    """Return which two levels of a column may be one."""
+    return f"{column}: is “{offer.level.name}” ({offer.level.rows}) the same as “{offer.into.name}” ({offer.into.rows})?"
+
+
+def levels_head(column: str) -> str:
+    """Return what is behind the levels of a factor."""
+    return f"Levels of {literal(column)}: names, order, control"
+
+
+def too_many_levels(column: str, levels: int, most: int) -> str:
+    """Return why the levels of a column are not listed."""
+    return f"{column} has {levels} levels, and up to {most} are listed here; a column with more is usually a label, not a factor."
 
 
 def rows_shown(shown: int, rows: int, columns: int) -> str:

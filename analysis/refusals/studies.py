@@ -213,3 +213,19 @@ class ReasonMissing(Refusal):
 
     def __init__(self, row: int) -> None:
         super().__init__(f"Row {row} is to be set aside without a reason: say in a few words why it does not belong to the experiment.")
+
+
+class LevelNameMissing(Refusal):
+    """A level that is to be renamed to nothing."""
+
+    def __init__(self, column: str, level: str) -> None:
+        super().__init__(f"Level “{level}” of column “{column}” needs a name: write one, or leave the level out of the analysis.")
+
+
+class UnknownRow(Refusal):
+    """A row number under which the table holds no observation."""
+
+    def __init__(self, text: str, first: int, last: int) -> None:
+        super().__init__(
+            f"“{text}” names no row of the table: write row numbers of the file, {first} to {last}, such as “{first}, {last}”."
+        )

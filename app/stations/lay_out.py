@@ -5,7 +5,7 @@ import streamlit as st
 from analysis.findings import Findings
 from analysis.refusals import Refusal
 from analysis.study import NEEDED_ROLES, Study
-from app import desk, paper, records, sheets, stage, words
+from app import desk, level_list, paper, records, sheets, stage, words
 from app.figures import grid
 
 ROLES = (
@@ -35,6 +35,13 @@ def show() -> None:
             st.html(paper.notice(str(found)))
         elif found is not None:
             _design(found)
+        factors = [(column, key) for key, column in (("row", study.row_factor), ("column", study.column_factor)) if column is not None]
+        for column, key in factors:
+            level_list.offers(study, column, key)
+        for column, key in factors:
+            level_list.changes(study, column, key)
+        if isinstance(found, Findings):
+            _account(found)
 
 
 def _role(study: Study, key: str, role: str) -> None:
@@ -55,6 +62,10 @@ def _design(findings: Findings) -> None:
     st.html(paper.text(words.balance(findings)))
     for factor in findings.study.factors:
         st.html(paper.levels(factor, [(str(m.level), int(m.n)) for m in records.lines(findings.marginal_means[factor])]))
+
+
+def _account(findings: Findings) -> None:
+    design = findings.design
     st.html(paper.text(words.reckoning(design["observations"], len(design["left_out"]))))
     if design["left_out"]:
         with st.expander(f"The {words.counted(len(design['left_out']), 'row')} left out, with reasons"):

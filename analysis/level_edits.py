@@ -1,0 +1,121 @@
+"""What a change of one column's levels makes of a study: renamed, merged, moved, left out, taken back in."""
+
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass
+from typing import Any
+
+from analysis.reading import look_alikes
+from analysis.refusals import LevelNameMissing
+from analysis.relabelling import relabelled
+from analysis.study import Study
+from analysis.table import Levels, counts
+
+Changes = Mapping[str, Any]  # fields of a study and their new values, as `dataclasses.replace` takes them
+
+
+@dataclass(frozen=True)
+class Level:
+    """One level as it stands now."""
+
+    name: str
+    rows: int  # of the table that hold it, whatever else they lack
+    analysed: bool  # False where the level was left out
+
+
+@dataclass(frozen=True)
+class Suggestion:
+    """A level that may be another one written differently."""
+
+    level: Level
+    into: Level  # the commoner of the two
+
+
+def levels_of(study: Study, column: str) -> tuple[Level, ...]:
+    """Return the levels of a column under their names of now: those analysed in their order, then those left out."""
+    levels = _levels(study, column)
+    rows = dict(zip(levels.labels, counts(levels.codes, len(levels.labels)).tolist(), strict=True))
+    kept = _order(study, column, levels)
+    gone = [label for label in levels.labels if label not in kept]
+    return (*(Level(name, rows[name], True) for name in kept), *(Level(name, rows[name], False) for name in gone))
+
+
+def suggestions(study: Study, column: str) -> tuple[Suggestion, ...]:
+    """Return the merges that look-alike levels suggest, without those that were refused."""
+    levels = {level.name: level for level in levels_of(study, column)}
+    refused = study.apart.get(column, {})
+    found = look_alikes.merges(_levels(study, column))
+    return tuple(Suggestion(levels[rarer], levels[into]) for rarer, into in found.items() if refused.get(rarer) != into)
+
+
+def merged(study: Study, column: str, level: str, into: str) -> Changes:
+    """Return the changes that make one level part of another."""
+    return _named(study, column, level, into)
+
+
+def kept_apart(study: Study, column: str, level: str, other: str) -> Changes:
+    """Return the change that remembers that two look-alike levels are two."""
+    return {"apart": {**study.apart, column: {**study.apart.get(column, {}), level: other}}}
+
+
+def renamed(study: Study, column: str, level: str, name: str) -> Changes:
+    """Return the changes that give a level another name; the name of another level makes the two one.
+
+    Raises LevelNameMissing for a name without a letter.
+    """
+    if not name.strip():
+        raise LevelNameMissing(column, level)
+    return _named(study, column, level, " ".join(name.split()))
+
+
+def moved(study: Study, column: str, level: str, places: int) -> Changes:
+    """Return the change that moves an analysed level by some places, at most to either end."""
+    order = list(_order(study, column, _levels(study, column)))
+    place = order.index(level)
+    order.insert(min(max(place + places, 0), len(order) - 1), order.pop(place))
+    return _kept(study, column, order)
+
+
+def left_out(study: Study, column: str, level: str) -> Changes:
+    """Return the changes that leave a level out; a control level is one no longer."""
+    order = [name for name in _order(study, column, _levels(study, column)) if name != level]
+    control = {factor: name for factor, name in study.control.items() if (factor, name) != (column, level)}
+    return {**_kept(study, column, order), "control": control}
+
+
+def taken_back(study: Study, column: str, level: str) -> Changes:
+    """Return the change that takes a level back in, before the first level that naturally follows it."""
+    labels = _levels(study, column).labels
+    order = list(_order(study, column, _levels(study, column)))
+    later = (k for k, name in enumerate(order) if labels.index(name) > labels.index(level))
+    order.insert(next(later, len(order)), level)
+    return _kept(study, column, order)
+
+
+def _levels(study: Study, column: str) -> Levels:
+    return relabelled(study.table.column(column).as_levels(), study.relabel.get(column, {}))
+
+
+def _order(study: Study, column: str, levels: Levels) -> Sequence[str]:
+    return tuple(study.keep.get(column, levels.labels))
+
+
+def _kept(study: Study, column: str, order: Sequence[str]) -> Changes:
+    """Return the order to keep; the natural order of all levels needs no entry."""
+    keep = {name: levels for name, levels in study.keep.items() if name != column}
+    natural = tuple(order) == _levels(study, column).labels
+    return {"keep": keep if natural else {**keep, column: tuple(order)}}
+
+
+def _named(study: Study, column: str, level: str, name: str) -> Changes:
+    read = study.table.column(column).as_levels().labels
+    now = study.relabel.get(column, {})
+    given = {label: name if now.get(label, label) == level else now.get(label, label) for label in read}
+    names = {label: new for label, new in given.items() if new != label}
+    others = {other: known for other, known in study.relabel.items() if other != column}
+    changes: dict[str, Any] = {"relabel": {**others, column: names} if names else others}
+    if column in study.keep:
+        order = dict.fromkeys(name if kept == level else kept for kept in study.keep[column])
+        changes["keep"] = {**study.keep, column: tuple(order)}
+    if study.control.get(column) == level:
+        changes["control"] = {**study.control, column: name}
+    return changes

@@ -1,0 +1,77 @@
+"""What Lay out changes: levels, rows and their reasons, each taken back by undo."""
+
+import html
+
+import pytest
+
+import analysis
+from analysis.study import Study
+from tests.app import opening
+
+
+@pytest.fixture
+def misspelt() -> Study:
+    lines = (opening.SAMPLES / "basil_light_feed.csv").read_text(encoding="utf-8").replace("No feed", "no feed", 3)
+    table = analysis.read_table(lines.encode(), name="pots.csv")
+    return Study(table, "yield (g)", "light", "feed")
+
+
+def test_a_merge_is_offered_and_taken(misspelt: Study) -> None:
+    dashboard = opening.station("lay_out", misspelt)
+    assert html.escape("is “no feed” (3) the same as “No feed” (15)?") in opening.page(dashboard)
+    dashboard.button(key="column_merge_0").click().run()
+    assert opening.study_of(dashboard).relabel == {"feed": {"no feed": "No feed"}}
+    assert "the same as" not in opening.page(dashboard)
+    dashboard.button(key="undo").click().run()
+    assert "the same as" in opening.page(dashboard)
+    assert not dashboard.exception
+
+
+def test_a_merge_refused_is_not_offered_again(misspelt: Study) -> None:
+    dashboard = opening.station("lay_out", misspelt)
+    dashboard.button(key="column_apart_0").click().run()
+    assert "the same as" not in opening.page(dashboard)
+    assert opening.study_of(dashboard).relabel == {}
+    dashboard.button(key="undo").click().run()
+    assert "the same as" in opening.page(dashboard)
+
+
+@pytest.mark.parametrize(
+    ("press", "levels"),
+    [
+        ("row_0_down", ["Half shade", "Full sun"]),
+        ("row_1_up", ["Half shade", "Full sun"]),
+        ("row_0_out", ["Half shade"]),
+    ],
+)
+def test_levels_move_and_are_left_out(press: str, levels: list[str]) -> None:
+    study = opening.sample()
+    dashboard = opening.station("lay_out", study)
+    dashboard.button(key=press).click().run()
+    assert list(opening.study_of(dashboard).keep["light"])[: len(levels)] == levels
+    dashboard.button(key="undo").click().run()
+    assert opening.study_of(dashboard) is study
+    assert not dashboard.exception
+
+
+def test_a_level_left_out_is_taken_back_in() -> None:
+    dashboard = opening.station("lay_out", opening.sample())
+    last = len(opening.findings(opening.sample()).design["row_levels"]) - 1
+    dashboard.button(key="row_0_out").click().run()
+    dashboard.button(key=f"row_{last}_back").click().run()
+    assert opening.study_of(dashboard).fingerprint == opening.sample().fingerprint
+
+
+def test_a_level_is_renamed_by_writing_its_name() -> None:
+    dashboard = opening.station("lay_out", opening.sample())
+    dashboard.text_input(key="row_0_name").set_value("Open sky").run()
+    assert opening.findings(opening.study_of(dashboard)).design["row_levels"][0] == "Open sky"
+    dashboard.text_input(key="row_0_name").set_value(" ").run()
+    assert "needs a name" in opening.page(dashboard)
+    assert dashboard.text_input(key="row_0_name").value == "Open sky"
+
+
+def test_the_control_level_is_chosen() -> None:
+    dashboard = opening.station("lay_out", opening.sample())
+    dashboard.selectbox(key="column_control").select("No feed").run()
+    assert opening.study_of(dashboard).control == {"feed": "No feed"}
