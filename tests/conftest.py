@@ -27,6 +27,14 @@ def pytest_collection_modifyitems(items: list[pytest.Item]) -> None:
             item.add_marker(pytest.mark.skip(reason=NO_BROWSER))
 
 
+def pytest_terminal_summary(terminalreporter: pytest.TerminalReporter) -> None:
+    """Print what a test recorded as worth reading even when it passes, such as the digits reached."""
+    for report in terminalreporter.getreports("passed"):
+        for name, value in report.user_properties:
+            if name == "printed":
+                terminalreporter.write_line(str(value))
+
+
 def browser_path() -> str | None:
     """Return the browser that pictures are drawn with, or None."""
     try:
