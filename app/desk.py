@@ -9,6 +9,7 @@ import streamlit as st
 
 from analysis import analyse, read_table
 from analysis.findings import Findings
+from analysis.implausible import Suspicion, suspicions
 from analysis.refusals import Refusal
 from analysis.roles import guess_roles
 from analysis.study import ROLES, Study
@@ -131,11 +132,29 @@ def bind_edit(key: str, value: Any, make: Callable[..., Mapping[str, Any]], *det
     return {"key": key, "on_change": lambda: edit(make, *details, st.session_state[key])}
 
 
+def bind_typed(make: Callable[..., Mapping[str, Any]], *keys: str) -> dict[str, Any]:
+    """Tie a button to the edit that it makes of what was typed; what was typed is gone once it was taken."""
+    return {"on_click": lambda: _take_typed(make, keys)}
+
+
+def _take_typed(make: Callable[..., Mapping[str, Any]], keys: tuple[str, ...]) -> None:
+    before = study()
+    edit(make, *(st.session_state[key] for key in keys))
+    if study() is not before:
+        st.session_state.update(dict.fromkeys(keys, ""))
+
+
 def bind_view(key: str, options: list[Any]) -> dict[str, Any]:
     """Tie a widget to what is looked at, which no result depends on; the first option until another is chosen."""
     kept = (_state().views or {}).get(key)
     st.session_state[key] = kept if kept in options else options[0]
     return {"key": key, "on_change": lambda: _remember(views={**(_state().views or {}), key: st.session_state[key]})}
+
+
+def bind_views(key: str, options: list[Any]) -> dict[str, Any]:
+    """Tie a widget of several choices to what is looked at; choices that are not offered are passed over."""
+    st.session_state[key] = [kept for kept in view(key, ()) if kept in options]
+    return {"key": key, "on_change": lambda: look_at(**{key: tuple(st.session_state[key])})}
 
 
 def view(key: str, otherwise: Any) -> Any:
@@ -196,6 +215,17 @@ def findings() -> Findings | Refusal | None:
         return _findings(now.fingerprint, now)
     except Refusal as refusal:
         return refusal
+
+
+@st.cache_resource(max_entries=16, show_spinner=False)
+def _suspicions(fingerprint: str, _study: Study) -> tuple[Suspicion, ...]:
+    return suspicions(_study)
+
+
+def worth_a_look() -> tuple[Suspicion, ...]:
+    """Return the values of the open study that deserve a second look; none where it cannot be laid out."""
+    now = study()
+    return () if now is None or isinstance(findings(), Refusal) else _suspicions(now.fingerprint, now)
 
 
 @st.cache_resource(max_entries=16, show_spinner=False)

@@ -16,6 +16,7 @@ class Sheet:
     rows: Sequence[Sequence[str]]
     words: frozenset[int] = frozenset({0})  # columns of words, set to the left; the others are numbers, set to the right
     foot: int = 0  # rows at the end that sum the others up
+    struck: frozenset[int] = frozenset()  # rows that take no part, struck through and still legible
 
 
 def variables(look: Look) -> str:
@@ -103,16 +104,21 @@ def struck(name: str, aside: str) -> str:
 def table(sheet: Sheet) -> str:
     """Return a table with headings that a screen reader can follow."""
     head = "".join(f"<th scope='col'{_side(sheet, k)}>{safe(name)}</th>" for k, name in enumerate(sheet.columns))
-    first_foot = len(sheet.rows) - sheet.foot
-    body = "".join(_row(sheet, row, k >= first_foot) for k, row in enumerate(sheet.rows))
+    body = "".join(_row(sheet, row, _kind(sheet, k)) for k, row in enumerate(sheet.rows))
     inner = f"<caption>{safe(sheet.caption)}</caption><thead><tr>{head}</tr></thead><tbody>{body}</tbody>"
     return f"<div class='sheet' tabindex='0' role='region' aria-label='{safe(sheet.caption)}'><table>{inner}</table></div>"
 
 
-def _row(sheet: Sheet, row: Sequence[str], is_foot: bool) -> str:
+def _row(sheet: Sheet, row: Sequence[str], kind: str) -> str:
     name, *cells = row
     told = "".join(f"<td{_side(sheet, k)}>{safe(cell)}</td>" for k, cell in enumerate(cells, start=1))
-    return f"<tr{' class=foot' if is_foot else ''}><th scope='row'>{safe(name)}</th>{told}</tr>"
+    return f"<tr{kind}><th scope='row'>{safe(name)}</th>{told}</tr>"
+
+
+def _kind(sheet: Sheet, place: int) -> str:
+    if place in sheet.struck:
+        return " class=struck"
+    return " class=foot" if place >= len(sheet.rows) - sheet.foot else ""
 
 
 def _side(sheet: Sheet, column: int) -> str:

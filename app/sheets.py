@@ -78,9 +78,9 @@ def _mean(findings: Findings, level: Any) -> str:
     return original.with_interval(findings, level, "mean") if level.estimable else NOT_KNOWN
 
 
-def comparisons(findings: Findings, family: str) -> Sheet:
-    """Return a family's differences with adjusted interval, adjusted p and what it says, in the order of the figure."""
-    frame = records.family(findings, family)
+def comparisons(findings: Findings, family: str, asked: pd.DataFrame | None = None) -> Sheet:
+    """Return a family's differences, or those asked about, with adjusted interval, adjusted p and what it says."""
+    frame = records.family(findings, family) if asked is None else asked
     sliced = frame["within"].notna().any()
     rows = [
         (tabled.pair(c.left, c.right, findings.observed.scale.tells_ratios), *((str(c.within),) if sliced else ()), *_compared(c))
@@ -137,6 +137,13 @@ def left_out(entries: Sequence[Mapping[str, Any]]) -> Sheet:
     """Return the rows that take no part, each with its reason."""
     rows = [(str(entry["row"]), str(entry["why"])) for entry in entries[:MOST_ROWS]]
     return Sheet("Rows left out", ("row of the file", "reason"), rows, frozenset({0, 1}))
+
+
+def rows(numbers: Sequence[int], columns: Sequence[str], cells: Sequence[Sequence[str]], why: Mapping[int, str]) -> Sheet:
+    """Return rows of the data with what they are used for, those that take no part struck through."""
+    lines = [(str(number), *line, why.get(number, "")) for number, line in zip(numbers, cells, strict=True)]
+    struck = frozenset(place for place, number in enumerate(numbers) if number in why)
+    return Sheet("Rows of the data", ("row", *columns, "left out because"), lines, frozenset(range(len(columns) + 2)), struck=struck)
 
 
 def preview(frame: pd.DataFrame) -> Sheet:

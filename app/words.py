@@ -5,6 +5,7 @@ from types import MappingProxyType
 from typing import Any
 
 import numpy as np
+import pandas as pd
 from numpy.typing import NDArray
 
 from analysis.adjustments import ADJUSTMENTS
@@ -50,6 +51,11 @@ ROLE_MEANS: Mapping[str, str] = MappingProxyType(
 )
 CHOSEN = "chosen by you"
 MERGE, KEEP_APART, LEAVE_OUT, TAKE_BACK = "Merge", "Keep apart", "Leave out", "Take back in"
+ROWS, WHY, SET_ASIDE, ASIDE = "Rows of the file", "Why they do not belong to the experiment", "Set aside", "Set aside now"
+ROWS_EXAMPLE, WHY_EXAMPLE = "12, 15-18", "pot fell over on day 3"
+ASIDE_HELP = "Take a row out of this list to put it back into the analysis."
+ROWS_HEAD = "Rows: look through them, set some aside"
+LOOK_HEAD = "Each of these stays in the analysis until you set it aside."
 CONTROL, CONTROL_FIRST = "Control level", "the first level"
 CONTROL_HELP = "The level that the others are compared with, where Compare adjusts by Dunnett."
 LEVELS_HELP = "Write another name to rename a level; the name of another level makes the two one."
@@ -207,10 +213,14 @@ def adjusted_by(findings: Findings) -> str:
 
 def family_size(findings: Findings, name: str) -> str:
     """Return how many comparisons are adjusted together."""
-    sizes = records.family(findings, name)["family_size"]
     each = " in each slice" if " within " in name and name not in findings.study.factors else ""
-    counts = sorted({int(size) for size in sizes})
-    return f"{' or '.join(str(c) for c in counts)} comparison{'' if counts == [1] else 's'}{each}"
+    return f"{sizes_told(records.family(findings, name))}{each}"
+
+
+def sizes_told(frame: pd.DataFrame) -> str:
+    """Return how many comparisons are adjusted together, over the lines of a family."""
+    counts = sorted({int(size) for size in frame["family_size"]})
+    return f"{' or '.join(str(c) for c in counts)} comparison{'' if counts == [1] else 's'}"
 
 
 def counted(count: int, thing: str) -> str:
@@ -241,6 +251,16 @@ def levels_head(column: str) -> str:
 def too_many_levels(column: str, levels: int, most: int) -> str:
     """Return why the levels of a column are not listed."""
     return f"{column} has {levels} levels, and up to {most} are listed here; a column with more is usually a label, not a factor."
+
+
+def row_aside(row: int, why: str) -> str:
+    """Return a row that was set aside, with its reason."""
+    return f"row {row}: {why}"
+
+
+def worth_a_look(count: int) -> str:
+    """Return how many values deserve a second look."""
+    return f"{counted(count, 'value')} worth a look" if count else "No value looks like a slip"
 
 
 def rows_shown(shown: int, rows: int, columns: int) -> str:

@@ -5,7 +5,7 @@ import streamlit as st
 from analysis.findings import Findings
 from analysis.refusals import Refusal
 from analysis.study import NEEDED_ROLES, Study
-from app import desk, level_list, paper, records, sheets, stage, words
+from app import desk, level_list, paper, records, row_list, sheets, stage, words
 from app.figures import grid
 
 ROLES = (
@@ -40,6 +40,7 @@ def show() -> None:
             level_list.offers(study, column, key)
         for column, key in factors:
             level_list.changes(study, column, key)
+        row_list.show(study, found.design["left_out"] if isinstance(found, Findings) else [])
         if isinstance(found, Findings):
             _account(found)
 

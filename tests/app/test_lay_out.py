@@ -75,3 +75,44 @@ def test_the_control_level_is_chosen() -> None:
     dashboard = opening.station("lay_out", opening.sample())
     dashboard.selectbox(key="column_control").select("No feed").run()
     assert opening.study_of(dashboard).control == {"feed": "No feed"}
+
+
+def test_rows_are_set_aside_with_a_reason_and_put_back() -> None:
+    dashboard = opening.station("lay_out", opening.sample())
+    dashboard.text_input(key="rows_named").set_value("3, 5-6")
+    dashboard.text_input(key="rows_why").set_value("pot fell over")
+    dashboard.button(key="rows_aside").click().run()
+    assert opening.study_of(dashboard).set_aside == dict.fromkeys((3, 5, 6), "pot fell over")
+    page = opening.page(dashboard)
+    assert page.count("<tr class=struck>") == 3
+    assert "72 rows in the file: 69 analysed, 3 left out." in page
+    assert dashboard.text_input(key="rows_named").value == ""
+    dashboard.multiselect(key="rows_kept_aside").unselect(5).run()
+    assert set(opening.study_of(dashboard).set_aside) == {3, 6}
+    dashboard.button(key="undo").click().run()
+    dashboard.button(key="undo").click().run()
+    assert opening.study_of(dashboard) is opening.sample()
+    assert not dashboard.exception
+
+
+@pytest.mark.parametrize(
+    ("rows", "why", "sentence"), [("3", " ", "without a reason"), ("900", "gone", "names no row of the table"), ("", "x", "names no row")]
+)
+def test_rows_without_a_reason_or_a_number_stay(rows: str, why: str, sentence: str) -> None:
+    study = opening.sample()
+    dashboard = opening.station("lay_out", study)
+    dashboard.text_input(key="rows_named").set_value(rows)
+    dashboard.text_input(key="rows_why").set_value(why)
+    dashboard.button(key="rows_aside").click().run()
+    assert opening.study_of(dashboard) is study
+    assert sentence in opening.page(dashboard)
+    assert dashboard.text_input(key="rows_named").value == rows
+
+
+def test_a_slip_is_offered_for_a_look() -> None:
+    lines = (opening.SAMPLES / "basil_light_feed.csv").read_text(encoding="utf-8").replace(",26.9", ",269", 1)
+    study = Study(analysis.read_table(lines.encode(), name="pots.csv"), "yield (g)", "light", "feed")
+    dashboard = opening.station("lay_out", study)
+    page = opening.page(dashboard)
+    assert "Row 2: 269, while the others of Full sun with No feed lie between" in page
+    assert "72 rows in the file: 72 analysed, 0 left out." in page
