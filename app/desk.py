@@ -11,9 +11,10 @@ from analysis import analyse, read_table
 from analysis.findings import Findings
 from analysis.implausible import Suspicion, suspicions
 from analysis.refusals import Refusal
-from analysis.roles import guess_roles
+from analysis.roles import Roles, guess_roles
 from analysis.study import ROLES, Study
 from analysis.table import Table
+from analysis.unit_question import UnitAnswer, unit_answers
 from app import samples
 
 HISTORY = 200  # studies kept for undo
@@ -229,11 +230,25 @@ def worth_a_look() -> tuple[Suspicion, ...]:
 
 
 @st.cache_resource(max_entries=16, show_spinner=False)
-def _reasons(fingerprint: str, _table: Table) -> Mapping[str, str]:
-    return guess_roles(_table).reasons
+def _roles(fingerprint: str, _table: Table) -> Roles:
+    return guess_roles(_table)
 
 
 def reasons() -> Mapping[str, str]:
     """Return why each column of the open table got the role that was suggested for it, by column."""
     now = study()
-    return {} if now is None else _reasons(now.table.fingerprint, now.table)
+    return {} if now is None else _roles(now.table.fingerprint, now.table).reasons
+
+
+@st.cache_resource(max_entries=16, show_spinner=False)
+def _unit_answers(fingerprint: str, _study: Study, column: str) -> tuple[UnitAnswer, UnitAnswer]:
+    return unit_answers(_study, column)
+
+
+def asked_units() -> tuple[UnitAnswer, ...]:
+    """Return what each answer to the question of the unit means, where a column names the units or looks as if it did."""
+    now = study()
+    if now is None or isinstance(findings(), Refusal):
+        return ()
+    column = now.unit or _roles(now.table.fingerprint, now.table).unit
+    return () if column is None or column in (now.response, now.block, *now.factors) else _unit_answers(now.fingerprint, now, column)

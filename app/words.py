@@ -13,6 +13,7 @@ from analysis.findings import Findings
 from analysis.level_edits import Suggestion
 from analysis.rounding import decimals_for, fixed, measured, percent, significant
 from analysis.study import Study
+from analysis.unit_question import UnitAnswer
 from app import records
 
 EMPTY = "empty"
@@ -56,6 +57,7 @@ ROWS_EXAMPLE, WHY_EXAMPLE = "12, 15-18", "pot fell over on day 3"
 ASIDE_HELP = "Take a row out of this list to put it back into the analysis."
 ROWS_HEAD = "Rows: look through them, set some aside"
 LOOK_HEAD = "Each of these stays in the analysis until you set it aside."
+ONE_UNIT = "What is one independent unit?"
 CONTROL, CONTROL_FIRST = "Control level", "the first level"
 CONTROL_HELP = "The level that the others are compared with, where Compare adjusts by Dunnett."
 LEVELS_HELP = "Write another name to rename a level; the name of another level makes the two one."
@@ -66,6 +68,8 @@ NO_ADDITIVE = "The model without interaction leaves no residual here."
 ADDITIVE_TABLE = "The model without interaction: what the interaction would explain is counted as chance. Type II sums of squares."
 FAMILY_TOO_LARGE = "This family holds too many comparisons to be written out; compare within one factor instead."
 FAMILY_EMPTY = "There is nothing to compare in this family."
+WALK, NEXT, BACK, LEAVE = "Walk through it", "Next", "Back", "Leave"
+WALK_HOLDS = "One board on the whole window, for the group: arrow keys, space or a presenter’s remote, Escape to leave."
 WHAT_FOLLOWS = (
     "Bring: a table from a spreadsheet or a text file.",
     "Lay out: say which column was measured and which two were varied.",
@@ -260,7 +264,16 @@ def row_aside(row: int, why: str) -> str:
 
 def worth_a_look(count: int) -> str:
     """Return how many values deserve a second look."""
-    return f"{counted(count, 'value')} worth a look" if count else "No value looks like a slip"
+    return f"{counted(count, 'value')} worth a look"
+
+
+def unit_answer(answer: UnitAnswer, chosen: str | None) -> str:
+    """Return what follows from one answer to the question of the unit."""
+    what = "Each row" if answer.unit is None else f"Each {answer.unit}"
+    if answer.units is None or answer.residual_df is None:
+        return f"{what}: not possible. {answer.refusal}"
+    now = ", as analysed now" if answer.unit == chosen else ""
+    return f"{what}: {fixed(answer.units, 0)} values, {fixed(answer.residual_df, 0)} residual df{now}."
 
 
 def rows_shown(shown: int, rows: int, columns: int) -> str:
@@ -295,6 +308,16 @@ def balance(findings: Findings) -> str:
     return f"Every combination was observed, but not equally often: {n_per_cell(findings)}."
 
 
+def singles(design: Mapping[str, Any]) -> str:
+    """Return which combinations hold one observation alone, or nothing where none does or all do."""
+    counts = np.asarray(design["counts"])
+    if not (counts == 1).any() or (counts == 1).all():
+        return ""
+    single = [f"{design['row_levels'][i]} with {design['column_levels'][j]}" for i, j in np.argwhere(counts == 1)]
+    named = "; ".join(single[:4]) + ("" if len(single) <= 4 else f" and {len(single) - 4} more")
+    return f"A single observation, which says nothing about spread, in {named}."
+
+
 def margins(findings: Findings) -> str:
     """Return what stands in the table of cell means."""
     what = "Geometric means in original units, estimates of the model" if findings.observed.scale.tells_ratios else "Estimates of the model"
@@ -314,3 +337,13 @@ def family_told(findings: Findings, name: str) -> str:
     """Return how many comparisons a family holds and how they are adjusted."""
     size = family_size(findings, name)
     return size if size == "1 comparison" else f"{size}, adjusted together ({adjusted_by(findings)})"
+
+
+def place_of(place: int, last: int) -> str:
+    """Return which board of the story is shown."""
+    return f"{place} of {last}"
+
+
+def more_rows(count: int) -> str:
+    """Return how many rows of a table are not shown."""
+    return f"{counted(count, 'more row')} in the workbook."

@@ -28,6 +28,7 @@ def show() -> None:
         st.html(paper.heading("Lay out", "which column is what"))
         for key, role in ROLES:
             _role(study, key, role)
+        _unit_question(study)
     with right:
         stage.complaint()
         found = desk.findings()
@@ -56,11 +57,19 @@ def _role(study: Study, key: str, role: str) -> None:
         st.html(paper.caption(desk.reasons().get(column, words.CHOSEN) if column else words.ROLE_MEANS[role]))
 
 
+def _unit_question(study: Study) -> None:
+    """Show what each answer leaves to judge chance by, where a column names the units or looks as if it did."""
+    answers = desk.asked_units()
+    if answers:
+        st.html(paper.question(words.ONE_UNIT))
+        st.html(paper.bullets(words.unit_answer(answer, study.unit) for answer in answers))
+
+
 def _design(findings: Findings) -> None:
     design = findings.design
     st.html(paper.heading(words.layout_sentence(findings)))
     stage.figure(grid.counts(design, stage.at_hand()), "grid", "", grid.counts_alt(design))
-    st.html(paper.text(words.balance(findings)))
+    st.html(paper.text(" ".join(sentence for sentence in (words.balance(findings), words.singles(design)) if sentence)))
     for factor in findings.study.factors:
         st.html(paper.levels(factor, [(str(m.level), int(m.n)) for m in records.lines(findings.marginal_means[factor])]))
 

@@ -6,6 +6,9 @@ import pytest
 
 import analysis
 from analysis.study import Study
+from app import words
+from tests.analysis.experiments import crossed
+from tests.analysis.test_units import readings
 from tests.app import opening
 
 
@@ -116,3 +119,24 @@ def test_a_slip_is_offered_for_a_look() -> None:
     page = opening.page(dashboard)
     assert "Row 2: 269, while the others of Full sun with No feed lie between" in page
     assert "72 rows in the file: 72 analysed, 0 left out." in page
+
+
+def test_the_question_of_the_unit_is_asked_where_a_column_looks_like_one() -> None:
+    table = analysis.read_table(readings(), name="leaves")
+    dashboard = opening.station("lay_out", Study(table, "y", "a", "b"))
+    page = opening.page(dashboard)
+    assert words.ONE_UNIT in page
+    assert "Each row: 48 values, 44 residual df, as analysed now." in page
+    assert "Each pot: 12 values, 8 residual df." in page
+    dashboard.selectbox(key="role_unit").select("pot").run()
+    assert "Each pot: 12 values, 8 residual df, as analysed now." in opening.page(dashboard)
+
+
+def test_the_question_of_the_unit_is_not_asked_without_one() -> None:
+    assert words.ONE_UNIT not in opening.page(opening.station("lay_out", opening.sample("coating_primer_cure.csv")))
+
+
+def test_single_cells_are_named_in_words() -> None:
+    found = opening.findings_of(crossed([[4, 1], [4, 4]]))
+    page = opening.page(opening.station("lay_out", found.study))
+    assert "A single observation, which says nothing about spread, in a0 with b1." in page
