@@ -1,11 +1,13 @@
 """What all stations share: the open findings or the sentence that stands in their place, figures with caption and description."""
 
+from collections.abc import Callable
+
 import plotly.graph_objects as go
 import streamlit as st
 
 from analysis.findings import Findings
 from analysis.refusals import Refusal
-from app import desk, look, paper, words
+from app import asking, desk, look, paper, words
 
 PLAIN = {"displayModeBar": False}
 WITH_CAMERA = {"displayModeBar": True, "displaylogo": False, "modeBarButtons": [["toImage"]]}
@@ -36,6 +38,18 @@ def complaint(about: str = desk.CHOICE) -> None:
     sentence = desk.complaint(about)
     if sentence:
         st.html(paper.notice(sentence))
+
+
+def pointed(key: str, take: Callable[[asking.Cell], None]) -> Callable[[], None]:
+    """Return what follows a click on a figure: the place of the mark that was pointed at is handed over."""
+
+    def follow() -> None:
+        points = st.session_state[key]["selection"]["points"]
+        if points:
+            row, column = points[-1]["customdata"]
+            take((int(row), int(column)))
+
+    return follow
 
 
 def figure(drawn: go.Figure, key: str, caption: str, alt: str, camera: bool = False) -> None:

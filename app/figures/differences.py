@@ -6,7 +6,7 @@ import plotly.graph_objects as go
 
 from analysis.findings import Findings
 from analysis.rounding import measured, p_value, percent
-from app import records, words
+from app import original, records, tabled, words
 from app.figures import lettering
 from app.look import Look
 
@@ -15,33 +15,47 @@ FEW_LINES = 8
 ROOMY, TIGHT = 1.9, 1.55  # height of a line, of the type size, for few lines and for more
 
 
-def shown(findings: Findings, family: str) -> pd.DataFrame:
-    """Return the comparisons that are drawn, in the order of the family: all, or those that lie farthest from zero for their error."""
-    frame = records.family(findings, family)
+def shown(findings: Findings, family: str, asked: pd.DataFrame | None = None) -> pd.DataFrame:
+    """Return the comparisons that are drawn, in the order of the family: all, or those that lie farthest from zero for their error.
+
+    asked holds the lines asked about where that is not the whole family.
+    """
+    frame = records.family(findings, family) if asked is None else asked
     frame = frame[frame["difference"].notna()]
     if len(frame) <= MOST_LINES:
         return frame
     return frame.loc[frame["t"].abs().nlargest(MOST_LINES).index.sort_values()]
 
 
-def differences(findings: Findings, look: Look, family: str) -> go.Figure:
-    """Draw each difference with its adjusted interval; filled marks exclude zero, hollow ones do not."""
-    frame = shown(findings, family)
-    names, heights = _lines(frame)
+def differences(findings: Findings, look: Look, family: str, asked: pd.DataFrame | None = None) -> go.Figure:
+    """Draw each difference with its adjusted interval; filled marks exclude zero, hollow ones do not.
+
+    Where the scale tells ratios they are drawn on a logarithmic axis, against one.
+    """
+    frame = shown(findings, family, asked)
+    names, heights = _lines(frame, findings.observed.scale.tells_ratios)
     figure = go.Figure(layout=_ground(findings, look, frame, names, heights))
-    figure.add_vline(x=0, line={"color": look.ink, "width": 1})
+    figure.add_vline(x=1 if findings.observed.scale.tells_ratios else 0, line={"color": look.ink, "width": 1})
     _band_of_what_matters(figure, findings, look)
     figure.add_trace(_marks(findings, look, frame, [height for name, height in zip(names, heights, strict=True) if not is_heading(name)]))
     return figure
 
 
-def _lines(frame: pd.DataFrame) -> tuple[list[str], list[float]]:
+def ends(findings: Findings, frame: pd.DataFrame) -> pd.DataFrame:
+    """Return middle, lower and upper end of each bar: differences, or ratios where the scale tells them."""
+    if findings.observed.scale.tells_ratios:
+        told = pd.DataFrame(list(frame["told"]), index=frame.index, columns=["estimate", "lower_adjusted", "upper_adjusted"])
+        return told.set_axis(["middle", "lower", "upper"], axis=1).astype(float)
+    return frame[["difference", "lower_adjusted", "upper_adjusted"]].set_axis(["middle", "lower", "upper"], axis=1).astype(float)
+
+
+def _lines(frame: pd.DataFrame, ratio: bool) -> tuple[list[str], list[float]]:
     """Return the names down the side and their heights, slices of the other factor under a heading each."""
     names: list[str] = []
     for within, part in frame.groupby("within", sort=False, dropna=False):
         if isinstance(within, str):
             names.append(f"<b>{lettering.wrapped(within, 30, 1)}</b>")
-        names += [_pair(c.left, c.right) for c in records.lines(part)]
+        names += [_pair(c.left, c.right, ratio) for c in records.lines(part)]
     return names, [-float(place) for place in range(len(names))]
 
 
@@ -50,18 +64,22 @@ def is_heading(name: str) -> bool:
     return name.startswith("<b>")
 
 
-def _pair(left: object, right: object) -> str:
-    return f"{lettering.wrapped(words.cell_name(left), 26, 1)} − {lettering.wrapped(words.cell_name(right), 26, 1)}"
+def _pair(left: object, right: object, ratio: bool) -> str:
+    return f"{lettering.wrapped(words.cell_name(left), 26, 1)} {'÷' if ratio else '−'} {lettering.wrapped(words.cell_name(right), 26, 1)}"
 
 
 def _ground(findings: Findings, look: Look, frame: pd.DataFrame, names: list[str], heights: list[float]) -> go.Layout:
-    low, high = min(0.0, frame["lower_adjusted"].min()), max(0.0, frame["upper_adjusted"].max())
+    bars, ratio = ends(findings, frame), findings.observed.scale.tells_ratios
+    places = np.log10(bars) if ratio else bars
+    low, high = min(0.0, places["lower"].min()), max(0.0, places["upper"].max())
     air = 0.04 * (high - low) or 1.0
+    what = "ratio of" if ratio else "difference in"
+    label = original.label(findings)
     return look.layout(
         xaxis={
             "range": [low - air, high + air],
-            "title": {"text": f"difference in {lettering.plain(words.response_label(findings))}"},
-            "nticks": 9,
+            "title": {"text": f"{what} {lettering.plain(label)}"},
+            **({"type": "log", "tickvals": _round_ratios(low - air, high + air)} if ratio else {"nticks": 9}),
         },
         yaxis={
             "tickvals": heights,
@@ -75,6 +93,13 @@ def _ground(findings: Findings, look: Look, frame: pd.DataFrame, names: list[str
     )
 
 
+def _round_ratios(low: float, high: float) -> list[float]:
+    """Return round ratios between two powers of ten, the fewer the farther they lie apart."""
+    firsts = (1, 1.2, 1.5, 2, 2.5, 3, 4, 5, 6, 7, 8, 9) if high - low < 1 else (1, 2, 5) if high - low < 3 else (1,)
+    values = [first * 10.0**power for power in range(int(np.floor(low)), int(np.ceil(high)) + 1) for first in firsts]
+    return [value for value in values if low <= np.log10(value) <= high]
+
+
 def _band_of_what_matters(figure: go.Figure, findings: Findings, look: Look) -> None:
     matters = findings.choices.matters
     if matters is not None:
@@ -83,18 +108,18 @@ def _band_of_what_matters(figure: go.Figure, findings: Findings, look: Look) -> 
 
 def _marks(findings: Findings, look: Look, frame: pd.DataFrame, heights: list[float]) -> go.Scatter:
     decided = (frame["lower_adjusted"] > 0) | (frame["upper_adjusted"] < 0)
-    difference = frame["difference"].to_numpy(float)
+    bars = ends(findings, frame)
     told = [
         [
-            _pair(c.left, c.right),
-            words.with_interval(c.difference, c.lower_adjusted, c.upper_adjusted, c.se),
+            _pair(c.left, c.right, findings.observed.scale.tells_ratios),
+            tabled.size(c),
             p_value(c.p_adjusted),
             words.VERDICTS[c.verdict],
         ]
         for c in records.lines(frame)
     ]
     return go.Scatter(
-        x=difference,
+        x=bars["middle"].to_numpy(),
         y=heights,
         mode="markers",
         marker={
@@ -104,8 +129,8 @@ def _marks(findings: Findings, look: Look, frame: pd.DataFrame, heights: list[fl
             "line": {"width": look.line * 0.75, "color": np.where(decided, look.accent, look.quiet).tolist()},
         },
         error_x={
-            "array": frame["upper_adjusted"].to_numpy(float) - difference,
-            "arrayminus": difference - frame["lower_adjusted"].to_numpy(float),
+            "array": (bars["upper"] - bars["middle"]).to_numpy(),
+            "arrayminus": (bars["middle"] - bars["lower"]).to_numpy(),
             "color": look.quiet,
             "thickness": look.line * 0.75,
             "width": 0,
@@ -115,25 +140,28 @@ def _marks(findings: Findings, look: Look, frame: pd.DataFrame, heights: list[fl
     )
 
 
-def differences_caption(findings: Findings, family: str) -> str:
+def differences_caption(findings: Findings, family: str, asked: pd.DataFrame | None = None) -> str:
     """Say what marks and bars are, how large the family is and how it was adjusted."""
-    known, drawn = int(records.family(findings, family)["difference"].notna().sum()), len(shown(findings, family))
+    frame = records.family(findings, family) if asked is None else asked
+    known, drawn = int(frame["difference"].notna().sum()), len(shown(findings, family, asked))
     cut = f" The {drawn} that lie farthest from zero for their error are drawn; the table holds all {known}." if drawn < known else ""
     matters = findings.choices.matters
     band = "" if matters is None else f" The band marks differences below {measured(matters, matters)}, which do not matter."
-    return (
-        f"Bars: {percent(findings.study.confidence)} intervals, adjusted within the family ({words.adjusted_by(findings)}; "
-        f"{words.family_size(findings, family)}). A filled mark’s interval excludes zero.{band}{cut}"
-    )
+    alone = asked is not None and set(asked["family_size"]) == {1}
+    size = words.family_size(findings, family) if asked is None else words.sizes_told(asked)
+    how = "not adjusted" if alone else f"adjusted within the family ({words.adjusted_by(findings)}; {size})"
+    nothing = "one" if findings.observed.scale.tells_ratios else "zero"
+    return f"Bars: {percent(findings.study.confidence)} intervals, {how}. A filled mark’s interval excludes {nothing}.{band}{cut}"
 
 
-def differences_alt(findings: Findings, family: str) -> str:
+def differences_alt(findings: Findings, family: str, asked: pd.DataFrame | None = None) -> str:
     """Read the differences out for someone who does not see the figure."""
-    frame = shown(findings, family)
+    frame, ratio = shown(findings, family, asked), findings.observed.scale.tells_ratios
     told = "; ".join(
-        f"{words.cell_name(c.left)} minus {words.cell_name(c.right)}{f' within {c.within}' if isinstance(c.within, str) else ''}: "
-        f"{words.with_interval(c.difference, c.lower_adjusted, c.upper_adjusted, c.se)}"
+        f"{words.cell_name(c.left)} {'over' if ratio else 'minus'} {words.cell_name(c.right)}"
+        f"{f' within {c.within}' if isinstance(c.within, str) else ''}: {tabled.size(c)}"
         for c in records.lines(frame.head(24))
     )
     more = f"; and {len(frame) - 24} more" if len(frame) > 24 else ""
-    return f"Differences in {words.response_label(findings)} with adjusted intervals, against zero. {told}{more}."
+    what, nothing = ("Ratios of", "one") if ratio else ("Differences in", "zero")
+    return f"{what} {original.label(findings)} with adjusted intervals, against {nothing}. {told}{more}."

@@ -33,9 +33,13 @@ class Field:
 def grid(findings: Findings, look: Look, height: int = 174) -> go.Figure:
     """Draw the cells with mean, n and standard deviation, shaded by the mean."""
     rows, columns = findings.design["row_levels"], findings.design["column_levels"]
+    return _drawn(mean_fields(findings, look), rows, columns, findings.design, look, height)
+
+
+def mean_fields(findings: Findings, look: Look) -> list[Field]:
+    """Return the field of each cell, shaded by its mean, row by row."""
     low, high = findings.cells["mean"].min(), findings.cells["mean"].max()
-    fields = [_mean_field(findings, cell, k, _share(cell.mean, low, high), look) for k, cell in enumerate(records.lines(findings.cells))]
-    return _drawn(fields, rows, columns, findings.design, look, height)
+    return [_mean_field(findings, cell, k, _share(cell.mean, low, high), look) for k, cell in enumerate(records.lines(findings.cells))]
 
 
 def counts(design: Mapping[str, Any], look: Look, height: int = 300) -> go.Figure:
@@ -44,6 +48,11 @@ def counts(design: Mapping[str, Any], look: Look, height: int = 300) -> go.Figur
     rows, columns = design["row_levels"], design["column_levels"]
     fields = [_count_field(i, j, int(n[i, j]), words.count_word(int(n[i, j]), n), look) for i, j in np.ndindex(n.shape)]
     return _drawn(fields, rows, columns, design, look, height)
+
+
+def height_of_field(rows: int, look: Look, height: int) -> float:
+    """Return the height in px of one field of so many rows."""
+    return min(max(height // rows, LOWEST), TALLEST) * look.text / 14
 
 
 def _share(mean: float, low: float, high: float) -> float:
@@ -69,12 +78,12 @@ def _count_field(row: int, column: int, n: int, word: str, look: Look) -> Field:
 def _drawn(
     fields: Sequence[Field], rows: Sequence[str], columns: Sequence[str], design: Mapping[str, Any], look: Look, height: int
 ) -> go.Figure:
-    tall = min(max(height // len(rows), LOWEST), TALLEST) * look.text / 14
+    tall = height_of_field(len(rows), look, height)
     names = [lettering.wrapped(level, 14, max(1, int(tall // (look.text * 1.3)))) for level in rows]
     heads = [lettering.wrapped(level, max(5, int(58 / len(columns))), 2) for level in columns]
     figure = go.Figure(layout=_ground(names, heads, design, look, tall))
     figure.update_layout(shapes=[_box(field, look) for field in fields])
-    figure.add_trace(_texts(fields, len(columns), look, tall))
+    figure.add_trace(texts(fields, len(columns), look, tall))
     return figure
 
 
@@ -106,7 +115,8 @@ def _box(field: Field, look: Look) -> dict[str, Any]:
     return {"type": "rect", **sides, "fillcolor": field.colour, "line": line, "layer": "below"}
 
 
-def _texts(fields: Sequence[Field], columns: int, look: Look, tall: float) -> go.Scatter:
+def texts(fields: Sequence[Field], columns: int, look: Look, tall: float) -> go.Scatter:
+    """Return the lettering of the fields; hovering tells the whole of each."""
     shown = [f.lines if tall >= ONE_LINE and columns <= 7 else f.lines[:1] for f in fields]
     size = look.text if columns <= 8 else look.small * 8 / columns + 2
     return go.Scatter(
