@@ -1,4 +1,4 @@
-"""A second way to every sum of squares: least squares on an explicit design matrix, row by row, to confirm the tables."""
+"""A second way to every sum of squares: least squares on an explicit design matrix, to confirm the tables."""
 
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
@@ -6,22 +6,28 @@ from functools import cached_property
 
 import numpy as np
 import pandas as pd
+from numpy.typing import NDArray
 
 from analysis.anova import INTERACTION, RESIDUAL, Names
-from analysis.cells import Matrix
+from analysis.cells import Matrix, Vector
 from analysis.coding import sum_to_zero
 from analysis.observations import Observations
 from analysis.refusals import TwoRoutesDisagree
 
 MOST_ENTRIES = 1_000_000  # entries of the design matrix beyond which a study is not of ordinary size
+MOST_ROWS = 200_000
 RELATIVE = 1e-8
-FLOOR = 1e-12  # of the total: what rounding of the row-by-row route can make of a sum of squares near zero
+FLOOR = 1e-12  # of the total: what rounding on this route can make of a sum of squares near zero
 RANK = 1e-9
 
 
 @dataclass(frozen=True, eq=False)
 class Route:
-    """Residual sums of squares and ranks of every model between the mean and the one analysed: QR, then singular values."""
+    """Residual sums of squares and ranks of every model between the mean and the one analysed, by singular values.
+
+    Observations with the same row of the design matrix are replaced by their mean, weighted by the root of their number; what
+    they differ by is added to every residual.
+    """
 
     observed: Observations
     interaction: bool
@@ -29,12 +35,12 @@ class Route:
 
     @cached_property
     def columns(self) -> Mapping[str, Matrix]:
-        """Sum-to-zero columns of each term, one row an observation."""
-        observed = self.observed
-        row, column = (sum_to_zero(factor.codes, factor.size) for factor in (observed.row, observed.column))
-        terms = {self.names.row: row, self.names.column: column}
-        if observed.block is not None:
-            terms = {str(self.names.block): sum_to_zero(observed.block.codes, observed.block.size)} | terms
+        """Sum-to-zero columns of each term, one row a distinct combination of levels."""
+        factors = self.observed.factors[2:] + self.observed.factors[:2]  # the block first, as Type I takes it
+        coded = [sum_to_zero(factor.codes[self._groups[0]], factor.size) for factor in factors]
+        row, column = coded[-2:]
+        names = [name for name in (self.names.block, self.names.row, self.names.column) if name is not None]
+        terms = dict(zip(names, coded, strict=True))
         if self.interaction:
             terms[INTERACTION] = (row[:, :, None] * column[:, None, :]).reshape(len(row), -1)
         return terms
@@ -50,20 +56,30 @@ class Route:
         return self._known[frozenset(terms)]
 
     @cached_property
-    def _triangle(self) -> Matrix:
-        """The triangular factor of all columns with the response behind them: it holds every model's residual, in few rows."""
+    def _groups(self) -> tuple[NDArray[np.intp], NDArray[np.intp], NDArray[np.intp]]:
+        """First observation of each distinct combination of levels, the combination of each observation, and their numbers."""
+        key = np.zeros(self.observed.size, dtype=np.int64)
+        for factor in self.observed.factors:
+            key = key * factor.size + factor.codes
+        _, first, group, n = np.unique(key, return_index=True, return_inverse=True, return_counts=True)
+        return first, group, n
+
+    @cached_property
+    def _means(self) -> tuple[Vector, float]:
+        """Mean of each combination, and the sum of squares inside them."""
+        _, group, n = self._groups
         y = self.observed.offsets - self.observed.offsets.mean()
-        return np.asarray(np.linalg.qr(np.column_stack([np.ones(y.size), *self.columns.values(), y]), mode="r"))
+        means = np.bincount(group, weights=y) / n
+        apart = y - means[group]
+        return means, float(apart @ apart)
 
     def _solved(self, terms: Sequence[str]) -> tuple[float, int]:
-        places, start = [0], 1
-        for term, columns in self.columns.items():
-            places += range(start, start + columns.shape[1]) if term in terms else ()
-            start += columns.shape[1]
-        x, y = self._triangle[:, places], self._triangle[:, -1]
-        effects, _, rank, _ = np.linalg.lstsq(x, y, rcond=RANK)
-        apart = y - x @ effects
-        return float(apart @ apart), int(rank)
+        means, inside = self._means
+        root = np.sqrt(self._groups[2])
+        x = root[:, None] * np.column_stack([np.ones(means.size), *(self.columns[term] for term in terms)])
+        effects, _, rank, _ = np.linalg.lstsq(x, root * means, rcond=RANK)
+        apart = root * means - x @ effects
+        return inside + float(apart @ apart), int(rank)
 
     def added(self, term: str, to: Sequence[str]) -> tuple[int, float]:
         """Return the degrees of freedom and the sum of squares that a term adds to others."""
@@ -86,11 +102,12 @@ class Route:
 def confirm(observed: Observations, interaction: bool, names: Names, tables: Mapping[str, pd.DataFrame]) -> None:
     """Raise TwoRoutesDisagree unless a second route gives the tables' degrees of freedom and sums of squares.
 
-    Studies whose design matrix is too large for this are passed over. Source: common practice; least squares by orthogonal
-    factors and singular values, Golub and Van Loan, Matrix Computations, sections 5.3 and 5.5.
+    Studies that are too large for this are passed over. Source: common practice; least squares by singular values, Golub and
+    Van Loan, Matrix Computations, section 5.5.
     """
     a, b = observed.shape
-    if observed.size * (a * b + (0 if observed.block is None else observed.block.size)) > MOST_ENTRIES:
+    blocks = 1 if observed.block is None else observed.block.size
+    if observed.size > MOST_ROWS or min(observed.size, a * b * blocks) * (a * b + blocks) > MOST_ENTRIES:
         return
     route = Route(observed, interaction, names)
     total, _ = route.residual([])
