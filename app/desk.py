@@ -19,6 +19,7 @@ from app import samples
 
 HISTORY = 200  # studies kept for undo
 TABLE, CHOICE = "table", "choice"
+PASTED = "pasted cells"
 STATE = "desk"  # the one entry of the session that matters; widgets are views of it
 
 
@@ -173,6 +174,11 @@ def bind_upload(key: str) -> dict[str, Any]:
     return {"key": key, "on_change": lambda: _take_upload(key)}
 
 
+def bind_paste(key: str) -> dict[str, Any]:
+    """Tie a text area to the desk: cells pasted into it are read like a file."""
+    return {"key": key, "on_change": lambda: _take_pasted(st.session_state[key])}
+
+
 def bind_sample(key: str) -> dict[str, Any]:
     """Tie the choice of samples to the desk: choosing one opens it."""
     now = study()
@@ -185,6 +191,11 @@ def _take_upload(key: str) -> None:
     file = st.session_state[key]
     if file is not None:
         bring(file.getvalue(), file.name)
+
+
+def _take_pasted(text: str) -> None:
+    if text.strip():
+        bring(text.encode(), PASTED)
 
 
 def _take_sample(file: str | None) -> None:

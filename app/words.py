@@ -31,6 +31,7 @@ NOT_GIVEN = "not given"
 MATTERS_NOT_APPLIED = "The difference that matters is in the units of the response and is not applied on another scale."
 ADJUST, FAMILY, LETTERS = "Adjusted by", "What is compared", "Letters for a figure or table"
 DROP, SAMPLE = "Drop a file here or browse for one", "Or look around with an invented experiment"
+PASTE, PASTE_EXAMPLE = "Or paste cells from a spreadsheet, headings included", "light\tfeed\tyield (g)\nFull sun\tFeed A\t30.7"
 CHOOSE = "choose a column"
 ROLES: Mapping[str, str] = MappingProxyType(
     {
@@ -235,6 +236,11 @@ def counted(count: int, thing: str) -> str:
 def percent_told(share: float) -> str:
     """Return a share as percent, with decimals only where it needs them."""
     return f"{share * 100:g} %"
+
+
+def file_limit(megabytes: int) -> str:
+    """Return how large a file may be that is dropped on the screen."""
+    return f"Up to {megabytes} MB. A larger one is read from a shell: python -m analysis."
 
 
 def open_table(study: Study | None) -> str:

@@ -1,4 +1,4 @@
-"""Bring: drop a table or open a sample, and see what was read and what was decided."""
+"""Bring: drop a table, paste cells or open a sample, and see what was read and what was decided."""
 
 import streamlit as st
 
@@ -16,7 +16,9 @@ def show() -> None:
     left, right = st.columns([5, 7], gap="large")
     with left:
         st.file_uploader(words.DROP, type=FILES, **desk.bind_upload("bring_file"))
+        st.html(paper.caption(words.file_limit(st.get_option("server.maxUploadSize"))))
         stage.complaint(desk.TABLE)
+        st.text_area(words.PASTE, height=90, placeholder=words.PASTE_EXAMPLE, **desk.bind_paste("bring_paste"))
         st.radio(
             words.SAMPLE, [sample.file for sample in samples.SAMPLES], index=None, format_func=samples.question_of,
             captions=[words.literal(sample.sentence) for sample in samples.SAMPLES], **desk.bind_sample("bring_sample"),
@@ -30,7 +32,7 @@ def show() -> None:
 
 
 def _what_was_read(table: Table) -> None:
-    st.html(paper.question(f"{table.name} as it was read"))
+    st.html(paper.question(f"{table.name}, as read"))
     st.html(paper.table(sheets.preview(table.preview(FIRST_ROWS))))
     st.html(paper.caption(words.rows_shown(min(FIRST_ROWS, table.rows), table.rows, len(table.columns))))
     st.html(paper.question("What was decided on the way"))

@@ -2,6 +2,7 @@
 
 import html
 import re
+import tomllib
 
 import pandas as pd
 import pytest
@@ -15,7 +16,7 @@ from tests.app import opening
 
 # The keys that stay put for users' scripts and styles; a new station fails here until it is listed.
 KEYS = {
-    "bring": ("bring_file", "bring_sample"),
+    "bring": ("bring_file", "bring_paste", "bring_sample"),
     "lay_out": ("role_response", "role_row", "role_column", "role_block", "role_unit", "grid"),
     "answer": ("answers", "grid", "interaction", "cell_means", "choice_model", "choice_scale", "choice_confidence", "choice_matters"),
     "compare": ("compare_table", "choice_adjust", "grid"),
@@ -159,6 +160,31 @@ def test_a_sample_opens_by_its_name() -> None:
     dashboard = opening.station("bring")
     dashboard.radio(key="bring_sample").set_value("coating_primer_cure.csv").run()
     assert opening.study_of(dashboard).block == "spray day"
+
+
+def test_pasted_cells_are_read_like_a_file() -> None:
+    dashboard = opening.station("bring")
+    text = (opening.SAMPLES / "basil_light_feed.csv").read_text(encoding="utf-8").replace(",", "\t")
+    dashboard.text_area(key="bring_paste").set_value(text).run()
+    study = opening.study_of(dashboard)
+    assert (study.table.name, study.response, study.table.rows) == ("pasted cells", "yield (g)", 72)
+    assert "72 rows in the file: 72 analysed, 0 left out." in opening.page(dashboard)
+    dashboard.button(key="undo").click().run()
+    assert opening.study_of(dashboard) is None
+
+
+def test_pasted_words_get_one_sentence() -> None:
+    dashboard = opening.station("bring")
+    dashboard.text_area(key="bring_paste").set_value("a greeting").run()
+    assert len(re.findall(r"class='notice'", opening.page(dashboard))) == 1
+    assert not dashboard.exception
+
+
+def test_the_limit_of_a_file_is_that_of_the_server() -> None:
+    limit = words.file_limit(tomllib.loads((opening.ROOT / ".streamlit" / "config.toml").read_text())["server"]["maxUploadSize"])
+    assert limit.startswith("Up to 200 MB.")
+    assert limit in opening.page(opening.station("bring"))
+    assert "up to 200 MB" in (opening.ROOT / "README.md").read_text(encoding="utf-8")
 
 
 @pytest.mark.parametrize(
