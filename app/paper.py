@@ -42,10 +42,12 @@ def question(text: str) -> str:
     return f"<h2 class='question'>{safe(text)}</h2>"
 
 
-def answer(sentence: str, statistic: str, decided: bool) -> str:
-    """Return one answer: the sentence, and beneath it the statistic."""
+def answer(sentence: str, statistic: str, decided: bool, known: Sequence[str] = ()) -> str:
+    """Return one answer: the sentence, beneath it the statistic, and folded away how it is known."""
     kind = "decided" if decided else "open"
-    return f"<section class='answer {kind}'><p class='sentence'>{safe(sentence)}</p><p class='statistic'>{safe(statistic)}</p></section>"
+    fold = f"<details><summary>How we know</summary>{bullets(known)}</details>" if known else ""
+    told = f"<p class='sentence'>{safe(sentence)}</p><p class='statistic'>{safe(statistic)}</p>{fold}"
+    return f"<section class='answer {kind}'>{told}</section>"
 
 
 def notice(sentence: str) -> str:
@@ -78,6 +80,16 @@ def story(boards: Iterable[tuple[str, str]]) -> str:
     """Return the claims of a story in order, each with its line of evidence."""
     told = "".join(f"<li><b>{safe(claim)}</b><span>{safe(evidence)}</span></li>" for claim, evidence in boards)
     return f"<ol class='story'>{told}</ol>"
+
+
+def claim(sentence: str) -> str:
+    """Return the claim of a board that fills the window."""
+    return f"<h1 class='claim'>{safe(sentence)}</h1>"
+
+
+def evidence(line: str, place: str) -> str:
+    """Return the line of evidence under a board, with the number of the board beside it."""
+    return f"<div class='evidence'><p>{safe(line)}</p><p class='place'>{safe(place)}</p></div>"
 
 
 def status(sentence: str) -> str:

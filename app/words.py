@@ -27,6 +27,7 @@ MATTERS_HELP = (
     "The smallest difference that matters, in units of the response. With it, a small difference can be told from an open question."
 )
 AXIS = "Along the axis"
+TYPES = "Cells are unequal, so each type of sums of squares answers a question of its own"
 NOT_GIVEN = "not given"
 MATTERS_NOT_APPLIED = "The difference that matters is in the units of the response and is not applied on another scale."
 ADJUST, FAMILY, LETTERS = "Adjusted by", "What is compared", "Letters for a figure or table"
@@ -266,6 +267,11 @@ def too_many_levels(column: str, levels: int, most: int) -> str:
 def row_aside(row: int, why: str) -> str:
     """Return a row that was set aside, with its reason."""
     return f"row {row}: {why}"
+
+
+def decisions_head(count: int) -> str:
+    """Return what is behind the log."""
+    return f"{counted(count, 'decision')} so far, in order"
 
 
 def worth_a_look(count: int) -> str:

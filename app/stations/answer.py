@@ -6,7 +6,7 @@ from analysis import verdicts
 from analysis.findings import Findings
 from analysis.scales import NAMED
 from analysis.study import MODELS, Study
-from app import desk, paper, sheets, stage, words
+from app import desk, how, paper, sheets, stage, words
 from app.figures import grid, interaction
 
 AXIS = "choice_axis"
@@ -23,7 +23,7 @@ def show() -> None:
         st.html(paper.heading(f"{findings.study.response}", f"{findings.study.row_factor} × {findings.study.column_factor}"))
         with st.container(key="answers", gap=None):
             for told in findings.answers:
-                st.html(paper.answer(told.sentence, told.statistic, told.verdict not in OPEN))
+                st.html(paper.answer(told.sentence, told.statistic, told.verdict not in OPEN, how.known(findings, told)))
         stage.figure(grid.grid(findings, stage.at_hand()), "grid", grid.grid_caption(findings), grid.grid_alt(findings))
     with right, st.container(gap="xsmall"):
         _switches(findings.study)
@@ -64,6 +64,11 @@ def _tables(findings: Findings) -> None:
     with variance:
         st.html(paper.table(sheets.anova(findings, findings.used_table)))
         st.html(paper.caption(words.table_used(findings)))
+        types = how.types(findings)
+        if types is not None:
+            st.html(paper.question(words.TYPES))
+            st.html(paper.table(types))
+            st.html(paper.bullets(how.questions(findings)))
     with other:
         if findings.tables_additive is None:
             st.html(paper.text(words.NO_ADDITIVE))
