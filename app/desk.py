@@ -7,7 +7,7 @@ from typing import Any
 
 import streamlit as st
 
-from analysis import analyse, read_table
+from analysis import analyse, log, read_table
 from analysis.findings import Findings
 from analysis.implausible import Suspicion, suspicions
 from analysis.refusals import Refusal
@@ -249,6 +249,11 @@ def reasons() -> Mapping[str, str]:
     """Return why each column of the open table got the role that was suggested for it, by column."""
     now = study()
     return {} if now is None else _roles(now.table.fingerprint, now.table).reasons
+
+
+def decisions() -> tuple[log.Entry, ...]:
+    """Return every decision that led to the open study, in order; what was undone is not among them."""
+    return log.log([*_state().past, study()], reasons())
 
 
 @st.cache_resource(max_entries=16, show_spinner=False)

@@ -49,7 +49,7 @@ def _level(column: str, level: Level, key: str, at_start: bool, at_end: bool, on
     """Show one level with everything that can be done to it; a level left out can be taken back in."""
     with st.container(horizontal=True, vertical_alignment="center", gap="small", key=f"{key}_level"):
         if not level.analysed:
-            st.html(paper.struck(level.name, words.counted(level.rows, "row")))
+            st.html(paper.struck(level.name, words.counted(level.rows, "row")), width="content")
             st.button(words.TAKE_BACK, key=f"{key}_back", type="tertiary", **_edit(level_edits.taken_back, column, level.name))
             return
         st.text_input(

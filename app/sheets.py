@@ -7,6 +7,7 @@ import numpy as np
 import pandas as pd
 
 from analysis.findings import Findings
+from analysis.log import Entry
 from analysis.rounding import NOT_KNOWN, fixed, measured, p_number, percent, significant
 from app import checks_told, original, records, tabled, words
 from app.paper import Sheet
@@ -144,6 +145,12 @@ def rows(numbers: Sequence[int], columns: Sequence[str], cells: Sequence[Sequenc
     lines = [(str(number), *line, why.get(number, "")) for number, line in zip(numbers, cells, strict=True)]
     struck = frozenset(place for place, number in enumerate(numbers) if number in why)
     return Sheet("Rows of the data", ("row", *columns, "left out because"), lines, frozenset(range(len(columns) + 2)), struck=struck)
+
+
+def decisions(entries: Sequence[Entry]) -> Sheet:
+    """Return the decisions in their order, each with its reason."""
+    lines = [(str(place), entry.sentence, entry.reason) for place, entry in enumerate(entries, start=1)]
+    return Sheet("Decisions so far", ("step", "decision", "reason"), lines, frozenset({0, 1, 2}))
 
 
 def preview(frame: pd.DataFrame) -> Sheet:

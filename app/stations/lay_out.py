@@ -42,6 +42,9 @@ def show() -> None:
         for column, key in factors:
             level_list.changes(study, column, key)
         row_list.show(study, found.design["left_out"] if isinstance(found, Findings) else [])
+        entries = desk.decisions()
+        with st.expander(words.decisions_head(len(entries)), key="decisions"):
+            st.html(paper.table(sheets.decisions(entries)))
         if isinstance(found, Findings):
             _account(found)
 

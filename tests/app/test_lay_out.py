@@ -140,3 +140,18 @@ def test_single_cells_are_named_in_words() -> None:
     found = opening.findings_of(crossed([[4, 1], [4, 4]]))
     page = opening.page(opening.station("lay_out", found.study))
     assert "A single observation, which says nothing about spread, in a0 with b1." in page
+
+
+def test_the_log_tells_each_decision_and_forgets_what_was_undone() -> None:
+    dashboard = opening.station("lay_out", opening.sample())
+    dashboard.text_input(key="rows_named").set_value("3")
+    dashboard.text_input(key="rows_why").set_value("pot <fell> over")
+    dashboard.button(key="rows_aside").click().run()
+    dashboard.button(key="row_0_down").click().run()
+    page = opening.page(dashboard)
+    assert "<td>Row 3 set aside.</td><td>pot &lt;fell&gt; over</td>" in page
+    assert "<td>Analysed of “light”: “Half shade”, “Full sun”, “Deep shade”.</td><td>chosen</td>" in page
+    dashboard.button(key="undo").click().run()
+    page = opening.page(dashboard)
+    assert "Row 3 set aside." in page
+    assert "Analysed of “light”" not in page
