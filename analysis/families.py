@@ -3,6 +3,7 @@
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from functools import cached_property
+from typing import Any
 
 import numpy as np
 import pandas as pd
@@ -71,12 +72,14 @@ def size_of(slices: Sequence[Slice]) -> int:
 
 def family_frame(slices: Sequence[Slice], model: Model, choices: Choices) -> pd.DataFrame:
     """Return the comparisons of a family, each slice adjusted on its own."""
-    frames = [_slice_frame(part, model, choices) for part in slices]
-    frames = [frame for frame in frames if len(frame)]
-    return pd.concat(frames, ignore_index=True) if frames else pd.DataFrame(columns=list(COLUMNS))
+    parts = [_slice_columns(part, model, choices) for part in slices]
+    columns = {name: np.concatenate([part[name] for part in parts]) for name in COLUMNS}
+    # Levels stay objects: a column of text would be converted anew at every step.
+    return pd.DataFrame({name: pd.Series(values, dtype=values.dtype) for name, values in columns.items()})
 
 
-def _slice_frame(part: Slice, model: Model, choices: Choices) -> pd.DataFrame:
+def _slice_columns(part: Slice, model: Model, choices: Choices) -> dict[str, NDArray[Any]]:
+    """Return the columns of one slice's comparisons."""
     left, right = part.pairs()
     difference, unit_variance = part.estimates.differences(left, right)
     se = np.sqrt(unit_variance * model.residual_ms)
@@ -90,25 +93,23 @@ def _slice_frame(part: Slice, model: Model, choices: Choices) -> pd.DataFrame:
     reach, wide = model.quantile(choices.confidence) * se, adjusted.critical * se
     labels = np.empty(len(part.labels), dtype=object)
     labels[:] = part.labels
-    return pd.DataFrame(
-        {
-            "left": labels[left],
-            "right": labels[right],
-            "within": part.within,
-            "difference": difference,
-            "se": se,
-            "df": model.residual_df,
-            "t": t,
-            "p": p,
-            "p_adjusted": p_adjusted,
-            "lower": difference - reach,
-            "upper": difference + reach,
-            "lower_adjusted": difference - wide,
-            "upper_adjusted": difference + wide,
-            "verdict": verdicts(difference - wide, difference + wide, choices.matters),
-            "family_size": known.size,
-        }
-    )
+    return {
+        "left": labels[left],
+        "right": labels[right],
+        "within": np.full(t.size, part.within, dtype=object),
+        "difference": difference,
+        "se": se,
+        "df": np.full(t.size, model.residual_df),
+        "t": t,
+        "p": p,
+        "p_adjusted": p_adjusted,
+        "lower": difference - reach,
+        "upper": difference + reach,
+        "lower_adjusted": difference - wide,
+        "upper_adjusted": difference + wide,
+        "verdict": verdicts(difference - wide, difference + wide, choices.matters),
+        "family_size": np.full(t.size, known.size),
+    }
 
 
 def _adjusted(part: Slice, t: Vector, left: Indices, right: Indices, model: Model, choices: Choices) -> Adjusted:

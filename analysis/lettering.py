@@ -4,6 +4,7 @@ from collections.abc import Mapping
 
 import numpy as np
 import pandas as pd
+from numpy.typing import NDArray
 
 from analysis.families import Slice
 from analysis.letters import letters
@@ -23,16 +24,17 @@ def letters_of(
     for name, slices in families.items():
         frame = comparisons[name]
         if frame is not None:
-            found[name] = {label: text for part in slices for label, text in _slice_letters(part, frame, alpha).items()}
+            decided = frame["p_adjusted"].to_numpy(float) < alpha
+            ends = np.cumsum([part.pairs()[0].size for part in slices])  # slices stand one after another
+            parts = zip(slices, np.split(decided, ends[:-1]), strict=True)
+            found[name] = {label: text for part, mine in parts for label, text in _slice_letters(part, mine).items()}
     return found
 
 
-def _slice_letters(part: Slice, frame: pd.DataFrame, alpha: float) -> dict[str, str]:
-    mine = frame if part.within is None else frame[frame["within"] == part.within]
+def _slice_letters(part: Slice, decided: NDArray[np.bool_]) -> dict[str, str]:
     left, right = part.pairs()
     k = len(part.labels)
     different = np.zeros((k, k), dtype=bool)
-    decided = mine["p_adjusted"].to_numpy(float) < alpha
     different[left[decided], right[decided]] = different[right[decided], left[decided]] = True
     known = np.flatnonzero(part.estimates.estimable)
     order = np.argsort(-part.estimates.value[known], kind="stable")

@@ -112,13 +112,17 @@ def confirm(observed: Observations, interaction: bool, names: Names, tables: Map
     route = Route(observed, interaction, names)
     total, _ = route.residual([])
     for kind, table in tables.items():
-        for term, df, ss in table[["term", "df", "ss"]].itertuples(index=False):
-            if term in route.columns and df == df and not _agrees((df, ss), route.added(term, route.beside(term, kind)), total):
+        told = zip(table["term"].tolist(), table["df"].tolist(), table["ss"].tolist(), strict=True)
+        for term, df, ss in told:
+            if term == RESIDUAL:
+                left, rank = route.residual(list(route.columns))
+                other = (observed.size - rank, left)
+            elif term in route.columns and df == df:  # not the total, nor a hypothesis that is not defined
+                other = route.added(term, route.beside(term, kind))
+            else:
+                continue
+            if not _agrees((df, ss), other, total):
                 raise TwoRoutesDisagree(term)
-        df, ss = table.loc[table["term"] == RESIDUAL, ["df", "ss"]].iloc[0]
-        left, rank = route.residual(list(route.columns))
-        if not _agrees((df, ss), (observed.size - rank, left), total):
-            raise TwoRoutesDisagree(RESIDUAL)
 
 
 def _agrees(one: tuple[float, float], other: tuple[int, float], total: float) -> bool:
