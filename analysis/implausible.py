@@ -36,8 +36,9 @@ def suspicions(study: Study) -> tuple[Suspicion, ...]:
     """
     observed = lay_out(replace(study, unit=None, scale="none"))
     found = [*_negative(observed)]
+    fine = 2 * np.unique(observed.values).size >= observed.size
     for cell, places in _cells(observed):
-        found += [*_ten_times(observed, cell, places), *_identical(observed, cell, places)]
+        found += [*_ten_times(observed, cell, places), *(_identical(observed, cell, places) if fine else ())]
         if len(found) >= MOST:
             break
     return tuple(found[:MOST])
@@ -74,9 +75,9 @@ def _ten_times(observed: Observations, cell: str, places: NDArray[np.intp]) -> I
 
 
 def _identical(observed: Observations, cell: str, places: NDArray[np.intp]) -> Iterator[Suspicion]:
-    """Yield a cell whose replicates are all the same, where values are fine enough for that to be odd."""
+    """Yield a cell whose replicates are all the same, which is odd where values are fine."""
     values = observed.values[places]
-    if values[0] == values[-1] and 2 * np.unique(observed.values).size >= observed.size:
+    if values[0] == values[-1]:
         rows = _rows(observed, places)
         yield Suspicion(
             "identical", rows, f"All {places.size} values of {cell} are {shortest(values[0])} ({rows_told(rows)}). Was one value copied?"

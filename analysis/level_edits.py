@@ -47,6 +47,13 @@ def suggestions(study: Study, column: str) -> tuple[Suggestion, ...]:
     return tuple(Suggestion(levels[rarer], levels[into]) for rarer, into in found.items() if refused.get(rarer) != into)
 
 
+def settled_notes(study: Study, column: str) -> frozenset[str]:
+    """Return the notes that offered a merge which was taken or refused since."""
+    unsettled = [label for label in _levels(study, column).labels if label not in study.apart.get(column, {})]
+    offered = look_alikes.notes(column, study.table.column(column).as_levels().labels)
+    return frozenset(offered) - frozenset(look_alikes.notes(column, unsettled))
+
+
 def merged(study: Study, column: str, level: str, into: str) -> Changes:
     """Return the changes that make one level part of another."""
     return _named(study, column, level, into)

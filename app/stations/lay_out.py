@@ -2,6 +2,7 @@
 
 import streamlit as st
 
+from analysis import level_edits
 from analysis.findings import Findings
 from analysis.refusals import Refusal
 from analysis.study import NEEDED_ROLES, Study
@@ -83,6 +84,8 @@ def _account(findings: Findings) -> None:
     if design["left_out"]:
         with st.expander(f"The {words.counted(len(design['left_out']), 'row')} left out, with reasons"):
             st.html(paper.table(sheets.left_out(design["left_out"])))
-    if findings.notes:
+    settled = frozenset[str]().union(*(level_edits.settled_notes(findings.study, factor) for factor in findings.study.factors))
+    notes = [note for note in findings.notes if note not in settled]
+    if notes:
         st.html(paper.question("Worth knowing"))
-        st.html(paper.bullets(findings.notes))
+        st.html(paper.bullets(notes))
