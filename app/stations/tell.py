@@ -6,7 +6,7 @@ import streamlit as st
 
 from analysis.findings import Findings
 from analysis.refusals import NoBrowser
-from app import boards, paper, stage, take_away
+from app import boards, paper, stage, take_away, walk, words
 from app.exports import images
 from app.figures import interaction
 
@@ -19,9 +19,15 @@ def show() -> None:
     findings = stage.findings("Tell")
     if findings is None:
         return
+    if walk.is_on():
+        walk.show(boards.story(findings))
+        return
     left, right = st.columns([5, 8], gap="large")
     with left:
         st.html(paper.heading("Tell", "take it away"))
+        with st.container(border=True):
+            st.html(paper.text(words.WALK_HOLDS))
+            st.button(words.WALK, key="tell_start", icon=":material/slideshow:", on_click=walk.start, type="primary")
         _files(findings)
     with right:
         st.html(paper.question("What the slides say"))
