@@ -5,8 +5,8 @@ from functools import cached_property
 
 import numpy as np
 
-from analysis.cells import Cells, Strata
-from analysis.model import Model, row_column_parts
+from analysis.cells import Cells, Strata, cells_of, strata_of
+from analysis.model import Model, Surfaces, row_column_parts
 from analysis.observations import Factor, Observations
 from analysis.refusals import BlockIsFactor, ConstantResponse, FactorsGoTogether, OneLevel, TooFewObservations
 from analysis.rounding import shortest
@@ -67,6 +67,20 @@ class Design:
     def connected(self) -> bool:
         """Return whether every level can be compared with every other of its factor."""
         return len(self.parts) == 1
+
+
+def design_over(observed: Observations, wants_interaction: bool) -> Design:
+    """Return the layout of some observations with its models; nothing is fitted before it is asked for."""
+    strata = strata_of(observed)
+    surfaces = Surfaces(strata)
+    return Design(
+        observed=observed,
+        strata=strata,
+        cells=cells_of(strata),
+        full=Model(surfaces, interaction=True),
+        additive=Model(surfaces, interaction=False),
+        wants_interaction=wants_interaction,
+    )
 
 
 def refuse_unusable(design: Design) -> None:

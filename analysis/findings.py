@@ -13,12 +13,13 @@ import pandas as pd
 
 from analysis import anova, answers, checking, contrasts, design, families, lettering, means, plain, second_route, trends
 from analysis.answers import Answer
-from analysis.cells import Strata, cells_of, strata_of
 from analysis.design import Design
 from analysis.evidence import Evidence
 from analysis.families import Choices, Slice
+from analysis.holding import agreement, table
+from analysis.holding.table import Analysed
 from analysis.layout import lay_out
-from analysis.model import Model, Surfaces
+from analysis.model import Model
 from analysis.observations import Observations
 from analysis.refusals import UnknownLevel
 from analysis.study import Study
@@ -204,10 +205,20 @@ class Findings:
         """Not computed yet."""
         return None
 
+    @cached_property
+    def analysed(self) -> Analysed:
+        """What the other defensible analyses are held against."""
+        return Analysed(self.layout, self.names, self.used["table"], self.tables, self.checks, self.study.confidence)
+
+    @cached_property
+    def holds(self) -> pd.DataFrame:
+        """The defensible analyses, one row for each analysis and question; permutation included."""
+        return table.holds(self.analysed)
+
     @property
-    def holds(self) -> None:
-        """Not computed yet."""
-        return None
+    def holds_sentence(self) -> str:
+        """Whether the answers hold whichever analysis is taken, in one sentence."""
+        return agreement.told(self.holds)
 
     @cached_property
     def answers(self) -> tuple[Answer, ...]:
@@ -281,7 +292,7 @@ class Findings:
                 self.study.matters is not None and self.choices.matters is None
             ),
             **checking.reasons(self.layout),
-            "Doubts and the table of other defensible analyses are not computed yet, so doubts and holds are empty.": True,
+            "Doubts are not computed yet, so that list is empty.": True,
         }
         large = [f"The family “{name}” holds too many comparisons to be written out one by one." for name in self._too_large()]
         return [*(sentence for sentence, applies in reasons.items() if applies), *large]
@@ -308,23 +319,9 @@ def analyse(study: Study) -> Findings:
     Raises a Refusal where the table or the choices cannot be analysed. A factor with one level is analysed as it is: the
     one-way case.
     """
-    observed = lay_out(study)
-    strata = strata_of(observed)
-    found = Findings(study, _design(study, observed, strata))
+    found = Findings(study, design.design_over(lay_out(study), study.model == "full"))
     design.refuse_unusable(found.layout)
     return found
-
-
-def _design(study: Study, observed: Observations, strata: Strata) -> Design:
-    surfaces = Surfaces(strata)
-    return Design(
-        observed=observed,
-        strata=strata,
-        cells=cells_of(strata),
-        full=Model(surfaces, interaction=True),
-        additive=Model(surfaces, interaction=False),
-        wants_interaction=study.model == "full",
-    )
 
 
 def _control_index(study: Study, factor: str, levels: tuple[str, ...]) -> int:

@@ -1,0 +1,1 @@
+"""Whether another defensible analysis would have answered otherwise."""
