@@ -134,6 +134,11 @@ def bind_edit(key: str, value: Any, make: Callable[..., Mapping[str, Any]], *det
     return {"key": key, "on_change": lambda: edit(make, *details, st.session_state[key])}
 
 
+def held(key: str) -> Any:
+    """Return what a widget holds now, for what follows from using it."""
+    return st.session_state[key]
+
+
 def bind_typed(make: Callable[..., Mapping[str, Any]], *keys: str) -> dict[str, Any]:
     """Tie a button to the edit that it makes of what was typed; what was typed is gone once it was taken."""
     return {"on_click": lambda: _take_typed(make, keys)}

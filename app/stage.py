@@ -44,7 +44,7 @@ def pointed(key: str, take: Callable[[asking.Cell], None]) -> Callable[[], None]
     """Return what follows a click on a figure: the place of the mark that was pointed at is handed over."""
 
     def follow() -> None:
-        points = st.session_state[key]["selection"]["points"]
+        points = desk.held(key)["selection"]["points"]
         if points:
             row, column = points[-1]["customdata"]
             take((int(row), int(column)))
