@@ -19,12 +19,12 @@ READY = "h1.station"
 
 
 @contextmanager
-def dashboard() -> Iterator[str]:
-    """Run the dashboard on a free port of this machine and give its address."""
+def dashboard(script: str = "app/main.py") -> Iterator[str]:
+    """Run the dashboard, or another page, on a free port of this machine and give its address."""
     with socket.socket() as free:
         free.bind(("127.0.0.1", 0))
         port = free.getsockname()[1]
-    words = ["-m", "streamlit", "run", "app/main.py", f"--server.port={port}", "--server.headless=true", "--server.fileWatcherType=none"]
+    words = ["-m", "streamlit", "run", script, f"--server.port={port}", "--server.headless=true", "--server.fileWatcherType=none"]
     server = subprocess.Popen([sys.executable, *words], cwd=ROOT, stdout=subprocess.DEVNULL, stderr=subprocess.DEVNULL)
     try:
         address = f"http://127.0.0.1:{port}"
