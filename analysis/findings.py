@@ -14,6 +14,8 @@ import pandas as pd
 from analysis import anova, answers, checking, contrasts, design, families, lettering, means, plain, second_route, trends
 from analysis.answers import Answer
 from analysis.design import Design
+from analysis.doubting import order
+from analysis.doubting.signs import Signs
 from analysis.evidence import Evidence
 from analysis.families import Choices, Slice
 from analysis.holding import agreement, table
@@ -200,10 +202,11 @@ class Findings:
         """Checks of the model on its residuals."""
         return checking.checks(self.layout, self.study.confidence)
 
-    @property
-    def doubts(self) -> None:
-        """Not computed yet."""
-        return None
+    @cached_property
+    def doubts(self) -> pd.DataFrame:
+        """What would make a careful reader doubt the answers, most serious first."""
+        found = order.doubts(Signs(self.layout, self.observations, self.checks, self.holds))
+        return pd.DataFrame([vars(doubt) for doubt in found], columns=["kind", "level", "sentence", "rows"])
 
     @cached_property
     def analysed(self) -> Analysed:
@@ -292,7 +295,6 @@ class Findings:
                 self.study.matters is not None and self.choices.matters is None
             ),
             **checking.reasons(self.layout),
-            "Doubts are not computed yet, so that list is empty.": True,
         }
         large = [f"The family “{name}” holds too many comparisons to be written out one by one." for name in self._too_large()]
         return [*(sentence for sentence, applies in reasons.items() if applies), *large]
