@@ -26,6 +26,7 @@ from analysis.observations import Observations
 from analysis.refusals import UnknownLevel
 from analysis.study import Study
 
+ASKED_FOR = ("doubts", "holds")  # thousands of permutations stand behind them, so the object goes without
 VERSION = "0.1.0"
 LIBRARIES = ("numpy", "pandas", "scipy", "statsmodels")
 PARTS = (
@@ -295,6 +296,7 @@ class Findings:
                 self.study.matters is not None and self.choices.matters is None
             ),
             **checking.reasons(self.layout),
+            "Doubts and other defensible analyses are not written out here; from Python they are findings.doubts and findings.holds.": True,
         }
         large = [f"The family “{name}” holds too many comparisons to be written out one by one." for name in self._too_large()]
         return [*(sentence for sentence, applies in reasons.items() if applies), *large]
@@ -305,8 +307,8 @@ class Findings:
         return _versions()
 
     def to_dict(self) -> dict[str, Any]:
-        """Return the whole object in plain values: no NaN, None where something is undefined."""
-        return {name: plain.plain(getattr(self, name)) for name in PARTS}
+        """Return the whole object in plain values: no NaN, None where something is undefined or asked for by name only."""
+        return {name: None if name in ASKED_FOR else plain.plain(getattr(self, name)) for name in PARTS}
 
 
 @cache

@@ -100,8 +100,7 @@ def model_notes(findings: Findings) -> str:
 
 def caveats(findings: Findings) -> list[str]:
     """Tell the open doubts and the notes on the design."""
-    doubts: list[str] = [] if findings.doubts is None else list(findings.doubts["sentence"])
-    return [*doubts, *findings.design["notes"]]
+    return [*findings.doubts["sentence"], *findings.notes]
 
 
 def family_line(findings: Findings, families: Sequence[str]) -> str:

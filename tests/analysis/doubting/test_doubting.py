@@ -7,6 +7,7 @@ import pandas as pd
 import pytest
 
 import analysis
+from analysis.plain import plain
 from tests.analysis.experiments import analysed, crossed
 
 Random = np.random.Generator
@@ -84,8 +85,8 @@ def test_few_observations_are_no_assurance() -> None:
 
 
 @pytest.mark.parametrize("counts", [[[1, 1, 1], [1, 1, 1], [1, 1, 1]], [[3, 0, 3], [3, 3, 3]], [[2, 2], [2, 2]]])
-def test_the_object_lists_doubts_as_plain_values(counts: list[list[int]]) -> None:
-    told = analysed(crossed(counts)).to_dict()["doubts"]
+def test_doubts_become_plain_values(counts: list[list[int]]) -> None:
+    told = plain(analysed(crossed(counts)).doubts)
     assert all(set(doubt) == {"kind", "level", "sentence", "rows"} for doubt in told)
 
 

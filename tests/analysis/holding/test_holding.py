@@ -9,6 +9,7 @@ from analysis.anova import INTERACTION
 from analysis.holding import agreement, table, welch
 from analysis.holding.leave_one_out import p_without_each
 from analysis.holding.permutation import PERMUTATIONS, permuted
+from analysis.plain import plain
 from tests.analysis.experiments import analysed, crossed
 
 UNEQUAL = [[5, 3, 4], [4, 6, 5]]
@@ -100,7 +101,7 @@ def test_small_and_incomplete_layouts_have_a_table(counts: list[list[int]]) -> N
     found = analysed(crossed(counts))
     assert len(found.holds) >= 3
     assert found.holds_sentence
-    assert {"analysis", "term", "p", "effect", "lower", "upper", "same"} <= set(found.to_dict()["holds"][0])
+    assert {"analysis", "term", "p", "effect", "lower", "upper", "same"} <= set(plain(found.holds)[0])
 
 
 def test_progress_is_told_after_each_analysis() -> None:
