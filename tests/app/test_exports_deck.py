@@ -105,7 +105,7 @@ def test_notes_hold_model_numbers_caveats_and_the_caution(name: str) -> None:
         assert speaker.model_words(findings) in notes
         assert board.claim in notes
         assert speaker.CAUTION in notes
-        assert all(sentence in notes for sentence in findings.design["notes"])
+        assert all(sentence in notes for sentence in findings.notes)
 
 
 @every_design
