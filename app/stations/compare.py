@@ -42,7 +42,7 @@ def _ask(asked: Asked) -> None:
 def _question(findings: Findings) -> Asked:
     """Let question and adjustment be chosen in words; return the question."""
     families = asking.families(findings)
-    beside, adjust = st.columns([3, 2], gap="small")
+    beside, adjust = st.columns([1, 1], gap="small")
     with beside:
         st.selectbox(
             asked_words.FAMILY, families, format_func=lambda name: asked_words.family(findings, name), **desk.bind_view(FAMILY, families)
