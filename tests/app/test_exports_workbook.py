@@ -111,7 +111,7 @@ def test_the_first_sheet_says_what_the_workbook_is(name: str) -> None:
     assert any(words.n_per_cell(findings) in text for text in told)
     for answer in findings.answers:
         assert any(text.startswith(answer.sentence) for text in told)
-    assert set(findings.design["notes"]) <= told
+    assert set(findings.notes) <= told
 
 
 def test_letters_that_a_workbook_cannot_hold_are_replaced() -> None:
