@@ -2,6 +2,7 @@
 
 from dataclasses import dataclass
 from functools import cached_property
+from hashlib import sha256
 from typing import Any, Protocol
 
 import numpy as np
@@ -135,7 +136,18 @@ class Table:
     file_rows: Rows  # the number in the file of each row of the table
     left_out: tuple[LeftOut, ...]  # totals, remarks and the like; missing values are told by the response
     decisions: tuple[Decision, ...]
-    fingerprint: str  # 64 hexadecimal digits that change with the content and with how it was read
+    seal: str | None  # the fingerprint where reading gave one; a frame is digested only when it is asked for
+
+    @cached_property
+    def fingerprint(self) -> str:
+        """64 hexadecimal digits that change with the content and with how it was read."""
+        if self.seal is not None:
+            return self.seal
+        digest = sha256()
+        for column in self.columns:
+            digest.update(column.name.encode("utf-8", "surrogatepass") + b"\0")
+            digest.update(column.cells.digest())
+        return digest.hexdigest()
 
     @property
     def names(self) -> tuple[str, ...]:

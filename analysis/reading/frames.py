@@ -1,7 +1,5 @@
 """How a pandas frame becomes a table: taken as it is, categories with their order, rows counted from 1."""
 
-from hashlib import sha256
-
 import numpy as np
 import pandas as pd
 
@@ -25,7 +23,7 @@ def read(frame: pd.DataFrame, name: str) -> Table:
     if not any(_holds_numbers(column) for column in columns):
         raise refusals.NoNumericColumn(len(columns), len(frame))
     rows: Rows = np.arange(1, len(frame) + 1, dtype=np.int32) if len(frame) < 2**31 - 1 else np.arange(1, len(frame) + 1, dtype=np.int64)
-    return Table(name, columns, rows, (), naming, fingerprint(columns))
+    return Table(name, columns, rows, (), naming, None)
 
 
 def _name(label: object) -> str:
@@ -35,12 +33,3 @@ def _name(label: object) -> str:
 def _holds_numbers(column: Column) -> bool:
     """Whether any category or cell is a number; a categorical response is refused when it is asked for."""
     return column.looks_numeric or bool(column.as_levels().amounts)
-
-
-def fingerprint(columns: tuple[Column, ...]) -> str:
-    """A digest of the names and of every cell."""
-    seal = sha256()
-    for column in columns:
-        seal.update(column.name.encode("utf-8", "surrogatepass") + b"\0")
-        seal.update(column.cells.digest())
-    return seal.hexdigest()
