@@ -109,6 +109,7 @@ def _statistic(evidence: Evidence, tested: pd.Series, term: str, size: Size | No
         words.append(f"largest ratio {significant(size.effect)} ({significant(size.lower)} to {significant(size.upper)})")
     elif size is not None:
         what = "largest difference of differences" if term == anova.INTERACTION else "largest difference"
+        what += "" if size.complete else " that can be estimated"
         ends = f"{measured(size.lower, size.se)} to {measured(size.upper, size.se)}"
         words.append(f"{what} {measured(size.effect, size.se)}{evidence.unit} ({ends})")
     low, high = percent_number(tested["partial_eta2_lower"]), percent(tested["partial_eta2_upper"])

@@ -22,6 +22,7 @@ class Size:
     upper: float
     verdict: str  # the most decided verdict in the family
     levels: tuple[str, ...]  # the two compared
+    complete: bool  # every comparison of the family can be estimated
     all_small: bool  # every comparison lies inside ±the smallest difference that matters
 
 
@@ -31,7 +32,14 @@ def largest(frame: pd.DataFrame | None, scale: Scale) -> Size | None:
         return None
     known = frame.dropna(subset=["difference"])
     at = known.iloc[int(known["difference"].abs().to_numpy(float).argmax())]
-    return _size(at, ("lower_adjusted", "upper_adjusted"), known["verdict"].tolist(), scale, (str(at["left"]), str(at["right"])))
+    return _size(
+        at,
+        ("lower_adjusted", "upper_adjusted"),
+        known["verdict"].tolist(),
+        scale,
+        (str(at["left"]), str(at["right"])),
+        len(known) == len(frame),
+    )
 
 
 def largest_contrast(frame: pd.DataFrame | None, matters: float | None, scale: Scale) -> Size | None:
@@ -42,10 +50,10 @@ def largest_contrast(frame: pd.DataFrame | None, matters: float | None, scale: S
     limit = matters if scale.is_identity else None
     found = verdicts.verdicts(known["lower"].to_numpy(float), known["upper"].to_numpy(float), limit)
     at = known.iloc[int(known["difference"].abs().to_numpy(float).argmax())]
-    return _size(at, ("lower", "upper"), found.tolist(), scale, ())
+    return _size(at, ("lower", "upper"), found.tolist(), scale, (), len(known) == len(frame))
 
 
-def _size(at: pd.Series, names: tuple[str, str], found: list[str], scale: Scale, levels: tuple[str, ...]) -> Size:
+def _size(at: pd.Series, names: tuple[str, str], found: list[str], scale: Scale, levels: tuple[str, ...], complete: bool) -> Size:
     """Return a size with a positive effect, the ends of its interval turned with it, in original units for ratios."""
     ends = np.array([at["difference"], at[names[0]], at[names[1]]], dtype=float)
     if ends[0] < 0:
@@ -55,7 +63,7 @@ def _size(at: pd.Series, names: tuple[str, str], found: list[str], scale: Scale,
     strongest = next((v for v in (verdicts.LARGER, verdicts.DIFFERS, verdicts.SMALL) if v in found), found[0])
     small = all(v in SMALL_ENOUGH for v in found)
     effect, lower, upper = ends.tolist()
-    return Size(effect, float(at["se"]), float(at["df"]), lower, upper, strongest, levels, small)
+    return Size(effect, float(at["se"]), float(at["df"]), lower, upper, strongest, levels, complete, small)
 
 
 def turns(frame: pd.DataFrame | None) -> bool:

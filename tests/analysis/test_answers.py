@@ -2,6 +2,7 @@
 
 import pytest
 
+from tests.analysis.experiments import analysed, crossed
 from tests.analysis.scenarios import SCENARIOS, Scenario
 
 EXPECTED = {
@@ -146,3 +147,10 @@ def test_the_interaction_comes_first_and_the_factors_refer_to_it() -> None:
     first, *factors = next(s for s in SCENARIOS if s.name == "the effect grows").findings().answers
     assert first.term == "interaction"
     assert all("because of the first answer" in answer.statistic for answer in factors)
+
+
+def test_a_largest_difference_among_gaps_says_that_it_is_one() -> None:
+    frame = crossed([[3, 3], [3, 0], [3, 3]])
+    told = next(answer.statistic for answer in analysed(frame).answers if answer.term == "a")
+    assert "largest difference that can be estimated" in told
+    assert "that can be estimated" not in analysed(crossed([[3, 3], [3, 3], [3, 3]])).answers[1].statistic
