@@ -184,6 +184,10 @@ class Findings:
                 frames.append(trends.trends(factor.name, factor.amounts, overall, slices, self.model, self.study.confidence))
         return frames[0] if len(frames) == 1 else pd.concat(frames[1:], ignore_index=True)
 
+    def spacing(self, factor: str) -> tuple[float, ...] | None:
+        """Return the amounts that a factor's levels stand for, in their order; None where they count as groups."""
+        return self.observed.factor(factor).amounts
+
     def contrast(self, weights: Mapping[tuple[str, str], float]) -> contrasts.Contrast:
         """Return any weighted combination of cell means, with test and interval; weights are keyed by (row, column) levels.
 

@@ -6,6 +6,7 @@ from dataclasses import replace
 import numpy as np
 from numpy.typing import NDArray
 
+from analysis.amounts import spacing
 from analysis.observations import Factor, Observations
 from analysis.refusals import LevelForEveryRow, NoUsableRow, SpanOutOfReach, TooManyCells, UnknownLevel
 from analysis.relabelling import relabelled
@@ -35,7 +36,8 @@ def lay_out(study: Study) -> Observations:
     if not usable.any():
         raise NoUsableRow(str(study.response), table.rows)
     rows: Chosen = slice(None) if usable.all() else np.flatnonzero(usable)
-    factors = {name: _factor(name, parts[name], kept[name], rows) for name in _role_columns(study)}
+    amounts = {name: spacing(table.column(name), parts[name], study.amounts) for name in _role_columns(study)}
+    factors = {name: _factor(name, replace(parts[name], amounts=amounts[name]), kept[name], rows) for name in _role_columns(study)}
     _refuse_labels(factors, study)
     notes = (*table.notes, *response.notes, *(n for levels in parts.values() for n in levels.notes), *_dropped(study, parts, factors))
     left_out = tuple(sorted((*table.left_out, *reasons), key=lambda entry: entry.row))

@@ -115,6 +115,11 @@ def _control(old: Mapping[str, str], new: Mapping[str, str]) -> list[Told]:
     return [(f"The control level of “{column}” is {level}.", CHOSEN) for column, level in named.items()]
 
 
+def _amounts(old: Mapping[str, bool], new: Mapping[str, bool]) -> list[Told]:
+    words = {True: "count as amounts", False: "count as groups", None: "count as they look again"}
+    return [(f"The levels of “{column}” {words[new.get(column)]}.", CHOSEN) for column in _changed(old, new)]
+
+
 def _set_aside(old: Mapping[int, str], new: Mapping[int, str]) -> list[Told]:
     by_reason: dict[str, list[int]] = {}
     for row in _changed(old, new):
@@ -141,6 +146,7 @@ SENTENCES: Mapping[str, Callable[[Any, Any], list[Told]]] = MappingProxyType(
         "relabel": _relabel,
         "apart": _apart,
         "control": _control,
+        "amounts": _amounts,
         "set_aside": _set_aside,
         "matters": _matters,
         "model": lambda old, new: [(f"The model is fitted {MODELS[new]}.", CHOSEN)],

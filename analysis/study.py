@@ -52,6 +52,7 @@ class Study:
     relabel: Mapping[str, Mapping[str, str]] = field(default_factory=dict)  # column -> level as read -> level as used; equal ones merge
     set_aside: Mapping[int, str] = field(default_factory=dict)  # file row -> why it is not analysed
     apart: Mapping[str, Mapping[str, str]] = field(default_factory=dict)  # column -> level -> the look-alike that it was not merged with
+    amounts: Mapping[str, bool] = field(default_factory=dict)  # column -> whether levels that are numbers count as amounts
 
     def __post_init__(self) -> None:
         """Freeze the mappings and raise a Refusal for a choice that does not exist."""
@@ -59,6 +60,7 @@ class Study:
         object.__setattr__(self, "control", _frozen(self.control))
         object.__setattr__(self, "relabel", MappingProxyType({column: _frozen(names) for column, names in self.relabel.items()}))
         object.__setattr__(self, "apart", MappingProxyType({column: _frozen(names) for column, names in self.apart.items()}))
+        object.__setattr__(self, "amounts", MappingProxyType({str(column): bool(are) for column, are in self.amounts.items()}))
         object.__setattr__(self, "set_aside", MappingProxyType({int(row): why.strip() for row, why in self.set_aside.items()}))
         _check_choices(self)
         for column, levels in self.keep.items():
@@ -96,6 +98,7 @@ class Study:
         plain["control"] = dict(self.control)
         plain["relabel"] = {column: dict(names) for column, names in self.relabel.items()}
         plain["set_aside"] = dict(self.set_aside)
+        plain["amounts"] = dict(self.amounts)
         plain["apart"] = {column: dict(names) for column, names in self.apart.items()}
         return plain
 

@@ -131,7 +131,11 @@ def test_cells_and_slices_can_be_chosen_in_words() -> None:
 
 def test_a_trend_is_asked_where_levels_are_amounts() -> None:
     frame = pd.DataFrame(
-        {"y": [float(k % 5) + k // 12 for k in range(36)], "a": [f"a{k % 2}" for k in range(36)], "b": [k // 12 for k in range(36)]}
+        {
+            "y": [float(k % 5) + k // 12 for k in range(36)],
+            "a": [f"a{k % 2}" for k in range(36)],
+            "b": [(0, 5, 20)[k // 12] for k in range(36)],
+        }
     )
     study = opening.findings_of(frame).study
     dashboard = opening.station("compare", study)
