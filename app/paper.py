@@ -100,7 +100,7 @@ def status(sentence: str) -> str:
 def levels(factor: str, counts: Sequence[tuple[str, int]]) -> str:
     """Return a factor's levels in their order, each with its count."""
     told = "".join(f"<li>{safe(level)} <span>{count}</span></li>" for level, count in counts)
-    return f"<div class='levels'><h3>{safe(factor)}</h3><ul>{told}</ul></div>"
+    return f"<div class='levels'><h2>{safe(factor)}</h2><ul>{told}</ul></div>"
 
 
 def offer(sentence: str) -> str:

@@ -1,0 +1,64 @@
+"""Whoever works with a screen reader or the keyboard finds every control named, every text legible and the focus in sight."""
+
+from collections.abc import Iterator
+
+import pytest
+from axe_playwright_python.sync_playwright import Axe
+from playwright.sync_api import Browser, Page
+
+from app.stations import STATIONS
+from tests.browser import driving
+
+GRAVE = {"serious", "critical"}  # how axe-core, the rules of the WCAG as a script, ranks what keeps somebody out
+STEPS = 40  # of the tabulator key; the longest station has fewer controls in its first screens
+
+
+@pytest.fixture(scope="module")
+def address() -> Iterator[str]:
+    with driving.dashboard() as told:
+        yield told
+
+
+@pytest.fixture(scope="module")
+def running(chromium: str) -> Iterator[Browser]:
+    with driving.browser(chromium) as started:
+        yield started
+
+
+def grave(page: Page) -> list[str]:
+    """Return what axe-core holds against a page, with the first element of each kind."""
+    found = Axe().run(page).response["violations"]
+    return [f"{v['id']}: {v['nodes'][0]['html'][:200]} ({len(v['nodes'])})" for v in found if v["impact"] in GRAVE]
+
+
+@pytest.mark.parametrize("scheme", ["light", "dark"])
+def test_no_station_keeps_anybody_out(running: Browser, address: str, scheme: str) -> None:
+    page = driving.open_page(running, address, scheme=scheme)
+    assert grave(page) == []
+    driving.open_sample(page, 1)
+    for station in STATIONS:
+        driving.go(page, station.title)
+        assert grave(page) == [], station.title
+    page.context.close()
+
+
+def test_the_focus_is_always_in_sight(running: Browser, address: str) -> None:
+    page = driving.open_page(running, address)
+    driving.open_sample(page)
+    for station in STATIONS:
+        driving.go(page, station.title)
+        for _ in range(STEPS):
+            page.keyboard.press("Tab")
+            unseen = page.evaluate(
+                """() => {
+                    const at = document.activeElement;
+                    if (!at || at === document.body) return null;
+                    const style = getComputedStyle(at);
+                    const box = at.closest('label') || at;  // a radio button is drawn by its label
+                    const drawn = [at, box, box.firstElementChild].filter(part => part).map(part => getComputedStyle(part));
+                    const seen = drawn.some(s => (s.outlineStyle !== 'none' && parseFloat(s.outlineWidth) > 0) || s.boxShadow !== 'none');
+                    return seen ? null : at.outerHTML.slice(0, 200);
+                }"""
+            )
+            assert unseen is None, station.title
+    page.context.close()
