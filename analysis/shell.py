@@ -9,7 +9,7 @@ from typing import NoReturn
 from analysis.adjustments import ADJUSTMENTS
 from analysis.design import refuse_one_level
 from analysis.findings import analyse
-from analysis.reading import read_table
+from analysis.reading.entry import read_table
 from analysis.refusals import Refusal, UnreadableChoice
 from analysis.study import MODELS, Study
 from analysis.table import Table

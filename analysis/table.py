@@ -10,11 +10,13 @@ import numpy.typing as npt
 import pandas as pd
 
 from analysis import refusals
+from analysis.reading.choices import NOTHING_ASKED, Reading
 
 STRETCH = 1 << 18  # rows handled at a time
 Floats = npt.NDArray[np.float64]
 Codes = npt.NDArray[np.integer[Any]]  # the narrowest whole numbers that hold them, for tables of millions of rows
 Rows = npt.NDArray[np.int64] | npt.NDArray[np.int32]
+NO_ROWS: Rows = np.empty(0, dtype=np.int64)
 
 
 @dataclass(frozen=True)
@@ -26,12 +28,29 @@ class LeftOut:
 
 
 @dataclass(frozen=True)
+class Alternative:
+    """What could be read instead, in a few words, and everything to ask of the reader to get it."""
+
+    words: str
+    reading: Reading
+
+
+@dataclass(frozen=True)
 class Decision:
-    """One thing the reader decided: a plain sentence, and the words of what it could have decided instead."""
+    """One thing the reader decided: a plain sentence, and what it could have decided instead."""
 
     kind: str
     sentence: str
-    alternatives: tuple[str, ...] = ()
+    alternatives: tuple[Alternative, ...] = ()
+    ordinary: bool = False  # nothing unusual, and no note to anybody who does not look for it
+
+
+@dataclass(frozen=True)
+class RawLine:
+    """A line of a file, or a row of a sheet, as it stands there."""
+
+    row: int
+    text: str
 
 
 @dataclass(frozen=True, eq=False)  # eq off: arrays have no single truth value
@@ -137,6 +156,8 @@ class Table:
     left_out: tuple[LeftOut, ...]  # totals, remarks and the like; missing values are told by the response
     decisions: tuple[Decision, ...]
     seal: str | None  # the fingerprint where reading gave one; a frame is digested only when it is asked for
+    reading: Reading = NOTHING_ASKED  # what was asked of the reader
+    raw: tuple[RawLine, ...] = ()  # the first lines before anything was understood; none of a frame
 
     @cached_property
     def fingerprint(self) -> str:
@@ -161,8 +182,8 @@ class Table:
 
     @property
     def notes(self) -> tuple[str, ...]:
-        """What the reader decided, a sentence each."""
-        return tuple(decision.sentence for decision in self.decisions)
+        """What the reader decided beyond the ordinary, a sentence each."""
+        return tuple(decision.sentence for decision in self.decisions if not decision.ordinary)
 
     @cached_property
     def _by_name(self) -> dict[str, Column]:

@@ -40,7 +40,7 @@ def _decisions(encoding: str) -> tuple[Decision, ...]:
     if encoding == "utf-8":
         return ()
     told = _UTF16.get(encoding, encoding.replace("windows", "Windows").replace("utf", "UTF"))
-    return (Decision("encoding", f"The text was read as {told}.", ("UTF-8", "UTF-16", "Windows-1252")),)
+    return (Decision("encoding", f"The text was read as {told}."),)
 
 
 def _marked(data: bytes) -> str | None:

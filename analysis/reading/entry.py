@@ -1,5 +1,7 @@
 """The way from a path, the bytes of a file or a frame to a table: here reading starts."""
 
+import json
+from dataclasses import replace
 from hashlib import sha256
 from pathlib import Path
 
@@ -7,11 +9,12 @@ import pandas as pd
 
 from analysis import refusals
 from analysis.reading import delimited, encoding, frames, layouts, parquet, separators, signatures, workbooks
-from analysis.reading.records import Found, Source
+from analysis.reading.choices import NOTHING_ASKED, Reading
+from analysis.reading.marks import Known
+from analysis.reading.records import RAW, RAW_BYTES, Found, Source, raw_line
 from analysis.reading.signatures import Kind
-from analysis.table import Decision, Table
+from analysis.table import NO_ROWS, Decision, Table
 
-LAYOUTS = ("auto", "rows", "grid")
 LARGEST = 2**30  # bytes of a file
 _ENDINGS: dict[str, tuple[Kind, ...]] = {  # what the ending of a name promises
     **dict.fromkeys((".csv", ".tsv", ".txt", ".tab", ".dat"), ("text",)),
@@ -34,16 +37,16 @@ def read_table(
     name: str | None = None,
     sheet: str | None = None,
     layout: str = "auto",
+    reading: Reading | None = None,
 ) -> Table:
     """Read a table from a path, from the bytes of a file, or from a pandas frame, which is taken as it is.
 
-    sheet names the sheet of a workbook (the first with a table where None); layout is "auto", "rows" or "grid". Raises a
-    refusal, one sentence, for whatever holds no usable table.
+    sheet names the sheet of a workbook (the first with a table where None); layout is "auto", "rows" or "grid"; reading asks for
+    these and for more, and yields to them. Raises a refusal, one sentence, for whatever holds no usable table.
     """
-    if layout not in LAYOUTS:
-        raise refusals.UnknownChoice("layout", layout, LAYOUTS)
+    reading = _asked(reading or NOTHING_ASKED, sheet, layout)
     if isinstance(source, pd.DataFrame):
-        return _laid_out(frames.read(source, name or "table"), layout)
+        return layouts.of_values(replace(frames.read(source, name or "table"), reading=reading))
     if isinstance(source, (str, Path)):
         data, name = _loaded(Path(source)), name or Path(source).name
     else:
@@ -51,18 +54,19 @@ def read_table(
     if len(data) > LARGEST:
         raise refusals.FileTooLarge(len(data), LARGEST)
     kind = signatures.kind_of(data)
-    seal = _fingerprint(data, sheet, layout)
-    if sheet is not None and kind in ("text", "parquet"):
-        raise refusals.SheetOutsideWorkbook(sheet)
+    seal = _fingerprint(data, reading)
+    if reading.sheet is not None and kind in ("text", "parquet"):
+        raise refusals.SheetOutsideWorkbook(reading.sheet)
     if kind == "parquet":
-        return _laid_out(parquet.read(data, name, _mislabelled(name, kind), seal), layout)
-    found = _text(data) if kind == "text" else workbooks.read(data, kind, sheet)
-    return layouts.read(found, name, layout, _mislabelled(name, kind), seal)
+        return layouts.of_values(parquet.read(data, name, _mislabelled(name, kind), seal, reading))
+    found: Source = _text(data, reading) if kind == "text" else workbooks.read(data, kind, reading)
+    return layouts.read(found, Table(name, (), NO_ROWS, (), _mislabelled(name, kind), seal, reading, found.found.raw))
 
 
-def _laid_out(table: Table, layout: str) -> Table:
-    """A frame or Parquet file is one row for each observation unless a grid is asked for."""
-    return layouts.as_grid(table) if layout == "grid" else table
+def _asked(reading: Reading, sheet: str | None, layout: str) -> Reading:
+    """What was asked in either way."""
+    reading = reading if sheet is None else replace(reading, sheet=sheet)
+    return reading if layout == "auto" else replace(reading, layout=layout)
 
 
 def _loaded(path: Path) -> bytes:
@@ -80,14 +84,19 @@ def _mislabelled(name: str, kind: Kind) -> tuple[Decision, ...]:
     return (Decision("format", f"The name ends in {ending}, but the file is {_TOLD[kind]} and was read as that."),)
 
 
-def _text(data: bytes) -> Source:
+def _text(data: bytes, reading: Reading) -> Source:
     decoded = encoding.decode(data)
-    separated = separators.find(decoded.data)
-    found = Found((*decoded.decisions, *separated.decisions), comma_separated=separated.delimiter == ",")
+    separated = separators.find(decoded.data, reading)
+    known = Known(separated.delimiter == ",", reading.decimal)
+    lines = enumerate(decoded.data[:RAW_BYTES].decode("utf-8", "replace").split("\n")[:RAW])
+    raw = tuple(raw_line(index + 1, line) for index, line in lines)
+    found = Found((*decoded.decisions, separated.decision), known, raw=raw)
     return delimited.Delimited(separated.data, separated.delimiter, found, separated.declared)
 
 
-def _fingerprint(data: bytes, sheet: str | None, layout: str) -> str:
+def _fingerprint(data: bytes, reading: Reading) -> str:
+    """A seal on the content and on what was asked of the reader."""
+    others = {name: value for name, value in reading.to_plain().items() if name not in ("sheet", "layout")}
     seal = sha256(data)
-    seal.update(f"\0{sheet}\0{layout}".encode("utf-8", "surrogatepass"))
+    seal.update(f"\0{reading.sheet}\0{reading.layout}{json.dumps(others) if others else ''}".encode("utf-8", "surrogatepass"))
     return seal.hexdigest()

@@ -51,7 +51,7 @@ def is_spread(text: str) -> bool:
 
 def clean(body: Body) -> Cleaned:
     """Take out the rows that hold no observation."""
-    blanks = _all_blank(body, 0)
+    blanks = blank_rows(body)
     kept, left_out, decisions = ~blanks, [], []
     if blanks.any():
         decisions.append(Decision("blanks", f"{counted(int(blanks.sum()), 'blank row')} passed over."))
@@ -75,6 +75,11 @@ def taken(body: Body, kept: Mask) -> Body:
     columns = tuple(column.filter(chosen) for column in body.columns)
     numbers = tuple(None if values is None else values[kept] for values in body.numbers)
     return Body(columns, body.rows[kept], numbers, body.units, body.dates)
+
+
+def blank_rows(body: Body) -> Mask:
+    """Which rows hold nothing."""
+    return _all_blank(body, 0)
 
 
 def _all_blank(body: Body, first: int) -> Mask:

@@ -8,8 +8,9 @@ from functools import cached_property
 
 import numpy as np
 
-from analysis.reading import footers, level_order, missing, numerals
+from analysis.reading import footers, level_order, missing, numerals, spaces
 from analysis.reading.headers import Heading
+from analysis.reading.records import Body
 from analysis.reading.words import MEASURED, NUMBERED_THING
 
 _CORNER = re.compile(r"\s*(?P<row>[^\\/]*?)\s*[\\/]\s*(?P<column>[^\\/]*?)\s*")
@@ -20,6 +21,7 @@ _REPEAT = re.compile(
 )
 _COUNT = re.compile(r"#?[0-9]{1,2}|[a-h]", re.IGNORECASE)
 _FEW = 6  # different whole numbers up to which a column looks like coded levels
+SAMPLE = 400  # rows that show what a column holds
 _APART = 5.0  # times by which the medians of value columns may differ and still measure the same thing
 
 
@@ -149,6 +151,11 @@ class Signs:
             return False
         medians = [float(np.median(np.abs(column))) for column in values if column.size]
         return len(medians) > 1 and min(medians) > 0 and max(medians) <= _APART * min(medians)
+
+
+def of(heading: Heading, body: Body) -> Signs:
+    """The signs of the first rows of a table."""
+    return Signs(heading, tuple(tuple(map(spaces.tidy, column.slice(0, SAMPLE).to_pylist())) for column in body.columns))
 
 
 def is_repeat(cell: str) -> bool:

@@ -21,11 +21,11 @@ class Written:
     numbers: Floats | None
     rows: Rows
     unit: str | None
-    comma_separated: bool
+    known: marks.Known
 
 
 @dataclass(eq=False)
-class Reading:
+class HalfRead:
     """A column half read: values so far and why others are missing."""
 
     written: Written

@@ -2,11 +2,12 @@
 
 from collections import Counter
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from itertools import pairwise
 
 from analysis import refusals
-from analysis.reading import missing, names, numerals, units
+from analysis.reading import header_choice, missing, names, numerals, units
+from analysis.reading.choices import Reading
 from analysis.reading.records import Found, Record, Span
 from analysis.reading.words import counted
 from analysis.table import Decision
@@ -24,6 +25,9 @@ class Heading:
     start: int  # number of the first record below the header, counted from 0
     row: int  # row of the file that holds the names
     decisions: tuple[Decision, ...]
+    names_rows: tuple[int, ...] = ()  # all rows of the file that the names come from, none where they are our own
+    told: str = ""  # what is unusual about them
+    for_grid: bool = False  # whether a row is taken for the header only because a grid was asked for
 
     @property
     def width(self) -> int:
@@ -37,21 +41,51 @@ class Heading:
         return tuple(f"{over} {under}".strip() for over, under in zip(self.spanning, self.cells, strict=True))
 
 
-def find(head: Sequence[Record], found: Found, layout: str = "auto") -> Heading:
-    """Find the header among the first records of a file, which a grid always has; raises HeaderWithoutRows and EmptyFile."""
-    places = [index for index, record in enumerate(head) if record.filled]
-    if not places:
+def find(head: Sequence[Record], found: Found, reading: Reading) -> Heading:
+    """Find the header among the first records of a file, which a grid always has, unless the user named its row.
+
+    Raises EmptyFile, HeaderWithoutRows, and NoSuchHeader where the row asked for is blank or too far down.
+    """
+    filled = [index for index, record in enumerate(head) if record.filled]
+    if not filled:
         raise refusals.EmptyFile()
-    remarks = _remarks(head, places)
-    places = places[len(remarks) :]
-    if not places:
+    remarks = _remarks(head, filled)
+    places = filled[len(remarks) :]
+    at = _header_place(head, places) if places else None
+    for_grid = at is None and bool(places) and reading.layout == "grid"
+    at = places[0] if for_grid else at
+    if reading.header_row is not None:
+        heading = _asked(head, filled, reading.header_row, found.spans)
+    elif not places:
         raise refusals.HeaderWithoutRows(())
-    at = _header_place(head, places)
-    if at is None and layout == "grid":
-        at = places[0]
+    else:
+        heading = _without_header(head, places, remarks) if at is None else _with_header(head, places, at, found.spans, remarks)
+    found_row = None if at is None else head[at].row
+    decision = header_choice.decision(head, heading.names_rows, found_row, heading.told, reading)
+    return replace(heading, decisions=(*heading.decisions, decision), for_grid=for_grid)
+
+
+def _asked(head: Sequence[Record], places: Sequence[int], row: int, spans: Sequence[Span]) -> Heading:
+    """The header that the user named: this row alone, or none at all."""
+    if row == 0:
+        return _without_header(head, places, ())
+    at = next((index for index in places if head[index].row == row), None)
     if at is None:
-        return _without_header(head, places, remarks)
-    return _with_header(head, places, at, found.spans, remarks)
+        raise refusals.NoSuchHeader(row, head[-1].row)
+    header = _without_mark(_padded(head[at].cells, _full_width(head[at], spans)))
+    below = [index for index in places if index > at]
+    if not below:
+        raise refusals.HeaderWithoutRows(header)
+    decisions = _passed_over(head, [index for index in places if index < at]) + _trimmed(head[at])
+    if _second_row(header, head, below) != "units":
+        return Heading(header, None, (None,) * len(header), at + 1, row, decisions, (row,))
+    return _over_units(Heading(header, None, (), below[0] + 1, row, decisions, (row,)), head[below[0]])
+
+
+def _over_units(heading: Heading, row: Record) -> Heading:
+    """A header with a row of units under it."""
+    decision = Decision("units", f"Row {row.row} under the header was read as units.")
+    return replace(heading, units=_unit_row(row.cells, heading.width), decisions=(*heading.decisions, decision))
 
 
 def _remarks(head: Sequence[Record], places: Sequence[int]) -> list[int]:
@@ -123,7 +157,7 @@ def _without_header(head: Sequence[Record], places: Sequence[int], remarks: Sequ
     cells = tuple(f"column {index + 1}" for index in range(len(head[start].cells)))
     sentence = f"The file has no header: its columns were named {cells[0]} to {cells[-1]}."
     passed = _passed_over(head, [*remarks, *(index for index in places if index < start)])
-    return Heading(cells, None, (None,) * len(cells), start, head[start].row, (*passed, Decision("header", sentence)))
+    return Heading(cells, None, (None,) * len(cells), start, head[start].row, passed, (), sentence)
 
 
 def _with_header(head: Sequence[Record], places: Sequence[int], at: int, spans: Sequence[Span], remarks: Sequence[int]) -> Heading:
@@ -133,23 +167,29 @@ def _with_header(head: Sequence[Record], places: Sequence[int], at: int, spans: 
     if not below:
         raise refusals.HeaderWithoutRows(header)
     second = _second_row(header, head, below)
-    spanning = names.spread(head[above[-1]], header, spans) if above and not second else None
-    decisions = _passed_over(head, [*remarks, *(above[:-1] if spanning else above)]) + _trimmed(head[at])
-    unit_row: tuple[str | None, ...] = (None,) * len(header)
-    start = at + 1
+    over = names.spread(head[above[-1]], header, spans) if above and not second else None
+    decisions = _passed_over(head, [*remarks, *(above[:-1] if over else above)]) + _trimmed(head[at])
+    heading = Heading(header, None, (None,) * len(header), at + 1, head[at].row, decisions, (head[at].row,))
     if second == "names":
-        spanning, header = names.spread(head[at], head[below[0]].cells, spans, force=True), _padded(head[below[0]].cells, len(header))
-        spanning, start = _padded(spanning or (), len(header)), below[0] + 1
+        over = names.spread(head[at], head[below[0]].cells, spans, force=True)
+        under = _padded(head[below[0]].cells, len(header))
+        heading = replace(heading, cells=under, start=below[0] + 1, names_rows=(head[at].row, head[below[0]].row))
     elif second == "units":
-        unit_row, start = _unit_row(head[below[0]].cells, len(header)), below[0] + 1
-        decisions = (*decisions, Decision("units", f"Row {head[below[0]].row} under the header was read as units."))
-    if spanning:
-        spanning, header = _same_width(spanning, header)
-        decisions = (*decisions, Decision("header", "The names stand in two rows and were joined, the spanning name first."))
-        unit_row = unit_row + (None,) * (len(header) - len(unit_row))
-    if len([index for index in places if index >= start]) == 0:
-        raise refusals.HeaderWithoutRows(header)
-    return Heading(header, spanning, unit_row, start, head[at].row, decisions)
+        heading = _over_units(replace(heading, start=below[0] + 1), head[below[0]])
+    elif over:
+        heading = replace(heading, names_rows=(head[above[-1]].row, head[at].row))
+    heading = _under(heading, over) if over else heading
+    if not any(index >= heading.start for index in places):
+        raise refusals.HeaderWithoutRows(heading.cells)
+    return heading
+
+
+def _under(heading: Heading, over: tuple[str, ...]) -> Heading:
+    """A header with a spanning row above its names, both of one width."""
+    width = max(len(over), heading.width)
+    told = "The names stand in two rows and were joined, the spanning name first."
+    padding = (None,) * (width - len(heading.units))
+    return replace(heading, cells=_padded(heading.cells, width), spanning=_padded(over, width), units=(*heading.units, *padding), told=told)
 
 
 def _without_mark(cells: tuple[str, ...]) -> tuple[str, ...]:
@@ -164,11 +204,6 @@ def _full_width(record: Record, spans: Sequence[Span]) -> int:
     gaps = {right - left for left, right in pairwise(filled)}
     spread = filled[-1] + gaps.pop() if len(gaps) == 1 and filled[0] == 1 else 0
     return max(len(record.cells), record.width, merged, spread)
-
-
-def _same_width(spanning: tuple[str, ...], header: tuple[str, ...]) -> tuple[tuple[str, ...], tuple[str, ...]]:
-    width = max(len(spanning), len(header))
-    return _padded(spanning, width), _padded(header, width)
 
 
 def _padded(cells: Sequence[str], width: int) -> tuple[str, ...]:
@@ -216,4 +251,4 @@ def _passed_over(head: Sequence[Record], indices: Sequence[int]) -> tuple[Decisi
     sentence = (
         f"{counted(len(rows), 'line')} above the header ({refusals.rows_told(rows)}) {'was' if len(rows) == 1 else 'were'} passed over."
     )
-    return (Decision("header", sentence),)
+    return (Decision("remarks", sentence),)

@@ -8,64 +8,89 @@ import numpy.typing as npt
 import pyarrow as pa
 
 from analysis import refusals
-from analysis.reading import cell_lengths, filling, footers, grids, headers, names, numerals, spaces
+from analysis.reading import cell_lengths, decimal_marks, filling, footers, grid_signs, grids, headers, names, numerals, spaces
 from analysis.reading.filling import Fill
+from analysis.reading.grids import Grid
 from analysis.reading.headers import Heading
 from analysis.reading.records import Body, Found, Source
 from analysis.reading.text_cells import TextCells
 from analysis.reading.value_cells import NumberCells
 from analysis.reading.words import counted, several
-from analysis.table import Column, Decision, Table
+from analysis.table import Column, Decision, LeftOut, Table
 
 _SAMPLE = 5000  # cells of a column looked at before it is searched as a whole for a number
 
 
-def read(source: Source, name: str, layout: str, decisions: tuple[Decision, ...], fingerprint: str) -> Table:
-    """Turn a file of text or a sheet into a table; raises a refusal where it holds none."""
-    heading = headers.find(source.head, source.found, layout)
+def read(source: Source, account: Table) -> Table:
+    """Turn a file of text or a sheet into a table, from an account that holds no rows yet; raises a refusal where it holds none."""
+    heading = headers.find(source.head, source.found, account.reading)
     body = source.body(heading.start, heading.width)
     cell_lengths.check(heading.cells, heading.row, body)
     heading, body, places = _without_blank_columns(heading, body)
+    body, hidden = _without_hidden(body, source.found.hidden)
     cleaned = footers.clean(body)
     body = cleaned.body
     if not body.rows.size:
         raise refusals.HeaderWithoutRows(heading.joined())
     _refuse_without_numbers(body)
     fills = tuple(_fill(body, index, place, source.found) for index, place in enumerate(places))
-    decisions = (*decisions, *source.found.decisions, *heading.decisions, *cleaned.decisions)
-    account = Table(name, (), body.rows, cleaned.left_out, decisions, fingerprint)
-    return _in_layout(heading, body, fills, source.found, layout, account)
+    mark = decimal_marks.decision(body, source.found.known, account.reading)
+    decisions = (*account.decisions, *source.found.decisions, *heading.decisions, *cleaned.decisions, *([mark] if mark else []))
+    left_out = tuple(sorted((*hidden, *cleaned.left_out), key=lambda entry: entry.row))
+    account = replace(account, file_rows=body.rows, left_out=left_out, decisions=decisions)
+    return _in_layout(heading, body, fills, source.found, account)
 
 
-def _in_layout(heading: Heading, body: Body, fills: tuple[Fill, ...], found: Found, layout: str, account: Table) -> Table:
+def _without_hidden(body: Body, hidden: Sequence[int]) -> tuple[Body, tuple[LeftOut, ...]]:
+    """Take out the rows that the sheet hides, where that was asked for; blank ones need no account."""
+    chosen = np.isin(body.rows, hidden)
+    if not chosen.any():
+        return body, ()
+    filled = chosen & ~footers.blank_rows(body)
+    return footers.taken(body, ~chosen), tuple(LeftOut(int(row), "hidden in the sheet") for row in body.rows[filled])
+
+
+def _in_layout(heading: Heading, body: Body, fills: tuple[Fill, ...], found: Found, account: Table) -> Table:
     """Complete the account of a table with its columns, in rows or as a grid turned into rows."""
-    grid = grids.find(heading, body, fills, layout)
+    signs = grid_signs.of(heading, body)
+    itself = "grid" if signs.is_likely() and not heading.for_grid else "rows"
+    grid = grids.find(signs, body, fills, itself, account.reading)
     if grid is not None:
-        labels, naming = names.distinct(grid.names)
-        columns = _columns(labels, grid.body, (None,) * len(labels), found)
-        decisions = (*account.decisions, *grid.decisions, *_filled(labels[:1], fills[:1]))
-        return replace(account, columns=columns, file_rows=grid.body.rows, decisions=(*decisions, *naming))
+        return _in_grid(grid, fills, found, account)
     labels, naming = names.distinct(heading.joined())
     body = replace(body, units=tuple(above or given for above, given in zip(heading.units, body.units, strict=True)))
-    decisions = (*account.decisions, *naming, *_filled(labels, fills), *_dates(labels, body))
+    in_rows = grids.told_in_rows(signs, itself, account.reading)
+    decisions = (*account.decisions, in_rows, *naming, *_filled(labels, fills), *_dates(labels, body))
     return replace(account, columns=_columns(labels, body, fills, found), decisions=decisions)
+
+
+def _in_grid(grid: Grid, fills: tuple[Fill, ...], found: Found, account: Table) -> Table:
+    labels, naming = names.distinct(grid.names)
+    columns = _columns(labels, grid.body, (None,) * len(labels), found)
+    decisions = (*account.decisions, *grid.decisions, *_filled(labels[:1], fills[:1]), *naming)
+    return replace(account, columns=columns, file_rows=grid.body.rows, decisions=decisions)
 
 
 def _columns(labels: Sequence[str], body: Body, fills: Sequence[Fill], found: Found) -> tuple[Column, ...]:
     parts = zip(labels, body.columns, body.numbers, body.units, fills, strict=True)
     return tuple(
-        Column(label, TextCells(label, texts, body.rows, numbers, unit, found.comma_separated, fill))
-        for label, texts, numbers, unit, fill in parts
+        Column(label, TextCells(label, texts, body.rows, numbers, unit, found.known, fill)) for label, texts, numbers, unit, fill in parts
     )
 
 
-def as_grid(table: Table) -> Table:
-    """Read the columns of a frame or a Parquet file as a grid; left as it is where it cannot be one."""
-    texts = tuple(pa.array(column.text(0, table.rows), pa.string()) for column in table.columns)
-    numbers = tuple(column.cells.floats if isinstance(column.cells, NumberCells) else None for column in table.columns)
+def of_values(table: Table) -> Table:
+    """Read the columns of a frame or a Parquet file as a grid where that is asked for; left as it is where it cannot be one."""
+    asked = table.reading.layout == "grid"
+    rows = table.rows if asked else min(table.rows, grid_signs.SAMPLE)
+    texts = tuple(pa.array(column.text(0, rows), pa.string()) for column in table.columns)
+    numbers = tuple(column.cells.floats[:rows] if isinstance(column.cells, NumberCells) else None for column in table.columns)
     nothing: tuple[None, ...] = (None,) * len(texts)
-    heading = Heading(table.names, None, nothing, 0, 0, ())
-    return _in_layout(heading, Body(texts, table.file_rows, numbers, nothing), nothing, Found(), "grid", table)
+    body = Body(texts, table.file_rows[:rows], numbers, nothing)
+    signs = grid_signs.of(Heading(table.names, None, nothing, 0, 0, ()), body)
+    grid = grids.find(signs, body, nothing, "rows", table.reading)
+    if grid is not None:
+        return _in_grid(grid, nothing, Found(), table)
+    return replace(table, decisions=(*table.decisions, grids.told_in_rows(signs, "rows", table.reading)))
 
 
 def _without_blank_columns(heading: Heading, body: Body) -> tuple[Heading, Body, tuple[int, ...]]:

@@ -22,12 +22,26 @@ class Marks:
         return self.comma if mark == "," else self.point
 
 
-def decide(shapes: Iterable[Shape], comma_separated: bool) -> Marks:
+@dataclass(frozen=True)
+class Known:
+    """What is known of the marks in all numbers of a file."""
+
+    comma_separated: bool = False  # whether commas separate its cells
+    decimal: str | None = None  # "point" or "comma" where the user said so
+
+
+NOTHING_KNOWN = Known()
+
+
+def decide(shapes: Iterable[Shape], known: Known) -> Marks:
     """Decide from all numbers of a column what its ambiguous marks mean.
 
-    The column's other numbers come first. Where they are silent the point is decimal, and so is the comma unless commas
-    also separate the cells of the file: there the comma can only be a thousands mark.
+    What the user said comes first, then the column's other numbers. Where they are silent the point is decimal, and so is the
+    comma unless commas also separate the cells of the file: there the comma can only be a thousands mark.
     """
+    if known.decimal is not None:
+        return Marks("decimal", "thousands") if known.decimal == "comma" else Marks("thousands", "decimal")
+    comma_separated = known.comma_separated
     shapes = set(shapes)
     decimal = {shape.decimal for shape in shapes} - {""}
     thousands = {shape.thousands for shape in shapes} - {""}

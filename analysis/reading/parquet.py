@@ -9,6 +9,9 @@ from pyarrow import parquet
 
 from analysis import refusals
 from analysis.reading import names, value_cells
+from analysis.reading.choices import Reading
+from analysis.reading.marks import Known
+from analysis.reading.records import RAW, raw_line
 from analysis.reading.text_cells import TextCells
 from analysis.table import Cells, Column, Decision, Rows, Table
 
@@ -16,7 +19,7 @@ MOST_VALUES = 400_000_000  # rows × columns; a small file can declare any numbe
 _UNNAMED_INDEX = "__index_level_"
 
 
-def read(data: bytes, name: str, decisions: tuple[Decision, ...], fingerprint: str) -> Table:
+def read(data: bytes, name: str, decisions: tuple[Decision, ...], fingerprint: str, reading: Reading) -> Table:
     """Read a Parquet file; raises DamagedFile, Encrypted, FileTooLarge, HeaderWithoutRows or NoNumericColumn."""
     found = _load(data)
     kept = [label for label in found.column_names if not label.startswith(_UNNAMED_INDEX)]
@@ -25,11 +28,13 @@ def read(data: bytes, name: str, decisions: tuple[Decision, ...], fingerprint: s
         raise refusals.HeaderWithoutRows(labels)
     rows = np.arange(1, found.num_rows + 1, dtype=np.int64)
     places = [index for index, label in enumerate(found.column_names) if not label.startswith(_UNNAMED_INDEX)]
-    cells = [_cells(label, found.column(place), rows) for label, place in zip(labels, places, strict=True)]
+    known = Known(decimal=reading.decimal)
+    cells = [_cells(label, found.column(place), rows, known) for label, place in zip(labels, places, strict=True)]
     columns = tuple(Column(label, cell) for label, cell in zip(labels, cells, strict=True))
     if not any(column.looks_numeric or column.as_levels().amounts for column in columns):
         raise refusals.NoNumericColumn(len(columns), found.num_rows)
-    return Table(name, columns, rows, (), (*decisions, *naming), fingerprint)
+    raw = tuple(raw_line(i + 1, " | ".join(row)) for i, row in enumerate(zip(*(cell.text(0, RAW) for cell in cells), strict=True)))
+    return Table(name, columns, rows, (), (*decisions, *naming), fingerprint, reading, raw)
 
 
 def _load(data: bytes) -> pa.Table:
@@ -44,7 +49,7 @@ def _load(data: bytes) -> pa.Table:
         raise refusals.DamagedFile("Parquet file") from error
 
 
-def _cells(name: str, column: pa.ChunkedArray, rows: Rows) -> Cells:
+def _cells(name: str, column: pa.ChunkedArray, rows: Rows, known: Known) -> Cells:
     """Choose how a column is kept, by its type."""
     kind = column.type
     if pa.types.is_dictionary(kind) and kind.ordered:
@@ -54,7 +59,7 @@ def _cells(name: str, column: pa.ChunkedArray, rows: Rows) -> Cells:
     if pa.types.is_integer(kind) or pa.types.is_floating(kind):
         return value_cells.NumberCells(name, column.to_pandas())
     if pa.types.is_string(kind) or pa.types.is_large_string(kind) or pa.types.is_decimal(kind) or pa.types.is_null(kind):
-        return TextCells(name, _text(column), rows)
+        return TextCells(name, _text(column), rows, known=known)
     if pa.types.is_boolean(kind) or pa.types.is_temporal(kind):
         return value_cells.ObjectCells(name, column.to_pandas())
     return value_cells.ObjectCells(name, pd.Series([None if value is None else str(value) for value in column.to_pylist()], dtype=object))

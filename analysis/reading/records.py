@@ -1,15 +1,19 @@
 """What every kind of file is turned into first: records of cells at the head, then columns of text with row numbers."""
 
 from collections.abc import Sequence
-from dataclasses import dataclass, field
+from dataclasses import dataclass
 from typing import Protocol
 
 import pyarrow as pa
 
 from analysis.reading import spaces
-from analysis.table import Decision, Floats, Rows
+from analysis.reading.marks import NOTHING_KNOWN, Known
+from analysis.table import Decision, Floats, RawLine, Rows
 
 HEAD = 200  # records looked at to find the header
+RAW = 12  # lines kept as they stand, to be shown beside what was understood
+RAW_BYTES = 1 << 16  # from which they are taken
+_RAW_WIDTH = 500  # characters of such a line
 
 
 @dataclass(frozen=True)
@@ -53,8 +57,10 @@ class Found:
     """What a file turned out to be, before its header is looked for."""
 
     decisions: tuple[Decision, ...] = ()
-    comma_separated: bool = False
-    spans: tuple[Span, ...] = field(default=())
+    known: Known = NOTHING_KNOWN
+    spans: tuple[Span, ...] = ()
+    hidden: tuple[int, ...] = ()  # rows to leave out because the sheet hides them
+    raw: tuple[RawLine, ...] = ()
 
 
 class Source(Protocol):
@@ -77,6 +83,11 @@ def record_of(row: int, raw: Sequence[str], width: int = 0) -> Record:
     cells = [spaces.tidy(cell) for cell in raw]
     changed = any(before != after for before, after in zip(raw, cells, strict=True) if after)
     return Record(row, filled_part(cells), width, changed)
+
+
+def raw_line(row: int, text: str) -> RawLine:
+    """A line to be shown, cut where it is long."""
+    return RawLine(row, text if len(text) <= _RAW_WIDTH else text[: _RAW_WIDTH - 1] + "…")
 
 
 def filled_part(cells: Sequence[str]) -> tuple[str, ...]:

@@ -6,13 +6,13 @@ import numpy as np
 
 from analysis import refusals
 from analysis.reading import missing, sentinels
-from analysis.reading.half_read import Reading
+from analysis.reading.half_read import HalfRead
 from analysis.reading.words import counted, several
 
 _MARK_NAMES = {",": "comma", ".": "point"}
 
 
-def notes(reading: Reading, unit: str | None) -> tuple[str, ...]:
+def notes(reading: HalfRead, unit: str | None) -> tuple[str, ...]:
     """Everything worth telling about how a response was read, a sentence each."""
     parts = (
         _marks(reading),
@@ -26,11 +26,11 @@ def notes(reading: Reading, unit: str | None) -> tuple[str, ...]:
     return tuple(sentence for part in parts for sentence in part)
 
 
-def _rows(reading: Reading, chosen: np.ndarray[tuple[int], np.dtype[np.bool_]]) -> list[int]:
+def _rows(reading: HalfRead, chosen: np.ndarray[tuple[int], np.dtype[np.bool_]]) -> list[int]:
     return [int(row) for row in np.sort(reading.written.rows[reading.odd.rows_of(chosen)])]
 
 
-def _marks(reading: Reading) -> Iterator[str]:
+def _marks(reading: HalfRead) -> Iterator[str]:
     name = reading.written.name
     for mark in sorted(reading.decided.assumed):
         role = reading.decided.role(mark)
@@ -48,7 +48,7 @@ def _marks(reading: Reading) -> Iterator[str]:
             yield f"Column “{name}”: the {_MARK_NAMES[mark]} was read as a thousands mark."
 
 
-def _limits(reading: Reading) -> Iterator[str]:
+def _limits(reading: HalfRead) -> Iterator[str]:
     rows = _rows(reading, reading.is_limit)
     if rows:
         texts = [text for text, limit in zip(reading.odd.texts, reading.is_limit, strict=True) if limit]
@@ -58,7 +58,7 @@ def _limits(reading: Reading) -> Iterator[str]:
         )
 
 
-def _missing_words(reading: Reading) -> Iterator[str]:
+def _missing_words(reading: HalfRead) -> Iterator[str]:
     found = reading.odd.mask([missing.is_missing(text) or missing.is_infinite(text) for text in reading.odd.texts])
     rows = _rows(reading, found)
     if rows:
@@ -66,21 +66,21 @@ def _missing_words(reading: Reading) -> Iterator[str]:
         yield f"Column “{reading.written.name}”: {several(texts)} ({refusals.rows_told(rows)}) counted as missing."
 
 
-def _text(reading: Reading) -> Iterator[str]:
+def _text(reading: HalfRead) -> Iterator[str]:
     rows = _rows(reading, reading.is_text)
     if rows:
         texts = [text for text, chosen in zip(reading.odd.texts, reading.is_text, strict=True) if chosen]
         yield f"Column “{reading.written.name}”: {several(texts)} ({refusals.rows_told(rows)}) cannot be read as numbers: missing."
 
 
-def _footnotes(reading: Reading) -> Iterator[str]:
+def _footnotes(reading: HalfRead) -> Iterator[str]:
     marked = reading.odd.mask([numeral is not None and numeral.footnote for numeral in reading.odd.numerals])
     rows = _rows(reading, marked)
     if rows:
         yield f"Column “{reading.written.name}”: footnote marks behind numbers were dropped ({refusals.rows_told(rows)})."
 
 
-def _bare(reading: Reading, unit: str | None) -> Iterator[str]:
+def _bare(reading: HalfRead, unit: str | None) -> Iterator[str]:
     """A unit on some numbers and none on the rest is taken for all of them."""
     with_unit = reading.odd.mask([numeral is not None and bool(numeral.unit) for numeral in reading.odd.numerals]) & reading.is_number
     if unit is None or not with_unit.any():
@@ -91,7 +91,7 @@ def _bare(reading: Reading, unit: str | None) -> Iterator[str]:
         yield f"Column “{reading.written.name}”: {bare} of {numbers} numbers carry no unit and were taken as {unit} like the rest."
 
 
-def _sentinels(reading: Reading) -> Iterator[str]:
+def _sentinels(reading: HalfRead) -> Iterator[str]:
     """Codes such as -999 stay in, and are pointed out."""
     where = sentinels.find(reading.values)
     if where.size:

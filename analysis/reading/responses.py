@@ -6,7 +6,7 @@ import pyarrow.compute as pc
 
 from analysis import refusals
 from analysis.reading import marks, missing, odd_cells, offsets, response_notes, spaces, units
-from analysis.reading.half_read import Reading, Written
+from analysis.reading.half_read import HalfRead, Written
 from analysis.reading.numerals import Shape
 from analysis.table import Floats, LeftOut, Response, frozen
 
@@ -23,7 +23,7 @@ def read(written: Written) -> Response:
     NoNumbers where no row holds a number.
     """
     reading = _begin(written)
-    reading.decided = marks.decide(_shapes(reading), written.comma_separated)
+    reading.decided = marks.decide(_shapes(reading), written.known)
     _settle_plain_thousands(reading)
     reading.values[reading.odd.where] = reading.odd.values(reading.decided)
     _refuse_text(reading)
@@ -35,19 +35,19 @@ def read(written: Written) -> Response:
     return Response(frozen(reading.values), pivot, differences, unit, missing_rows, notes)
 
 
-def _begin(written: Written) -> Reading:
+def _begin(written: Written) -> HalfRead:
     """Cast what Arrow can cast and set the rest apart."""
     if written.numbers is None:
         whole = _cast(written.texts)
         if whole is not None:
-            return Reading(written, np.ones(whole.size, dtype=bool), whole, odd_cells.of(written.texts, np.empty(0, dtype=np.intp)))
+            return HalfRead(written, np.ones(whole.size, dtype=bool), whole, odd_cells.of(written.texts, np.empty(0, dtype=np.intp)))
     plain = pc.match_substring_regex(written.texts, _PLAIN).to_numpy(zero_copy_only=False).astype(bool)
     values = np.full(len(written.texts), np.nan)
     values[plain] = pc.cast(written.texts.filter(pa.array(plain)), pa.float64()).to_numpy(zero_copy_only=False)
     if written.numbers is not None:
         native = ~np.isnan(written.numbers)
         values[native], plain = written.numbers[native], plain | native
-    return Reading(written, plain, values, odd_cells.of(written.texts, np.flatnonzero(~plain)))
+    return HalfRead(written, plain, values, odd_cells.of(written.texts, np.flatnonzero(~plain)))
 
 
 def _cast(texts: pa.StringArray) -> Floats | None:
@@ -59,13 +59,13 @@ def _cast(texts: pa.StringArray) -> Floats | None:
     return values.copy() if np.isfinite(values).all() else None
 
 
-def _shapes(reading: Reading) -> set[Shape]:
+def _shapes(reading: HalfRead) -> set[Shape]:
     """What the numbers of the column say about its marks; plain cells are looked at only as far as needed."""
     shapes = {numeral.shape for numeral in reading.odd.numerals if numeral is not None}
     return shapes | _plain_shapes(reading, 200) or shapes | _plain_shapes(reading, None)
 
 
-def _plain_shapes(reading: Reading, most: int | None) -> set[Shape]:
+def _plain_shapes(reading: HalfRead, most: int | None) -> set[Shape]:
     """Shapes among the plain text cells; the numbers of a workbook have no marks. Empty where a sample is not decisive."""
     texts = _plain_texts(reading)
     if most is not None:
@@ -79,7 +79,7 @@ def _plain_shapes(reading: Reading, most: int | None) -> set[Shape]:
     return {_EITHER} if either else set()
 
 
-def _plain_texts(reading: Reading) -> pa.StringArray:
+def _plain_texts(reading: HalfRead) -> pa.StringArray:
     """The plain cells that are text: in a workbook those that are not its numbers."""
     chosen = reading.plain
     if reading.written.numbers is not None:
@@ -87,7 +87,7 @@ def _plain_texts(reading: Reading) -> pa.StringArray:
     return reading.written.texts if chosen.all() else reading.written.texts.filter(pa.array(chosen))
 
 
-def _settle_plain_thousands(reading: Reading) -> None:
+def _settle_plain_thousands(reading: HalfRead) -> None:
     """Read “1.234” among the plain cells once more where the column's point is a thousands mark."""
     if reading.decided.point != "thousands":
         return
@@ -99,7 +99,7 @@ def _settle_plain_thousands(reading: Reading) -> None:
     reading.values[either] = np.round(reading.values[either])
 
 
-def _refuse_text(reading: Reading) -> None:
+def _refuse_text(reading: HalfRead) -> None:
     """Turn the column down where most of it is text, or where nothing in it is a number."""
     where = reading.odd.rows_of(reading.is_text)
     if 2 * where.size > reading.values.size:
@@ -109,7 +109,7 @@ def _refuse_text(reading: Reading) -> None:
         raise refusals.NoNumbers(reading.written.name, int(reading.values.size))
 
 
-def _unit(reading: Reading) -> str | None:
+def _unit(reading: HalfRead) -> str | None:
     """The one unit of the column; raises MixedUnits where there are several."""
     found: dict[str, int] = {}
     for index in np.flatnonzero(reading.is_number | reading.is_limit):
@@ -124,7 +124,7 @@ def _unit(reading: Reading) -> str | None:
     return named or (units.normal(reading.written.unit) if reading.written.unit else None) or reading.written.unit
 
 
-def _decimals(reading: Reading) -> list[str]:
+def _decimals(reading: HalfRead) -> list[str]:
     """The decimal behind every value; a number of a workbook is the shortest decimal that gives it."""
     native = reading.written.numbers
     texts = reading.written.texts.to_pylist() if native is None else [repr(float(value)) for value in reading.values]
@@ -135,7 +135,7 @@ def _decimals(reading: Reading) -> list[str]:
     return texts
 
 
-def _missing(reading: Reading) -> tuple[LeftOut, ...]:
+def _missing(reading: HalfRead) -> tuple[LeftOut, ...]:
     """One entry with its reason for every value that is not there."""
     rows = reading.written.rows
     why = [_why(reading, index) for index in range(len(reading.odd.texts))]
@@ -144,7 +144,7 @@ def _missing(reading: Reading) -> tuple[LeftOut, ...]:
     return tuple(LeftOut(int(rows[index]), reasons.get(int(index), "not a finite number")) for index in lost)
 
 
-def _why(reading: Reading, index: int) -> str:
+def _why(reading: HalfRead, index: int) -> str:
     text = reading.odd.texts[index]
     if not text:
         return f"no value of {reading.written.name}"

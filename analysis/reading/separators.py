@@ -4,14 +4,15 @@ import csv
 import re
 from collections import Counter
 from collections.abc import Iterable, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
-from analysis.table import Decision
+from analysis.reading.choices import SEPARATORS, Reading
+from analysis.table import Alternative, Decision
 
-NAMES = {",": "commas", ";": "semicolons", "\t": "tabs", "|": "pipes", " ": "spaces", "  ": "runs of spaces"}
 _WEIGHT = {"\t": 1.0, ";": 0.99, "|": 0.98, ",": 0.97, "  ": 0.85, " ": 0.75}  # at equal consistency the surer sign wins
 _DECLARED = re.compile(rb"(?:\"?sep=(.)\"?)[ ,;\t]*(?:\n|$)", re.IGNORECASE)
 _SAMPLE_LINES = 200
+_OFTEN = 0.5  # share of lines that a separator cuts alike from which it is offered
 _GAPS = {" ": re.compile(r'("(?:[^"]|"")*")|[ \t]+'), "  ": re.compile(r'("(?:[^"]|"")*")|\t| {2,}[ \t]*')}
 
 
@@ -22,26 +23,39 @@ class Separated:
     data: bytes
     delimiter: str
     declared: int
-    decisions: tuple[Decision, ...]
+    decision: Decision
 
 
-def find(data: bytes) -> Separated:
-    """Find the separator of a text file (UTF-8, \\n line ends); runs of spaces are turned into tabs."""
-    match = _DECLARED.match(data)
-    if match:
-        delimiter = match[1].decode()
-        sentence = f"The first line names the separator ({NAMES.get(delimiter, delimiter)})."
-        return Separated(data, delimiter, 1, (Decision("separator", sentence),))
-    delimiter = guess(_sample(data))
-    decisions = () if delimiter == "," else (_decision(delimiter),)
+def find(data: bytes, reading: Reading) -> Separated:
+    """Find the separator of a text file (UTF-8, \\n line ends), unless one was asked for; runs of spaces are turned into tabs."""
+    declared = _DECLARED.match(data)
+    lines = _sample(data)
+    found = declared[1].decode() if declared else guess(lines)
+    delimiter = next((mark for mark, name in SEPARATORS.items() if name == reading.separator), found)
+    decision = Decision(
+        "separator",
+        f"The first line names the separator ({_name(found)})." if declared else f"The cells are separated by {_name(delimiter)}.",
+        _alternatives(delimiter, found, lines, reading),
+        ordinary=reading.separator is not None or (delimiter == "," and not declared),
+    )
     if delimiter in _GAPS:
-        return Separated(_tabbed(data, delimiter), "\t", 0, decisions)
-    return Separated(data, delimiter, 0, decisions)
+        data, delimiter = _tabbed(data, delimiter), "\t"
+    return Separated(data, delimiter, int(declared is not None), decision)
 
 
-def _decision(delimiter: str) -> Decision:
-    others = tuple(name for mark, name in NAMES.items() if mark != delimiter)
-    return Decision("separator", f"The cells are separated by {NAMES[delimiter]}.", others)
+def _name(mark: str) -> str:
+    return SEPARATORS.get(mark, mark)
+
+
+def _alternatives(delimiter: str, found: str, lines: Sequence[str], reading: Reading) -> tuple[Alternative, ...]:
+    """The separators that would give several cells at least; the one found of itself is that of no request."""
+    marks = [mark for mark in SEPARATORS if mark == found or _consistency(lines, mark) >= _OFTEN]
+    marks += [found] if found not in SEPARATORS else []
+    return tuple(
+        Alternative(_name(mark), replace(reading, separator=None if mark == found else SEPARATORS[mark]))
+        for mark in marks
+        if mark != delimiter
+    )
 
 
 def _sample(data: bytes) -> list[str]:

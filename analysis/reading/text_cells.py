@@ -10,6 +10,7 @@ import pyarrow as pa
 
 from analysis.reading import missing, numerals, responses, spaces, text_levels
 from analysis.reading.half_read import Written
+from analysis.reading.marks import NOTHING_KNOWN, Known
 from analysis.table import Floats, Levels, Response, Rows
 
 _SAMPLE = 2000  # cells looked at to tell whether a column holds numbers
@@ -24,7 +25,7 @@ class TextCells:
     rows: Rows  # numbers of the rows in the file
     numbers: Floats | None = None  # the values of number cells in a workbook, NaN for its other cells
     unit: str | None = None  # from a row of units, or from the percent format of a workbook
-    comma_separated: bool = False
+    known: Known = NOTHING_KNOWN
     filled_from: npt.NDArray[np.intp] | None = None  # for levels: the row of the table whose cell stands for this one
 
     @cached_property
@@ -35,12 +36,12 @@ class TextCells:
 
     def response(self) -> Response:
         """Read the cells as measurements."""
-        return responses.read(Written(self.name, self.texts, self.numbers, self.rows, self.unit, self.comma_separated))
+        return responses.read(Written(self.name, self.texts, self.numbers, self.rows, self.unit, self.known))
 
     def levels(self) -> Levels:
         """Read the cells as levels, filled down where the layout says so."""
         texts = self.texts if self.filled_from is None else self.texts.take(pa.array(self.filled_from))
-        return text_levels.read(self.name, texts, self.comma_separated)
+        return text_levels.read(self.name, texts, self.known)
 
     def text(self, start: int, stop: int) -> list[str]:
         """The cells of these rows, tidied."""

@@ -26,12 +26,12 @@ class Level:
     unit: str
 
 
-def read(name: str, texts: pa.StringArray, comma_separated: bool) -> Levels:
+def read(name: str, texts: pa.StringArray, known: marks.Known) -> Levels:
     """Read a column of text as levels; only an empty cell is missing, and any text that is a number is that number."""
     encoded = texts.dictionary_encode()
     raw: list[str] = encoded.dictionary.to_pylist()
     tidy = spaces.tidy_array(encoded.dictionary).to_pylist()
-    levels, place = _distinct(tidy, comma_separated) if len(tidy) <= _MANY else _distinct_many(tidy)
+    levels, place = _distinct(tidy, known) if len(tidy) <= _MANY else _distinct_many(tidy)
     order = _order(levels)
     rank = np.full(len(levels) + 1, -1, dtype=np.intp)  # the last entry serves the blank, whose place is -1
     rank[order] = np.arange(len(levels))
@@ -44,10 +44,10 @@ def read(name: str, texts: pa.StringArray, comma_separated: bool) -> Levels:
     return Levels(codes, tuple(level.label for level in ordered), _amounts(ordered), notes)
 
 
-def _distinct(texts: Sequence[str], comma_separated: bool) -> tuple[list[Level], list[int]]:
+def _distinct(texts: Sequence[str], known: marks.Known) -> tuple[list[Level], list[int]]:
     """Return the different levels in the order of the file, and for each text the place of its level (-1 for blank)."""
     found = [numerals.find(text) for text in texts]
-    decided = marks.decide((numeral.shape for numeral in found if numeral is not None), comma_separated)
+    decided = marks.decide((numeral.shape for numeral in found if numeral is not None), known)
     places: dict[Identity, int] = {}
     levels: list[Level] = []
     place = []

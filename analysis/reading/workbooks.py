@@ -9,13 +9,14 @@ import numpy as np
 import pyarrow as pa
 
 from analysis import refusals
-from analysis.reading import archives, books, cell_values, ods_marks, ole, xls_marks, xlsx_marks
+from analysis.reading import archives, books, cell_values, ods_marks, ole, sheet_choice, xls_marks, xlsx_marks
 from analysis.reading.books import Book
 from analysis.reading.cell_values import Value
-from analysis.reading.records import HEAD, Body, Found, Record, record_of
+from analysis.reading.choices import Reading
+from analysis.reading.marks import Known
+from analysis.reading.records import HEAD, RAW, Body, Found, Record, filled_part, raw_line, record_of
 from analysis.reading.sheet_marks import Marks
 from analysis.reading.signatures import Kind
-from analysis.reading.words import several
 from analysis.table import Decision
 
 MOST_CELLS = 40_000_000  # of the rectangle that a sheet spans
@@ -57,7 +58,7 @@ class Sheet:
         return "%" if places and all((row, index) in self.marks.percent for row in places) else None
 
 
-def read(data: bytes, kind: Kind, wanted: str | None) -> Sheet:
+def read(data: bytes, kind: Kind, reading: Reading) -> Sheet:
     """Read the wanted sheet of a workbook, or the first that holds a table.
 
     Raises MissingSheet, NoSheetWithTable, Encrypted, DamagedFile, UnpacksTooLarge or TooManyCellsInSheet.
@@ -66,12 +67,12 @@ def read(data: bytes, kind: Kind, wanted: str | None) -> Sheet:
         archives.check(data)
     marks = _marks(data, kind)
     book = books.opened_apart(data) if kind == "xls" else books.opened(data)
-    if wanted is not None and wanted not in book.names:
-        raise refusals.MissingSheet(wanted, book.names)
-    if wanted is not None:
-        return _sheet(book, marks, wanted, [])
+    if reading.sheet is not None and reading.sheet not in book.names:
+        raise refusals.MissingSheet(reading.sheet, book.names)
+    if reading.sheet is not None:
+        return _sheet(book, marks, reading.sheet, reading)
     for name in book.names:
-        sheet = _sheet(book, marks, name, [other for other in book.names if other != name])
+        sheet = _sheet(book, marks, name, reading)
         if _holds_table(sheet) or len(book.names) == 1:
             return sheet
     raise refusals.NoSheetWithTable(book.names)
@@ -94,21 +95,23 @@ def _refuse_vast(name: str, marks: Marks) -> None:
         raise refusals.TooManyCellsInSheet(name, marks.rows, marks.columns)
 
 
-def _sheet(book: Book, marks_of: Callable[[str], Marks], name: str, others: Sequence[str]) -> Sheet:
+def _sheet(book: Book, marks_of: Callable[[str], Marks], name: str, reading: Reading) -> Sheet:
     marks = marks_of(name)
     _refuse_vast(name, marks)
     values, spans = book.load(name)
     marks.spans.extend([] if marks.spans else spans)  # those of .ods are known already
-    return Sheet(name, cell_values.marked(values, marks), marks, Found(_decisions(name, others, marks), spans=tuple(marks.spans)))
+    cells = cell_values.marked(values, marks)
+    decisions = (sheet_choice.decision(name, book.names, reading), *_decisions(marks, reading))
+    hidden = tuple(marks.hidden) if reading.hidden == "leave out" else ()
+    raw = tuple(
+        raw_line(i + 1, " | ".join(filled_part([cell_values.text_of(value) for value in row]))) for i, row in enumerate(cells[:RAW])
+    )
+    return Sheet(name, cells, marks, Found(decisions, Known(decimal=reading.decimal), tuple(marks.spans), hidden, raw))
 
 
-def _decisions(name: str, others: Sequence[str], marks: Marks) -> tuple[Decision, ...]:
-    decisions = []
-    if others:
-        sentence = f"The sheet “{name}” was read; the workbook also holds {several(others, 8)}."
-        decisions.append(Decision("sheet", sentence, tuple(others)))
-    if marks.hidden:
-        decisions.append(Decision("hidden", f"Hidden rows of the sheet were kept ({refusals.rows_told(marks.hidden)})."))
+def _decisions(marks: Marks, reading: Reading) -> tuple[Decision, ...]:
+    """What the marks of a sheet have to tell."""
+    decisions = [sheet_choice.hidden(marks.hidden, reading)]
     if marks.unsaved:
         cells = [cell_values.reference(*cell) for cell in marks.unsaved]
         told = ", ".join(cells[:5]) + (f" and {len(cells) - 5} more" if len(cells) > 5 else "")

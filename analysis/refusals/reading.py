@@ -37,6 +37,16 @@ class HeaderWithoutRows(Refusal):
         super().__init__(f"The file has a header{named} but no rows of data below it: add the observations, one in each row.")
 
 
+class NoSuchHeader(Refusal):
+    """A row asked for as the header that cannot be one."""
+
+    def __init__(self, row: int, last: int) -> None:
+        self.row = row
+        super().__init__(
+            f"Row {row} cannot be the header: it is blank, or not among the first {last} rows; choose a filled row above the data."
+        )
+
+
 class NoNumericColumn(Refusal):
     """A table in which nothing is a number."""
 

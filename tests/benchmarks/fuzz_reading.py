@@ -15,7 +15,7 @@ from collections.abc import Callable
 import numpy as np
 import pandas as pd
 
-from analysis.reading import read_table
+from analysis.reading.entry import read_table
 from analysis.refusals import Refusal
 from analysis.table import Table
 from tests.analysis.reading import files

@@ -14,7 +14,7 @@ from tempfile import TemporaryDirectory
 import numpy as np
 import pandas as pd
 
-from analysis.reading import read_table
+from analysis.reading.entry import read_table
 from analysis.table import Table
 
 ROUNDS = 5

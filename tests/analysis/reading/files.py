@@ -10,7 +10,7 @@ import pandas as pd
 import xlwt
 from openpyxl.worksheet.worksheet import Worksheet
 
-from analysis.reading import read_table
+from analysis.reading.entry import read_table
 from analysis.table import Table
 
 Row = Sequence[object]

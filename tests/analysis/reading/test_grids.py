@@ -4,7 +4,7 @@ import numpy as np
 import pandas as pd
 import pytest
 
-from analysis.reading import read_table
+from analysis.reading.entry import read_table
 from analysis.table import Table
 from tests.analysis.reading.files import labels, read, values, xlsx
 

@@ -3,7 +3,7 @@
 import pytest
 
 from analysis import refusals
-from analysis.reading import read_table
+from analysis.reading.entry import read_table
 from analysis.refusals import Refusal
 from tests.analysis.reading.files import BALANCED, read, text
 

@@ -5,7 +5,7 @@ import codecs
 import pytest
 
 from analysis import refusals
-from analysis.reading import read_table
+from analysis.reading.entry import read_table
 from tests.analysis.reading.files import BALANCED, YIELDS, labels, read, text, told, values
 
 DIALECTS = {

@@ -8,7 +8,7 @@ import pandas as pd
 import pytest
 
 from analysis import refusals
-from analysis.reading import read_table
+from analysis.reading.entry import read_table
 from tests.analysis.reading.files import labels, parquet, told, values
 
 FRAME = pd.DataFrame(

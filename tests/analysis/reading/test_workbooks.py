@@ -9,7 +9,8 @@ import openpyxl
 import pytest
 
 from analysis import refusals
-from analysis.reading import archives, read_table, xlsx_marks, xlsx_scan
+from analysis.reading import archives, xlsx_marks, xlsx_scan
+from analysis.reading.entry import read_table
 from analysis.reading.sheet_marks import Marks
 from tests.analysis.reading.files import (
     BALANCED,
