@@ -1,25 +1,25 @@
-"""The largest of several correlated t statistics without any structure, by sums over a fixed lattice of points."""
+"""The largest of several correlated normals without any structure, by sums over a fixed lattice of points."""
 
 import numpy as np
-from scipy import special, stats
+from scipy import special
 
 from analysis.distributions.pieces import Floats
 
-WORK = 200_000  # points times pairs, which holds the time of one matrix under a second or two
+WORK = 400_000  # points times pairs, which holds the time of one matrix under a second or two
 FEWEST, MOST = 500, 8000
 SMALLEST = 1e-13  # conditional variance, so that a singular matrix gives a very steep step instead of none
 
 
-def log_ratio(d: Floats, matrix: Floats, simple: Floats, df: float) -> Floats:
-    """Return log of P(max |T| > d) under one correlation (m, m) over that under another, d (points,), all above 0.
+def log_ratio(d: Floats, matrix: Floats, simple: Floats) -> Floats:
+    """Return log of P(max |Z| > d) under one correlation (m, m) over that under another, d (points,).
 
     Both sums run over the same points, so that most of their error cancels: the nearer the two matrices, the better the ratio.
     """
     m = len(matrix)
     count = int(np.clip(WORK // (m * (m - 1) // 2), FEWEST, MOST))
-    points = lattice(count, m + 1)
-    first, bound = conditioned(d[:, None], points[0], points[1], df)
-    return np.asarray(np.log(overcount(matrix, first, bound, points[2:]) / overcount(simple, first, bound, points[2:])), dtype=np.float64)
+    points = lattice(count, m - 1)
+    first, bound = -special.ndtri(special.ndtr(-d[:, None]) * points[0]), np.broadcast_to(d[:, None], (d.size, count))
+    return np.asarray(np.log(overcount(matrix, first, bound, points[1:]) / overcount(simple, first, bound, points[1:])), dtype=np.float64)
 
 
 def lattice(count: int, dimensions: int) -> Floats:
@@ -32,23 +32,10 @@ def lattice(count: int, dimensions: int) -> Floats:
     return np.asarray(np.abs(2 * (steps % 1.0) - 1), dtype=np.float64)
 
 
-def conditioned(d: Floats, of_t: Floats, of_s: Floats, df: float) -> tuple[Floats, Floats]:
-    """Return one normal given that its |t| exceeds d, and d s, the bound for the other normals; both (points of d, lattice).
-
-    The t is drawn from its own tail, and given t, (df + t²) s² is chi-square with df + 1: no point is wasted below d, however far out.
-    """
-    tail = stats.t.sf(d, df) * of_t
-    if np.isinf(df):
-        return -special.ndtri(tail), d + np.zeros_like(tail)
-    t = -special.stdtrit(df, tail)
-    s = np.sqrt(2 * special.gammaincinv((df + 1) / 2, of_s) / (df + t * t))
-    return np.asarray(t * s, dtype=np.float64), np.asarray(d * s, dtype=np.float64)
-
-
 def overcount(correlation: Floats, first: Floats, bound: Floats, points: Floats) -> Floats:
-    """Return P(max |T| > d) over P(|T| > d) of a single one, (points of d,).
+    """Return P(max |Z| > d) over P(|Z| > d) of a single one, (points of d,).
 
-    P(max |T| > d) is the sum over i of P(|T[i]| > d and all earlier |T| <= d); by symmetry T[i] > d stands for both signs.
+    P(max |Z| > d) is the sum over i of P(|Z[i]| > d and all earlier |Z| <= d); by symmetry Z[i] > d stands for both signs.
     """
     shares = [earlier_within(correlation, i, first, bound, points).mean(axis=-1) for i in range(1, len(correlation))]
     return np.asarray(1 + sum(shares), dtype=np.float64)
@@ -60,7 +47,7 @@ def earlier_within(correlation: Floats, i: int, first: Floats, bound: Floats, po
     The variables are taken one at a time, each given those before. Source: Genz (1992), J. Comput. Graph. Stat. 1, 141-149.
     """
     order = [i, *range(i)]
-    root = _cholesky(correlation[np.ix_(order, order)])
+    root = root_of(correlation[np.ix_(order, order)])
     drawn, chance = [first], np.ones_like(first)
     for j in range(1, i + 1):
         mean = sum((root[j, k] * drawn[k] for k in range(j)), np.zeros_like(first))
@@ -71,7 +58,7 @@ def earlier_within(correlation: Floats, i: int, first: Floats, bound: Floats, po
     return chance
 
 
-def _cholesky(matrix: Floats) -> Floats:
+def root_of(matrix: Floats) -> Floats:
     """Return the lower triangular root of a correlation matrix that may be singular."""
     root = np.zeros_like(matrix)
     for j in range(len(matrix)):

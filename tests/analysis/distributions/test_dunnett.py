@@ -8,9 +8,9 @@ from pathlib import Path
 import numpy as np
 import pytest
 from numpy.typing import NDArray
-from scipy import stats
+from scipy import integrate, stats
 
-from analysis.distributions import dunnett, one_factor
+from analysis.distributions import departure, dunnett, lattice, nested, one_factor
 
 HERE = Path(__file__).parent
 REFERENCE = HERE.parents[1] / "reference"
@@ -81,7 +81,7 @@ def test_one_comparison_or_several_alike_are_a_t_test(matrix: Matrix) -> None:
 
 
 def test_a_small_departure_from_products_changes_little() -> None:
-    # The two ways of computing meet: a matrix that is a product but for 1e-7 goes by the lattice.
+    # The two ways of computing meet: a matrix that is a product but for 1e-7 goes by the series.
     loadings = [0.5, 0.7, 0.6, 0.8]
     nudged = products(loadings)
     nudged[0, 1] = nudged[1, 0] = nudged[0, 1] + 1e-7
@@ -128,3 +128,69 @@ def test_what_is_no_number_stays_none() -> None:
     found = dunnett.sf([np.nan, np.inf, 0.0], products([0.5, 0.7]), 5)
     assert np.isnan(found[0])
     assert found[1:].tolist() == [0, 1]
+
+
+EXTREME = np.array([[1, 0.25, 0.44], [0.25, 1, 0.9], [0.44, 0.9, 1]])  # no loadings within ±1 have these products
+
+
+def by_integration(d: float, matrix: Matrix) -> float:
+    """Return P(max |Z| > d) of three normals by adaptive integration over the first of the box's integral of their density."""
+
+    def others_within(z: float) -> float:
+        mean, rest = matrix[1:, 0] * z, matrix[1:, 1:] - np.outer(matrix[1:, 0], matrix[1:, 0])
+        c, slope = math.sqrt(rest[0, 0]), rest[0, 1] / rest[0, 0]
+        last = math.sqrt(rest[1, 1] - rest[0, 1] * slope)
+
+        def inner(y: float) -> float:
+            centre = mean[1] + slope * (y - mean[0])
+            chance = stats.norm.cdf((d - centre) / last) - stats.norm.cdf((-d - centre) / last)
+            return float(stats.norm.pdf((y - mean[0]) / c) / c * chance)
+
+        return float(integrate.quad(inner, -d, d, epsabs=1e-11, limit=200)[0])
+
+    return 1 - float(integrate.quad(lambda z: stats.norm.pdf(z) * others_within(z), -d, d, epsabs=1e-10, limit=200)[0])
+
+
+@pytest.mark.parametrize("d", [0.9, 2.2])
+def test_three_of_any_correlation_agree_with_adaptive_integration(d: float) -> None:
+    # scipy's QUADPACK, one integral inside another; its tolerance here is 1e-10 absolute.
+    assert one_factor.exact_loadings(EXTREME) is None
+    assert float(dunnett.sf(d, EXTREME, math.inf)) == pytest.approx(by_integration(d, EXTREME), abs=1e-8)
+
+
+@pytest.mark.parametrize("loadings", [[0.5, 0.7, 0.6], [0.3, 0.9, 0.6, -0.4]])
+def test_nested_quadrature_gives_what_one_factor_gives(loadings: list[float]) -> None:
+    d = np.array([0.2, 1.0, 2.5, 6.0, 15.0])
+    assert nested.log_tail(d, products(loadings)) == pytest.approx(one_factor.log_tail(d, np.array(loadings)), abs=1e-9)
+
+
+def test_the_series_gives_what_the_right_loadings_give() -> None:
+    # A matrix of products, told as the products of slightly wrong loadings and the rest: both ways must give one tail.
+    right = np.array([0.55, 0.62, 0.7, 0.66, 0.75, 0.58, 0.71])
+    wrong = right + 0.015 * np.array([1, -1, 1, -1, -1, 1, 0])
+    excess = products(list(right)) - products(list(wrong))
+    d = np.array([0.5, 2.0, 2.8, 5.0])
+    found = departure.log_ratio(d, wrong, excess)
+    assert found is not None
+    moved = one_factor.log_tail(d, right) - one_factor.log_tail(d, wrong)
+    assert np.abs(moved).max() > 1e-5  # there is something to find
+    assert found == pytest.approx(moved, abs=2e-7)
+
+
+def test_series_nested_quadrature_and_lattice_meet() -> None:
+    matrix = additive(UNEQUAL)
+    loadings = one_factor.nearest_loadings(matrix)
+    simple = products(list(loadings))
+    d = np.array([0.7, 2.0, 2.8, 4.0])
+    exact = nested.log_tail(d, matrix) - one_factor.log_tail(d, loadings)
+    assert departure.log_ratio(d, loadings, matrix - simple) == pytest.approx(exact, abs=1e-6)
+    assert lattice.log_ratio(d, matrix, simple) == pytest.approx(exact, abs=2e-5)  # what its points leave
+
+
+def test_a_far_departure_is_left_to_the_lattice() -> None:
+    # Two families of three that have nothing in common: no loadings come near, and the series says so.
+    matrix = np.kron(np.eye(2), np.full((3, 3), 0.8)) + 0.2 * np.eye(6)
+    loadings = one_factor.nearest_loadings(matrix)
+    assert departure.log_ratio(np.array([1.0, 2.0]), loadings, matrix - products(list(loadings))) is None
+    one = dunnett.sf(2.0, products([math.sqrt(0.8)] * 3), math.inf)
+    assert float(dunnett.sf(2.0, matrix, math.inf)) == pytest.approx(float(1 - (1 - one) ** 2), rel=1e-4)  # independent families multiply
