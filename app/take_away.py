@@ -8,7 +8,7 @@ from dataclasses import dataclass
 
 from analysis.findings import Findings
 from app import boards
-from app.exports import deck, images, workbook
+from app.exports import csv_files, deck, images, script, sheets, workbook
 from app.figures import grid, interaction
 from app.look import PRINT
 
@@ -47,6 +47,22 @@ def parcels(findings: Findings) -> tuple[Parcel, ...]:
             f"{name}.xlsx",
             WORKBOOK,
             lambda: workbook.build(findings),
+        ),
+        Parcel(
+            "save_tables",
+            "Save the tables",
+            "The same tables as plain text, one .csv file each.",
+            f"{name}-tables.zip",
+            "application/zip",
+            lambda: csv_files.archive(sheets.all_sheets(findings)),
+        ),
+        Parcel(
+            "save_script",
+            "Save the script",
+            "A Python file with the observations in it that computes tables, means and comparisons again, without this program.",
+            f"{name}-recompute.py",
+            "text/x-python",
+            lambda: script.build(findings, f"{name}-recompute.py"),
         ),
         Parcel(
             "save_figures",

@@ -6,6 +6,7 @@ import numpy as np
 import pandas as pd
 
 from analysis.findings import Findings
+from analysis.table import Table
 from app import speaker, tabled, words
 
 # How many rows a sheet holds; what is beyond is counted in the first sheet.
@@ -37,36 +38,31 @@ def all_sheets(findings: Findings) -> dict[str, pd.DataFrame]:
 
 def data(findings: Findings) -> pd.DataFrame:
     """Return every row of the file that held an observation: those analysed with fit and residual, the others with the reason."""
-    design, study = findings.design, findings.study
-    seen = findings.observations
-    used = pd.DataFrame(
-        {
-            "row of the file": seen["file_row"],
-            design["row_factor"]: seen["row"],
-            design["column_factor"]: seen["column"],
-            **({str(study.block): seen["block"]} if study.block else {}),
-            words.response_label(findings): seen["value"],
-            "fitted": seen["fitted"],
-            "residual": seen["residual"],
-            "analysed": "yes",
-            "reason": "",
-        }
+    seen, blocks = findings.observations, [findings.study.block] if findings.study.block else []
+    used = seen[["file_row", "row", "column", *(["block"] if blocks else []), "value", "fitted", "residual"]].assign(
+        analysed="yes", reason=""
     )
-    return pd.concat([used, _left_out(findings, list(used.columns))], ignore_index=True)
+    rows = pd.concat([used, _left_out(findings, list(used.columns))], ignore_index=True)
+    factors = (findings.design["row_factor"], findings.design["column_factor"])
+    heads = ["row of the file", *factors, *blocks, words.response_label(findings), "fitted", "residual", "analysed", "reason"]
+    return rows.set_axis(heads, axis=1)
 
 
 def _left_out(findings: Findings, columns: Sequence[str]) -> pd.DataFrame:
     """Return the rows that take no part, with what the file says there."""
     study, table = findings.study, findings.study.table
     place = {int(row): index for index, row in enumerate(table.file_rows)}
-    roles = {str(name): str(name) for name in (study.row_factor, study.column_factor, study.block) if name}
-    roles[words.response_label(findings)] = str(study.response)
+    roles = {"row": study.row_factor, "column": study.column_factor, "block": study.block, "value": study.response}
     rows = []
     for entry in findings.design["left_out"]:
         index = place.get(entry["row"])
-        told = {} if index is None else {head: (table.column(name).text(index, index + 1) or [""])[0] for head, name in roles.items()}
-        rows.append({"row of the file": entry["row"], **told, "analysed": "no", "reason": entry["why"]})
+        told = {} if index is None else {head: _cell_text(table, name, index) for head, name in roles.items() if name}
+        rows.append({"file_row": entry["row"], **told, "analysed": "no", "reason": entry["why"]})
     return pd.DataFrame(rows, columns=list(columns), dtype=object)
+
+
+def _cell_text(table: Table, column: str, index: int) -> str:
+    return (table.column(column).text(index, index + 1) or [""])[0]
 
 
 def cells(findings: Findings) -> pd.DataFrame:

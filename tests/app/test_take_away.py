@@ -15,7 +15,9 @@ PARCELS = {parcel.key: parcel for parcel in take_away.parcels(opening.findings(o
 
 
 def test_files_are_named_after_the_response() -> None:
-    assert [parcel.file for parcel in PARCELS.values()] == ["yield-g.pptx", "yield-g.xlsx", "yield-g-figures.zip"]
+    assert [parcel.file for parcel in PARCELS.values()] == [
+        "yield-g.pptx", "yield-g.xlsx", "yield-g-tables.zip", "yield-g-recompute.py", "yield-g-figures.zip"
+    ]  # fmt: skip
 
 
 def test_the_slides_and_the_workbook_open() -> None:
