@@ -16,6 +16,7 @@ from analysis.table import LeftOut, Levels, Response, counts
 from analysis.units import averaged_to_units
 
 MOST_CELLS = 40_000
+NOT_KEPT = "which is not among the levels kept"
 SMALLEST_SPAN, LARGEST_SPAN = 1e-70, 1e70  # the fourth powers of what lies between stay within double precision
 Chosen = slice | NDArray[np.intp]  # the table rows analysed; a slice takes all of them without a copy
 Kept = Mapping[str, tuple[int, ...] | None]
@@ -92,7 +93,7 @@ def _usable(study: Study, response: Response, parts: Mapping[str, Levels], kept:
 
 
 def _not_kept(name: str, levels: Levels, i: int) -> str:
-    return f"“{name}” is “{levels.labels[levels.codes[i]]}”, which is not among the levels kept"
+    return f"“{name}” is “{levels.labels[levels.codes[i]]}”, {NOT_KEPT}"
 
 
 def _factor(name: str, levels: Levels, kept: tuple[int, ...] | None, rows: Chosen) -> Factor:

@@ -1,14 +1,15 @@
 """What a change of one column's levels makes of a study: renamed, merged, moved, left out, taken back in."""
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Any
 
+from analysis import counted
 from analysis.reading import look_alikes
 from analysis.refusals import LevelNameMissing
 from analysis.relabelling import relabelled
 from analysis.study import Study
-from analysis.table import Levels, counts
+from analysis.table import Levels
 
 Changes = Mapping[str, Any]  # fields of a study and their new values, as `dataclasses.replace` takes them
 
@@ -18,33 +19,36 @@ class Level:
     """One level as it stands now."""
 
     name: str
-    rows: int  # of the table that hold it, whatever else they lack
+    rows: int  # analysed; of a level left out, those that it would bring
     analysed: bool  # False where the level was left out
 
 
 @dataclass(frozen=True)
 class Suggestion:
-    """A level that may be another one written differently."""
+    """Levels that may be another one written differently."""
 
-    level: Level
-    into: Level  # the commoner of the two
+    levels: tuple[Level, ...]
+    into: Level  # the commonest
 
 
 def levels_of(study: Study, column: str) -> tuple[Level, ...]:
     """Return the levels of a column under their names of now: those analysed in their order, then those left out."""
     levels = _levels(study, column)
-    rows = dict(zip(levels.labels, counts(levels.codes, len(levels.labels)).tolist(), strict=True))
+    rows = counted.level_rows(study, column)
     kept = _order(study, column, levels)
     gone = [label for label in levels.labels if label not in kept]
     return (*(Level(name, rows[name], True) for name in kept), *(Level(name, rows[name], False) for name in gone))
 
 
 def suggestions(study: Study, column: str) -> tuple[Suggestion, ...]:
-    """Return the merges that look-alike levels suggest, without those that were refused."""
-    levels = {level.name: level for level in levels_of(study, column)}
+    """Return the merges that look-alike levels suggest, one for each level that stays, without those that were refused."""
     refused = study.apart.get(column, {})
-    found = look_alikes.merges(_levels(study, column))
-    return tuple(Suggestion(levels[rarer], levels[into]) for rarer, into in found.items() if refused.get(rarer) != into)
+    groups: dict[str, list[str]] = {}
+    for rarer, into in look_alikes.merges(_levels(study, column)).items():
+        if refused.get(rarer) != into:
+            groups.setdefault(into, []).append(rarer)
+    levels = {level.name: level for level in levels_of(study, column)} if groups else {}
+    return tuple(Suggestion(tuple(levels[name] for name in names), levels[into]) for into, names in groups.items())
 
 
 def settled_notes(study: Study, column: str) -> frozenset[str]:
@@ -54,14 +58,17 @@ def settled_notes(study: Study, column: str) -> frozenset[str]:
     return frozenset(offered) - frozenset(look_alikes.notes(column, unsettled))
 
 
-def merged(study: Study, column: str, level: str, into: str) -> Changes:
-    """Return the changes that make one level part of another."""
-    return _named(study, column, level, into)
+def merged(study: Study, column: str, levels: Sequence[str], into: str) -> Changes:
+    """Return the changes that make levels part of another."""
+    changes: dict[str, Any] = {}
+    for level in levels:
+        changes |= _named(replace(study, **changes), column, level, into)
+    return changes
 
 
-def kept_apart(study: Study, column: str, level: str, other: str) -> Changes:
-    """Return the change that remembers that two look-alike levels are two."""
-    return {"apart": {**study.apart, column: {**study.apart.get(column, {}), level: other}}}
+def kept_apart(study: Study, column: str, levels: Sequence[str], other: str) -> Changes:
+    """Return the change that remembers that look-alike levels are not the other one."""
+    return {"apart": {**study.apart, column: {**study.apart.get(column, {}), **dict.fromkeys(levels, other)}}}
 
 
 def renamed(study: Study, column: str, level: str, name: str) -> Changes:

@@ -7,7 +7,7 @@ from typing import Any
 
 import streamlit as st
 
-from analysis import analyse, log, read_table
+from analysis import analyse, counted, log, read_table
 from analysis.findings import Findings
 from analysis.implausible import Suspicion, suspicions
 from analysis.refusals import Refusal
@@ -232,6 +232,22 @@ def findings() -> Findings | Refusal | None:
         return _findings(now.fingerprint, now)
     except Refusal as refusal:
         return refusal
+
+
+@st.cache_resource(max_entries=16, show_spinner=False)
+def _crossing(fingerprint: str, _study: Study) -> Mapping[str, Any]:
+    return counted.crossing(_study)
+
+
+def crossing() -> Mapping[str, Any] | None:
+    """Return the layout of the open study with its counts, also where it cannot be analysed; None where there is nothing to count in."""
+    now, found = study(), findings()
+    if now is None or isinstance(found, Findings):
+        return None if found is None else found.design  # type: ignore[union-attr]
+    try:
+        return _crossing(now.fingerprint, now)
+    except Refusal:
+        return None
 
 
 @st.cache_resource(max_entries=16, show_spinner=False)

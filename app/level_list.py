@@ -6,31 +6,41 @@ from typing import Any
 import streamlit as st
 
 from analysis import level_edits
-from analysis.level_edits import Level
+from analysis.level_edits import Level, Suggestion
 from analysis.study import Study
-from app import desk, paper, words
+from app import desk, lay_out_words, paper, words
 
 MOST_LISTED = 40  # levels; a column with more is a label rather than a factor
 
 
+@st.cache_resource(max_entries=32, show_spinner=False)
+def _levels(fingerprint: str, _study: Study, column: str) -> tuple[Level, ...]:
+    return level_edits.levels_of(_study, column)
+
+
+@st.cache_resource(max_entries=32, show_spinner=False)
+def _suggestions(fingerprint: str, _study: Study, column: str) -> tuple[Suggestion, ...]:
+    return level_edits.suggestions(_study, column)
+
+
 def offers(study: Study, column: str, key: str) -> None:
     """Show each merge that look-alike levels suggest, with what to do about it."""
-    for place, offer in enumerate(level_edits.suggestions(study, column)):
+    for place, offer in enumerate(_suggestions(study.fingerprint, study, column)):
         with st.container(horizontal=True, vertical_alignment="center", key=f"{key}_offer_{place}"):
-            st.html(paper.offer(words.levels_alike(column, offer)), width="content")
-            pair = (column, offer.level.name, offer.into.name)
-            st.button(words.MERGE, key=f"{key}_merge_{place}", **_edit(level_edits.merged, *pair))
-            st.button(words.KEEP_APART, key=f"{key}_apart_{place}", type="tertiary", **_edit(level_edits.kept_apart, *pair))
+            st.html(paper.offer(lay_out_words.levels_alike(column, offer)), width="content")
+            these = (column, tuple(level.name for level in offer.levels), offer.into.name)
+            st.button(words.MERGE, key=f"{key}_merge_{place}", **_edit(level_edits.merged, *these))
+            st.button(words.KEEP_APART, key=f"{key}_apart_{place}", type="tertiary", **_edit(level_edits.kept_apart, *these))
 
 
 def changes(study: Study, column: str, key: str) -> None:
     """Show the levels in their order, each to be renamed, moved, left out or taken back in, and the choice of the control level."""
-    levels = level_edits.levels_of(study, column)
+    levels = _levels(study.fingerprint, study, column)
     with st.expander(words.levels_head(column), key=f"{key}_levels"):
         if len(levels) > MOST_LISTED:
             st.html(paper.text(words.too_many_levels(column, len(levels), MOST_LISTED)))
             return
-        st.html(paper.caption(words.LEVELS_HELP))
+        st.html(paper.caption(f"{words.LEVELS_HELP} {lay_out_words.COUNTED}"))
         analysed = [level.name for level in levels if level.analysed]
         for place, level in enumerate(levels):
             _level(column, level, f"{key}_{place}", at_start=place == 0, at_end=place == len(analysed) - 1, only=len(analysed) == 1)

@@ -10,7 +10,6 @@ from numpy.typing import NDArray
 
 from analysis.adjustments import ADJUSTMENTS
 from analysis.findings import Findings
-from analysis.level_edits import Suggestion
 from analysis.rounding import decimals_for, fixed, measured, percent, significant
 from analysis.study import Study
 from analysis.unit_question import UnitAnswer
@@ -249,11 +248,6 @@ def open_table(study: Study | None) -> str:
     return "" if study is None else f"{study.table.name} · {counted(study.table.rows, 'row')}"
 
 
-def levels_alike(column: str, offer: Suggestion) -> str:
-    """Return which two levels of a column may be one."""
-    return f"{column}: is “{offer.level.name}” ({offer.level.rows}) the same as “{offer.into.name}” ({offer.into.rows})?"
-
-
 def levels_head(column: str) -> str:
     """Return what is behind the levels of a factor."""
     return f"Levels of {literal(column)}: names, order, control"
@@ -298,36 +292,6 @@ def reckoning(analysed: int | None, left_out: int) -> str:
     if analysed is None:
         return f"{counted(left_out, 'row')} left out so far; the full account follows once the columns have their roles."
     return f"{counted(analysed + left_out, 'row')} in the file: {fixed(analysed, 0)} analysed, {fixed(left_out, 0)} left out."
-
-
-def layout_sentence(findings: Findings) -> str:
-    """Return the size of the design in words."""
-    design = findings.design
-    rows = f"{len(design['row_levels'])} levels of {design['row_factor']}"
-    columns = f"{len(design['column_levels'])} of {design['column_factor']}"
-    return f"{rows} × {columns}, {counted(len(findings.observations), 'observation')}"
-
-
-def balance(findings: Findings) -> str:
-    """Return whether the cells are filled alike."""
-    design = findings.design
-    if design["empty_cells"]:
-        empty = [f"{row} with {column}" for row, column in design["empty_cells"]]
-        named = "; ".join(empty[:4]) + ("" if len(empty) <= 4 else f" and {len(empty) - 4} more")
-        return f"{counted(len(empty), 'combination')} without an observation: {named}. What can still be answered is answered."
-    if design["balanced"]:
-        return f"Balanced: {n_per_cell(findings)}, so every way of splitting the sums of squares agrees."
-    return f"Every combination was observed, but not equally often: {n_per_cell(findings)}."
-
-
-def singles(design: Mapping[str, Any]) -> str:
-    """Return which combinations hold one observation alone, or nothing where none does or all do."""
-    counts = np.asarray(design["counts"])
-    if not (counts == 1).any() or (counts == 1).all():
-        return ""
-    single = [f"{design['row_levels'][i]} with {design['column_levels'][j]}" for i, j in np.argwhere(counts == 1)]
-    named = "; ".join(single[:4]) + ("" if len(single) <= 4 else f" and {len(single) - 4} more")
-    return f"A single observation, which says nothing about spread, in {named}."
 
 
 def margins(findings: Findings) -> str:

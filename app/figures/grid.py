@@ -16,6 +16,7 @@ from app.look import Look, shade, text_on
 GAP = 0.03  # between fields, as a share of a field
 TALLEST, LOWEST = 66, 20  # px, of a field
 ONE_LINE = 40  # px; a lower field has room for one line only
+LETTERS = 98  # across all fields of a row, where a second line has room
 EMPTY, SINGLE, PLAIN = "empty", "single", "plain"
 
 
@@ -71,7 +72,7 @@ def _mean_field(findings: Findings, cell: Any, place: int, share: float, look: L
 
 def _count_field(row: int, column: int, n: int, word: str, look: Look) -> Field:
     colour = look.paper if n == 0 else look.shades[2] if n == 1 else look.shades[0]
-    lines = (words.EMPTY,) if n == 0 else (f"n {n}", word) if word else (f"n {n}",)
+    lines = (words.EMPTY,) if n == 0 else (word, "n 1") if n == 1 else (f"n {n}", word) if word else (f"n {n}",)
     return Field(row, column, colour, lines, " · ".join(lines))
 
 
@@ -117,7 +118,8 @@ def _box(field: Field, look: Look) -> dict[str, Any]:
 
 def texts(fields: Sequence[Field], columns: int, look: Look, tall: float) -> go.Scatter:
     """Return the lettering of the fields; hovering tells the whole of each."""
-    shown = [f.lines if tall >= ONE_LINE and columns <= 7 else f.lines[:1] for f in fields]
+    room = tall >= ONE_LINE and columns * max(len(line) for f in fields for line in f.lines) <= LETTERS
+    shown = [f.lines if room else f.lines[:1] for f in fields]
     size = look.text if columns <= 8 else look.small * 8 / columns + 2
     return go.Scatter(
         x=[f.column for f in fields],

@@ -1,12 +1,15 @@
 """Lay out: which column is what, which levels there are, and whether the design can answer the questions."""
 
+from collections.abc import Mapping, Sequence
+from typing import Any
+
 import streamlit as st
 
-from analysis import level_edits
+from analysis import amounts, counted, level_edits
 from analysis.findings import Findings
 from analysis.refusals import Refusal
 from analysis.study import NEEDED_ROLES, Study
-from app import desk, level_list, paper, records, row_list, sheets, stage, words
+from app import desk, lay_out_words, level_list, paper, row_list, sheets, stage, words
 from app.figures import grid
 
 ROLES = (
@@ -32,26 +35,20 @@ def show() -> None:
         _unit_question(study)
     with right:
         stage.complaint()
-        found = desk.findings()
+        found, design = desk.findings(), desk.crossing()
         if isinstance(found, Refusal):
             st.html(paper.notice(str(found)))
-        elif found is not None:
-            _design(found)
-        factors = [(column, key) for key, column in (("row", study.row_factor), ("column", study.column_factor)) if column is not None]
-        for column, key in factors:
-            level_list.offers(study, column, key)
-        for column, key in factors:
-            level_list.changes(study, column, key)
-        row_list.show(study, found.design["left_out"] if isinstance(found, Findings) else [])
-        entries = desk.decisions()
-        with st.expander(words.decisions_head(len(entries)), key="decisions"):
-            st.html(paper.table(sheets.decisions(entries)))
+        if design is not None:
+            _design(design)
+        _edits(study, [] if design is None else design["left_out"])
+        if design is not None:
+            _account(study, design)
         if isinstance(found, Findings):
-            _account(found)
+            _notes(found)
 
 
 def _role(study: Study, key: str, role: str) -> None:
-    """Show the choice of one role, and beneath it the reason for the suggestion."""
+    """Show the choice of one role, beneath it the reason for the suggestion, and what its numbers are where it is a factor of numbers."""
     column, needed = getattr(study, role), role in NEEDED_ROLES
     with st.container(gap=None):
         st.selectbox(
@@ -59,6 +56,19 @@ def _role(study: Study, key: str, role: str) -> None:
             **desk.bind_role(key, role),
         )  # fmt: skip
         st.html(paper.caption(desk.reasons().get(column, words.CHOSEN) if column else words.ROLE_MEANS[role]))
+        if column is not None and role in ("row_factor", "column_factor"):
+            _amounts(study, column, f"{key}_amounts")
+
+
+def _amounts(study: Study, column: str, key: str) -> None:
+    """Ask whether levels that are numbers are amounts or groups."""
+    asked = amounts.question(study, column)
+    if asked is not None:
+        st.radio(
+            lay_out_words.amounts_asked(asked), list(lay_out_words.AMOUNTS_OR_GROUPS), format_func=lay_out_words.AMOUNTS_OR_GROUPS.get,
+            horizontal=True, **desk.bind_edit(key, asked.are_amounts, amounts.counted_as, column),
+        )  # fmt: skip
+        st.html(paper.caption(lay_out_words.amounts_told(asked)))
 
 
 def _unit_question(study: Study) -> None:
@@ -69,21 +79,37 @@ def _unit_question(study: Study) -> None:
         st.html(paper.bullets(words.unit_answer(answer, study.unit) for answer in answers))
 
 
-def _design(findings: Findings) -> None:
-    design = findings.design
-    st.html(paper.heading(words.layout_sentence(findings)))
+def _design(design: Mapping[str, Any]) -> None:
+    st.html(paper.heading(lay_out_words.layout(design)))
     stage.figure(grid.counts(design, stage.at_hand()), "grid", "", grid.counts_alt(design))
-    st.html(paper.text(" ".join(sentence for sentence in (words.balance(findings), words.singles(design)) if sentence)))
-    for factor in findings.study.factors:
-        st.html(paper.levels(factor, [(str(m.level), int(m.n)) for m in records.lines(findings.marginal_means[factor])]))
+    first, *others = lay_out_words.cells(design)
+    st.html(paper.text(first))
+    if others:
+        st.html(paper.bullets(others))
 
 
-def _account(findings: Findings) -> None:
-    design = findings.design
-    st.html(paper.text(words.reckoning(design["observations"], len(design["left_out"]))))
+def _edits(study: Study, left_out: Sequence[Mapping[str, Any]]) -> None:
+    """Show what can be changed of levels and rows, and what was decided so far."""
+    factors = [(column, key) for key, column in (("row", study.row_factor), ("column", study.column_factor)) if column is not None]
+    for column, key in factors:
+        level_list.offers(study, column, key)
+    for column, key in factors:
+        level_list.changes(study, column, key)
+    row_list.show(study, left_out)
+    entries = desk.decisions()
+    with st.expander(words.decisions_head(len(entries)), key="decisions"):
+        st.html(paper.table(sheets.decisions(entries)))
+
+
+def _account(study: Study, design: Mapping[str, Any]) -> None:
+    account = counted.account(study, design["observations"], design["left_out"])
+    st.html(paper.text(lay_out_words.reckoning(account)))
     if design["left_out"]:
-        with st.expander(f"The {words.counted(len(design['left_out']), 'row')} left out, with reasons"):
+        with st.expander(lay_out_words.left_out_head(account), key="left_out"):
             st.html(paper.table(sheets.left_out(design["left_out"])))
+
+
+def _notes(findings: Findings) -> None:
     settled = frozenset[str]().union(*(level_edits.settled_notes(findings.study, factor) for factor in findings.study.factors))
     notes = [note for note in findings.notes if note not in settled]
     if notes:

@@ -4,11 +4,13 @@ from collections.abc import Mapping
 from dataclasses import replace
 from typing import Any
 
+import numpy as np
 import pandas as pd
 import pytest
 
 import analysis
 from analysis import level_edits
+from analysis.level_edits import Level
 from analysis.refusals import LevelNameMissing
 from analysis.study import Study
 from tests.analysis.experiments import crossed
@@ -44,18 +46,18 @@ def test_levels_are_counted_and_stand_in_their_order(study: Study) -> None:
 
 def test_a_look_alike_is_offered_with_counts_and_nothing_is_merged(misspelt: Study) -> None:
     (offer,) = level_edits.suggestions(misspelt, "b")
-    assert (offer.level.name, offer.level.rows, offer.into.name, offer.into.rows) == ("maltose", 2, "Maltose", 6)
+    assert (offer.levels, offer.into) == ((Level("maltose", 2, True),), Level("Maltose", 6, True))
     assert set(names(misspelt)) == {"Maltose", "maltose", "Fructose", "Glucose"}
 
 
 def test_a_merge_taken_leaves_nothing_to_offer(misspelt: Study) -> None:
-    merged = made(misspelt, level_edits.merged(misspelt, "b", "maltose", "Maltose"))
+    merged = made(misspelt, level_edits.merged(misspelt, "b", ["maltose"], "Maltose"))
     assert level_edits.suggestions(merged, "b") == ()
     assert set(names(merged)) == {"Maltose", "Fructose", "Glucose"}
 
 
 def test_a_merge_refused_is_remembered_with_the_study(misspelt: Study) -> None:
-    apart = made(misspelt, level_edits.kept_apart(misspelt, "b", "maltose", "Maltose"))
+    apart = made(misspelt, level_edits.kept_apart(misspelt, "b", ["maltose"], "Maltose"))
     again = Study.from_json(apart.to_json(), apart.table)
     assert level_edits.suggestions(again, "b") == ()
     assert again.fingerprint == apart.fingerprint != misspelt.fingerprint
@@ -99,5 +101,29 @@ def test_merging_a_level_that_is_left_out_takes_its_rows_along() -> None:
     frame = pd.concat([crossed([[4, 4], [4, 4]]), crossed([[2, 2], [2, 2]]).replace({"b1": "B1"})])
     study = Study(analysis.read_table(frame, name="experiment"), "y", "a", "b")
     out = made(study, level_edits.left_out(study, "b", "B1"))
-    merged = made(out, level_edits.merged(out, "b", "B1", "b1"))
+    merged = made(out, level_edits.merged(out, "b", ["B1"], "b1"))
     assert analysis.analyse(merged).design["observations"] == len(frame)
+
+
+def test_three_spellings_are_merged_at_once(misspelt: Study) -> None:
+    frame = crossed([[4, 4, 4], [4, 4, 4]]).replace({"b": {"b0": "Maltose", "b1": "Fructose", "b2": "Glucose"}})
+    frame.loc[frame.index[[0, 12]], "b"] = "maltose"
+    frame.loc[frame.index[[1]], "b"] = "MALTOSE"
+    study = Study(analysis.read_table(frame, name="experiment"), "y", "a", "b", keep={"b": ("Glucose", "maltose", "Maltose", "MALTOSE")})
+    (offer,) = level_edits.suggestions(study, "b")
+    assert ({level.name for level in offer.levels}, offer.into.name) == ({"maltose", "MALTOSE"}, "Maltose")
+    merged = made(study, level_edits.merged(study, "b", [level.name for level in offer.levels], offer.into.name))
+    assert merged.relabel == {"b": {"maltose": "Maltose", "MALTOSE": "Maltose"}}
+    assert merged.keep["b"] == ("Glucose", "Maltose")
+    assert level_edits.suggestions(merged, "b") == ()
+    apart = made(study, level_edits.kept_apart(study, "b", [level.name for level in offer.levels], offer.into.name))
+    assert level_edits.suggestions(apart, "b") == ()
+
+
+def test_an_offer_counts_the_rows_that_the_layout_counts(misspelt: Study) -> None:
+    aside = replace(misspelt, set_aside={1: "pot fell over", 2: "pot fell over"})
+    (offer,) = level_edits.suggestions(aside, "b")
+    found = analysis.analyse(aside)
+    counted = dict(zip(found.design["column_levels"], np.sum(found.design["counts"], axis=0).tolist(), strict=True))
+    assert {level.name: level.rows for level in level_edits.levels_of(aside, "b")} == counted
+    assert {level.name: level.rows for level in (*offer.levels, offer.into)}.items() <= counted.items()
