@@ -1,4 +1,4 @@
-"""Every decision that led to a study, in order and with its reason, and the way from a table through them to the study again."""
+"""Every decision that led to a study, in order and with its reason, and the way from the file through them to the study again."""
 
 from collections.abc import Callable, Iterable, Mapping, Sequence
 from dataclasses import dataclass, replace
@@ -6,12 +6,15 @@ from types import MappingProxyType
 from typing import Any
 
 from analysis.adjustments import ADJUSTMENTS
+from analysis.reading.choices import Reading
 from analysis.refusals import rows_told
 from analysis.rounding import fixed, shortest
 from analysis.study import MODELS, ROLES, Study
 from analysis.table import Table
 
-SUGGESTED, CHOSEN = "suggested", "chosen"
+SUGGESTED, CHOSEN, READ_NOW = "suggested", "chosen", "as the file is read now"
+READING = "reading"  # the field of an entry that says how the file is read
+KINDS: Mapping[str, str] = MappingProxyType({"header_row": "header"})  # the reader's decision about a choice, where it has another name
 Told = tuple[str, str]  # a sentence, and the reason or ""
 
 
@@ -21,46 +24,68 @@ class Entry:
 
     sentence: str
     reason: str = ""
-    field: str | None = None  # None for what the reader decided
+    field: str | None = None  # READING for a way to read the file, None for what the reader decided by itself
     value: Any = None
 
 
-def log(history: Iterable[Study | None], suggested: Mapping[str, str]) -> tuple[Entry, ...]:
-    """Return the decisions behind the last of the studies in `history`, from the reading of its table on.
+def log(studies: Sequence[Study], suggested: Mapping[str, str]) -> tuple[Entry, ...]:
+    """Return the decisions behind the last of some studies of one file, from the reading of the file on.
 
-    `suggested` holds, for each column that a role was suggested for, the reason.
+    `suggested` holds, for each column that a role was suggested for at first, the reason.
     """
-    studies = _since_the_table(list(history))
     if not studies:
         return ()
     table = studies[0].table
     steps = zip([Study(table), *studies], studies, strict=False)
-    decided = (entry for place, (before, after) in enumerate(steps) for entry in _between(before, after, suggested if place == 0 else {}))
-    return (*_reading(table), *decided)
+    decided = (entry for place, (before, after) in enumerate(steps) for entry in _step(before, after, suggested if place == 0 else {}))
+    return (*_read(table), *decided)
 
 
-def replayed(entries: Iterable[Entry], table: Table) -> Study:
-    """Return the study that the recorded decisions make of a table; the table read again gives the same fingerprint."""
-    study = Study(table)
+def replayed(entries: Iterable[Entry], read: Callable[[Reading], Table]) -> Study:
+    """Return the study that the recorded decisions make of a file, which `read` reads; it has the fingerprint of the one recorded."""
+    study: Study | None = None
     for entry in entries:
-        if entry.field is not None:
+        if entry.field == READING:
+            table = read(Reading.from_plain(entry.value))
+            study = Study(table) if study is None else replace(study, table=table)
+        elif entry.field is not None and study is not None:
             study = replace(study, **{entry.field: entry.value})
+    if study is None:
+        raise ValueError("a log begins with the reading of its file")
     return study
 
 
-def _since_the_table(history: Sequence[Study | None]) -> list[Study]:
-    """Return the last studies of one table."""
+def of_one_file(history: Iterable[Study | None], file_of: Callable[[Table], object]) -> list[Study]:
+    """Return the last studies of a history that belong to one file, told by what `file_of` returns for their tables."""
     found: list[Study] = []
-    for study in reversed(history):
-        if study is None or (found and study.table.fingerprint != found[-1].table.fingerprint):
+    for study in reversed(list(history)):
+        if study is None or (found and file_of(study.table) != file_of(found[-1].table)):
             break
         found.append(study)
     return found[::-1]
 
 
-def _reading(table: Table) -> list[Entry]:
+def _read(table: Table) -> list[Entry]:
     rows = f"{fixed(table.rows, 0)} row{'' if table.rows == 1 else 's'}"
-    return [Entry(f"“{table.name}” was read: {rows} of data."), *(Entry(note, "read from the file") for note in table.notes)]
+    start = Entry(f"“{table.name}” was read: {rows} of data.", "", READING, table.reading.to_plain())
+    return [start, *(Entry(note, "read from the file") for note in table.notes)]
+
+
+def _step(before: Study, after: Study, suggested: Mapping[str, str]) -> list[Entry]:
+    """Return what was decided from one study to the next; what follows from another reading of the file gives that as its reason."""
+    if before.table.reading == after.table.reading:
+        return _between(before, after, suggested)
+    follows = [replace(entry, reason=READ_NOW if entry.reason == CHOSEN else entry.reason) for entry in _between(before, after, suggested)]
+    return [*_read_anew(before.table, after.table), *follows]
+
+
+def _read_anew(before: Table, after: Table) -> list[Entry]:
+    """Return the reader's choices that changed, in its own sentences; the last carries the whole reading."""
+    old, new = before.reading.to_plain(), after.reading.to_plain()
+    told = {decision.kind: decision.sentence for decision in after.decisions}
+    sentences = [told.get(KINDS.get(name, name), f"The {name.replace('_', ' ')} is decided by the reader.") for name in _changed(old, new)]
+    *first, last = sentences
+    return [*(Entry(sentence, CHOSEN) for sentence in first), Entry(last, CHOSEN, READING, new)]
 
 
 def _between(before: Study, after: Study, suggested: Mapping[str, str]) -> list[Entry]:
@@ -135,6 +160,11 @@ def _matters(old: float | None, new: float | None) -> list[Told]:
     return [(f"The smallest difference that matters is {size}.", CHOSEN)]
 
 
+def _story(old: Mapping[str, Any], new: Mapping[str, Any]) -> list[Told]:
+    what = {"kept": "comparisons kept", "order": "order of the boards", "dropped": "boards told", "claims": "claims", "notes": "notes"}
+    return [(f"The story was changed: {', '.join(what[part] for part in _changed(old, new))}.", CHOSEN)]
+
+
 def _changed(old: Mapping[Any, Any], new: Mapping[Any, Any]) -> list[Any]:
     """Return the keys whose value is another, or which are there on one side alone."""
     return [key for key in {**old, **new} if old.get(key) != new.get(key)]
@@ -149,6 +179,7 @@ SENTENCES: Mapping[str, Callable[[Any, Any], list[Told]]] = MappingProxyType(
         "amounts": _amounts,
         "set_aside": _set_aside,
         "matters": _matters,
+        "story": _story,
         "model": lambda old, new: [(f"The model is fitted {MODELS[new]}.", CHOSEN)],
         "scale": lambda old, new: [(f"The scale analysed is {'as measured' if new == 'none' else new}.", CHOSEN)],
         "confidence": lambda old, new: [(f"Intervals have a confidence of {shortest(100 * new)} percent.", CHOSEN)],

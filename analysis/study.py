@@ -4,7 +4,7 @@ import hashlib
 import json
 import math
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass, field, fields
+from dataclasses import dataclass, field, fields, replace
 from functools import cached_property
 from types import MappingProxyType
 from typing import Any
@@ -12,6 +12,7 @@ from typing import Any
 from analysis.adjustments import ADJUSTMENTS
 from analysis.refusals import LevelTwice, NameTaken, OutOfRange, ReasonMissing, RoleMissing, SameColumnTwice, UnknownChoice
 from analysis.scales import scale_named
+from analysis.story import Story, story_of
 from analysis.table import Table
 
 MODELS: Mapping[str, str] = MappingProxyType({"full": "with the interaction", "additive": "without the interaction"})
@@ -53,6 +54,7 @@ class Study:
     set_aside: Mapping[int, str] = field(default_factory=dict)  # file row -> why it is not analysed
     apart: Mapping[str, Mapping[str, str]] = field(default_factory=dict)  # column -> level -> the look-alike that it was not merged with
     amounts: Mapping[str, bool] = field(default_factory=dict)  # column -> whether levels that are numbers count as amounts
+    story: Story = field(default_factory=Story)  # changes to the telling, on which no number depends
 
     def __post_init__(self) -> None:
         """Freeze the mappings and raise a Refusal for a choice that does not exist."""
@@ -62,6 +64,7 @@ class Study:
         object.__setattr__(self, "apart", MappingProxyType({column: _frozen(names) for column, names in self.apart.items()}))
         object.__setattr__(self, "amounts", MappingProxyType({str(column): bool(are) for column, are in self.amounts.items()}))
         object.__setattr__(self, "set_aside", MappingProxyType({int(row): why.strip() for row, why in self.set_aside.items()}))
+        object.__setattr__(self, "story", story_of(self.story))
         _check_choices(self)
         for column, levels in self.keep.items():
             twice = [level for k, level in enumerate(levels) if level in levels[:k]]
@@ -100,6 +103,7 @@ class Study:
         plain["set_aside"] = dict(self.set_aside)
         plain["amounts"] = dict(self.amounts)
         plain["apart"] = {column: dict(names) for column, names in self.apart.items()}
+        plain["story"] = self.story.plain()
         return plain
 
     def to_json(self) -> str:
@@ -114,8 +118,8 @@ class Study:
 
     @cached_property
     def fingerprint(self) -> str:
-        """A short text that two studies share exactly when table and decisions are the same."""
-        return hashlib.sha256(self.to_json().encode()).hexdigest()
+        """A short text that two studies share exactly when table and decisions are the same, whatever story is made of them."""
+        return hashlib.sha256(replace(self, story=Story()).to_json().encode()).hexdigest()
 
 
 def _check_choices(study: Study) -> None:
