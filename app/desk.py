@@ -274,7 +274,8 @@ def reasons() -> Mapping[str, str]:
 
 def decisions() -> tuple[log.Entry, ...]:
     """Return every decision that led to the open study, in order; what was undone is not among them."""
-    return log.log([*_state().past, study()], reasons())
+    studies = log.of_one_file([*_state().past, study()], lambda table: table.fingerprint)
+    return log.log(studies, _roles(studies[0].table.fingerprint, studies[0].table).reasons if studies else {})
 
 
 @st.cache_resource(max_entries=16, show_spinner=False)
