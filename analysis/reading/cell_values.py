@@ -7,7 +7,7 @@ from typing import TypeGuard
 
 import numpy as np
 
-from analysis.reading import numerals, value_cells
+from analysis.reading import numerals, spaces, value_cells
 from analysis.reading.sheet_marks import Marks
 from analysis.table import Floats
 
@@ -28,6 +28,11 @@ def text_of(value: Value) -> str:
 def is_number(value: Value) -> TypeGuard[int | float]:
     """Whether a cell holds a number; true and false are words."""
     return isinstance(value, (int, float)) and not isinstance(value, bool)
+
+
+def is_blank(value: Value) -> bool:
+    """Whether a cell holds nothing but white space."""
+    return value == "" or (isinstance(value, str) and spaces.is_blank(value))
 
 
 def numbers_of(column: Sequence[Value]) -> Floats | None:
@@ -56,11 +61,16 @@ def _extend(values: list[list[Value]], row: int, column: int) -> None:
 
 def reference(row: int, column: int) -> str:
     """The name of a cell, rows and columns counted from 0: (0, 27) is AB1."""
-    letters, number = "", column + 1
+    return f"{letters(column)}{row + 1}"
+
+
+def letters(column: int) -> str:
+    """The name of a column, counted from 0."""
+    found, number = "", column + 1
     while number:
         number, rest = divmod(number - 1, 26)
-        letters = chr(65 + rest) + letters
-    return f"{letters}{row + 1}"
+        found = chr(65 + rest) + found
+    return found
 
 
 def has_number(cells: Sequence[str]) -> bool:

@@ -2,6 +2,7 @@
 
 import csv
 import io
+import re
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 from functools import cached_property
@@ -18,6 +19,8 @@ from analysis.table import Rows
 
 _END = "\x03"  # a last record of our own; where it is swallowed, a quotation mark was left open
 _CHUNK = 4_000  # records turned into columns at a time; more would keep the collector of cycles busy
+_LOOSE = 1 << 21  # bytes up to which several tables are looked for
+_GAP = re.compile(rb"\n[ \t,;|]*\n")  # a blank line
 _BLOCK = 1 << 22  # bytes that Arrow parses at a time
 
 
@@ -63,6 +66,14 @@ class Delimited:
         except csv.Error as error:
             self._refuse(row + 1, text, error)
         raise refusals.UnclosedQuote(row)
+
+    @cached_property
+    def loose(self) -> Sequence[Sequence[str]]:
+        """All cells where blank lines or cells may set several tables apart in a file that is not large, else none."""
+        if len(self.data) > _LOOSE or not (_GAP.search(self.data) or 2 * self.delimiter.encode() in self.data):
+            return ()
+        records = self._records(self.data.decode("utf-8"))
+        return [[] if row <= self.declared else cells for row, cells in records]
 
     @cached_property
     def _spaced_quotes(self) -> bool:

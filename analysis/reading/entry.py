@@ -8,10 +8,12 @@ from pathlib import Path
 import pandas as pd
 
 from analysis import refusals
-from analysis.reading import delimited, encoding, frames, layouts, parquet, separators, signatures, workbooks
+from analysis.reading import delimited, encoding, frames, layouts, parquet, separators, signatures, table_choice, workbooks
 from analysis.reading.choices import NOTHING_ASKED, Reading
 from analysis.reading.marks import Known
 from analysis.reading.records import RAW, RAW_BYTES, Found, Source, raw_line
+from analysis.reading.sheet_marks import Marks
+from analysis.reading.sheets import Sheet
 from analysis.reading.signatures import Kind
 from analysis.table import NO_ROWS, Decision, Table
 
@@ -91,7 +93,9 @@ def _text(data: bytes, reading: Reading) -> Source:
     lines = enumerate(decoded.data[:RAW_BYTES].decode("utf-8", "replace").split("\n")[:RAW])
     raw = tuple(raw_line(index + 1, line) for index, line in lines)
     found = Found((*decoded.decisions, separated.decision), known, raw=raw)
-    return delimited.Delimited(separated.data, separated.delimiter, found, separated.declared)
+    source = delimited.Delimited(separated.data, separated.delimiter, found, separated.declared)
+    part = table_choice.chosen(Sheet(source.loose, Marks(), found), reading)
+    return replace(source, found=part.found) if part.values is source.loose else part
 
 
 def _fingerprint(data: bytes, reading: Reading) -> str:

@@ -8,7 +8,20 @@ import numpy.typing as npt
 import pyarrow as pa
 
 from analysis import refusals
-from analysis.reading import cell_lengths, decimal_marks, filling, footers, grid_signs, grids, headers, names, numerals, spaces
+from analysis.reading import (
+    cell_lengths,
+    dates,
+    decimal_marks,
+    filling,
+    footers,
+    grid_signs,
+    grids,
+    headers,
+    names,
+    numerals,
+    spaces,
+    summaries,
+)
 from analysis.reading.filling import Fill
 from analysis.reading.grids import Grid
 from analysis.reading.headers import Heading
@@ -32,10 +45,12 @@ def read(source: Source, account: Table) -> Table:
     body = cleaned.body
     if not body.rows.size:
         raise refusals.HeaderWithoutRows(heading.joined())
+    summaries.refuse(heading.joined(), body)
     _refuse_without_numbers(body)
     fills = tuple(_fill(body, index, place, source.found) for index, place in enumerate(places))
+    made = dates.decisions(heading.joined(), body)
     mark = decimal_marks.decision(body, source.found.known, account.reading)
-    decisions = (*account.decisions, *source.found.decisions, *heading.decisions, *cleaned.decisions, *([mark] if mark else []))
+    decisions = (*account.decisions, *source.found.decisions, *heading.decisions, *cleaned.decisions, *made, *([mark] if mark else []))
     left_out = tuple(sorted((*hidden, *cleaned.left_out), key=lambda entry: entry.row))
     account = replace(account, file_rows=body.rows, left_out=left_out, decisions=decisions)
     return _in_layout(heading, body, fills, source.found, account)
@@ -60,7 +75,7 @@ def _in_layout(heading: Heading, body: Body, fills: tuple[Fill, ...], found: Fou
     labels, naming = names.distinct(heading.joined())
     body = replace(body, units=tuple(above or given for above, given in zip(heading.units, body.units, strict=True)))
     in_rows = grids.told_in_rows(signs, itself, account.reading)
-    decisions = (*account.decisions, in_rows, *naming, *_filled(labels, fills), *_dates(labels, body))
+    decisions = (*account.decisions, in_rows, *naming, *_filled(labels, fills))
     return replace(account, columns=_columns(labels, body, fills, found), decisions=decisions)
 
 
@@ -154,14 +169,3 @@ def _filled(labels: Sequence[str], fills: Sequence[Fill]) -> tuple[Decision, ...
         return ()
     word = "Column" if len(named) == 1 else "Columns"
     return (Decision("fill", f"{word} {several(named)}: a level written once above several rows was filled down."),)
-
-
-def _dates(labels: Sequence[str], body: Body) -> tuple[Decision, ...]:
-    """A spreadsheet turns levels such as 1-2 into dates: told where a column holds dates beside other things."""
-    mixed = []
-    for label, texts, rows in zip(labels, body.columns, body.dates, strict=False):
-        rows = tuple(row for row in rows if row in set(body.rows.tolist()))
-        if 0 < len(rows) < int((~footers.blank_cells(texts)).sum()):
-            told = f"Column “{label}” holds dates among other cells ({refusals.rows_told(rows)})"
-            mixed.append(Decision("dates", f"{told}; a spreadsheet may have made them from levels such as 1-2."))
-    return tuple(mixed)

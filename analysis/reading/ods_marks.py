@@ -75,6 +75,8 @@ class _ContentParser:
         filled = "value-type" in self.cell or bool("".join(self.texts))
         if filled:
             self.marks.reach(self.row + self.repeats - 1, self.column + width - 1)
+        elif "formula" in self.cell:
+            self.marks.unsaved.append((self.row, self.column))
         if filled and width * self.repeats <= _MOST_REPEATS:
             self._mark([(self.row + down, self.column + right) for down in range(self.repeats) for right in range(width)])
         down, right = _repeats(self.cell, "number-rows-spanned"), _repeats(self.cell, "number-columns-spanned")

@@ -58,6 +58,16 @@ class NoNumericColumn(Refusal):
         )
 
 
+class SummaryTable(Refusal):
+    """A table of means and their spread in place of the observations."""
+
+    def __init__(self, sign: str) -> None:
+        super().__init__(
+            f"The table holds means and their spread ({sign}), not the single observations, which the analysis needs: bring the table "
+            "with one row for each measured value."
+        )
+
+
 class NotATable(Refusal):
     """A picture, a document, or another file that holds no table, whatever its name says."""
 
@@ -105,6 +115,14 @@ class MissingSheet(Refusal):
 
     def __init__(self, sheet: str, sheets: Sequence[str]) -> None:
         super().__init__(f"The workbook has no sheet “{sheet[:60]}”: {nearest_told(sheet, sheets, 'its sheets')}")
+
+
+class MissingTable(Refusal):
+    """A table that was asked for by a name that none of a sheet has."""
+
+    def __init__(self, table: str, tables: Sequence[str]) -> None:
+        hint = nearest_told(table, tables, "its tables") if tables else "it holds one table, so leave the choice out."
+        super().__init__(f"The sheet has no table “{table[:60]}”: {hint}")
 
 
 class SheetOutsideWorkbook(Refusal):
