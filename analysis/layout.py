@@ -8,6 +8,7 @@ from numpy.typing import NDArray
 
 from analysis.amounts import spacing
 from analysis.observations import Factor, Observations
+from analysis.reading import limits
 from analysis.refusals import LevelForEveryRow, NoUsableRow, SpanOutOfReach, TooManyCells, UnknownLevel
 from analysis.relabelling import relabelled
 from analysis.scales import NAMED, scale_named, transformed
@@ -15,7 +16,6 @@ from analysis.study import Study
 from analysis.table import LeftOut, Levels, Response, counts
 from analysis.units import averaged_to_units
 
-MOST_CELLS = 40_000
 NOT_KEPT = "which is not among the levels kept"
 SMALLEST_SPAN, LARGEST_SPAN = 1e-70, 1e70  # the fourth powers of what lies between stay within double precision
 Chosen = slice | NDArray[np.intp]  # the table rows analysed; a slice takes all of them without a copy
@@ -116,8 +116,8 @@ def _refuse_labels(factors: Mapping[str, Factor], study: Study) -> None:
     for factor in (row, column):
         if n > 2 and factor.size == n:
             raise LevelForEveryRow(factor.name, factor.size)
-    if row.size * column.size > MOST_CELLS:
-        raise TooManyCells(row.name, row.size, column.name, column.size, MOST_CELLS)
+    if row.size * column.size > limits.COMBINATIONS:
+        raise TooManyCells(row.name, row.size, column.name, column.size, limits.COMBINATIONS)
 
 
 def _dropped(study: Study, parts: Mapping[str, Levels], factors: Mapping[str, Factor]) -> tuple[str, ...]:

@@ -6,8 +6,8 @@ import zlib
 from xml.parsers import expat
 
 from analysis import refusals
+from analysis.reading.limits import UNPACKED_BYTES
 
-UNPACKED = 512 * 2**20  # bytes, the limit for a whole workbook
 _MOST_ENTRIES = 10_000
 _DEFLATE_RATIO = 1032  # no deflate stream unpacks to more than so many times its size
 _STEP = 1 << 20
@@ -21,9 +21,9 @@ def check(data: bytes) -> None:
             entries = archive.infolist()
             if any(entry.flag_bits & 1 for entry in entries):
                 raise refusals.Encrypted()
-            if sum(entry.file_size for entry in entries) > UNPACKED or len(entries) > _MOST_ENTRIES:
-                raise refusals.UnpacksTooLarge(UNPACKED)
-            if sum(entry.compress_size for entry in entries) * _DEFLATE_RATIO > UNPACKED:
+            if sum(entry.file_size for entry in entries) > UNPACKED_BYTES or len(entries) > _MOST_ENTRIES:
+                raise refusals.UnpacksTooLarge(UNPACKED_BYTES)
+            if sum(entry.compress_size for entry in entries) * _DEFLATE_RATIO > UNPACKED_BYTES:
                 _measure(data, entries)
             if "META-INF/manifest.xml" in archive.namelist() and b"encryption-data" in archive.read("META-INF/manifest.xml"):
                 raise refusals.Encrypted()
@@ -43,13 +43,13 @@ def _measure(data: bytes, entries: list[zipfile.ZipInfo]) -> None:
             total = _unpacked(packed, total)
         else:
             raise refusals.DamagedFile("workbook")
-        if total > UNPACKED:
-            raise refusals.UnpacksTooLarge(UNPACKED)
+        if total > UNPACKED_BYTES:
+            raise refusals.UnpacksTooLarge(UNPACKED_BYTES)
 
 
 def _unpacked(packed: bytes, total: int) -> int:
     inflater = zlib.decompressobj(-15)
-    while packed and not inflater.eof and total <= UNPACKED:
+    while packed and not inflater.eof and total <= UNPACKED_BYTES:
         total += len(inflater.decompress(packed, _STEP))
         packed = inflater.unconsumed_tail
     return total

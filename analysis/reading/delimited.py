@@ -13,7 +13,7 @@ import pyarrow as pa
 from pyarrow import csv as arrow_csv
 
 from analysis import refusals
-from analysis.reading import cell_lengths, line_lengths, spaces
+from analysis.reading import limits, line_lengths, spaces
 from analysis.reading.records import HEAD, Body, Found, Record, filled_part, record_of
 from analysis.table import Rows
 
@@ -40,7 +40,9 @@ class Delimited:
         return tuple(self._record(row, cells) for row, cells in records)
 
     def _record(self, row: int, cells: list[str]) -> Record:
-        """One record, tidied; a line that only names the separator is blank."""
+        """One record, tidied; a line that only names the separator is blank. Raises TooManyColumns."""
+        if len(cells) > limits.COLUMNS and any(cells[limits.COLUMNS :]):
+            raise refusals.TooManyColumns(row, len(filled_part(cells)), limits.COLUMNS)
         return Record(row, ()) if row <= self.declared else record_of(row, cells, len(cells))
 
     def _start_text(self) -> str:
@@ -82,7 +84,7 @@ class Delimited:
 
     def _refuse(self, row: int, text: str, error: csv.Error) -> None:
         if "field larger" in str(error) and text.count('"') % 2 == 0:
-            raise refusals.CellTooLong(row, cell_lengths.LONGEST) from error
+            raise refusals.CellTooLong(row, limits.CELL_CHARACTERS) from error
         raise refusals.UnclosedQuote(row) from error
 
     def body(self, start: int, width: int) -> Body:

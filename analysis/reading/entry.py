@@ -8,7 +8,7 @@ from pathlib import Path
 import pandas as pd
 
 from analysis import refusals
-from analysis.reading import delimited, encoding, frames, layouts, parquet, separators, signatures, table_choice, workbooks
+from analysis.reading import delimited, encoding, frames, layouts, limits, parquet, separators, signatures, table_choice, workbooks
 from analysis.reading.choices import NOTHING_ASKED, Reading
 from analysis.reading.marks import Known
 from analysis.reading.records import RAW, RAW_BYTES, Found, Source, raw_line
@@ -17,7 +17,6 @@ from analysis.reading.sheets import Sheet
 from analysis.reading.signatures import Kind
 from analysis.table import NO_ROWS, Decision, Table
 
-LARGEST = 2**30  # bytes of a file
 _ENDINGS: dict[str, tuple[Kind, ...]] = {  # what the ending of a name promises
     **dict.fromkeys((".csv", ".tsv", ".txt", ".tab", ".dat"), ("text",)),
     **dict.fromkeys((".xlsx", ".xlsm"), ("xlsx",)),
@@ -53,8 +52,7 @@ def read_table(
         data, name = _loaded(Path(source)), name or Path(source).name
     else:
         data, name = bytes(source), name or "table"
-    if len(data) > LARGEST:
-        raise refusals.FileTooLarge(len(data), LARGEST)
+    _refuse_large(len(data))
     kind = signatures.kind_of(data)
     seal = _fingerprint(data, reading)
     if reading.sheet is not None and kind in ("text", "parquet"):
@@ -73,9 +71,15 @@ def _asked(reading: Reading, sheet: str | None, layout: str) -> Reading:
 
 def _loaded(path: Path) -> bytes:
     try:
+        _refuse_large(path.stat().st_size)
         return path.read_bytes()
     except (OSError, ValueError) as error:
         raise refusals.MissingFile(str(path)) from error
+
+
+def _refuse_large(size: int) -> None:
+    if size > limits.FILE_BYTES:
+        raise refusals.FileTooLarge(size, limits.FILE_BYTES)
 
 
 def _mislabelled(name: str, kind: Kind) -> tuple[Decision, ...]:
@@ -88,10 +92,13 @@ def _mislabelled(name: str, kind: Kind) -> tuple[Decision, ...]:
 
 def _text(data: bytes, reading: Reading) -> Source:
     decoded = encoding.decode(data)
+    lines = decoded.data.count(b"\n")
+    if lines > limits.ROWS:
+        raise refusals.TooManyRows(lines, limits.ROWS)
     separated = separators.find(decoded.data, reading)
     known = Known(separated.delimiter == ",", reading.decimal)
-    lines = enumerate(decoded.data[:RAW_BYTES].decode("utf-8", "replace").split("\n")[:RAW])
-    raw = tuple(raw_line(index + 1, line) for index, line in lines)
+    first = enumerate(decoded.data[:RAW_BYTES].decode("utf-8", "replace").split("\n")[:RAW])
+    raw = tuple(raw_line(index + 1, line) for index, line in first)
     found = Found((*decoded.decisions, separated.decision), known, raw=raw)
     source = delimited.Delimited(separated.data, separated.delimiter, found, separated.declared)
     part = table_choice.chosen(Sheet(source.loose, Marks(), found), reading)

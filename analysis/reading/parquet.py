@@ -8,14 +8,14 @@ import pyarrow as pa
 from pyarrow import parquet
 
 from analysis import refusals
-from analysis.reading import names, value_cells
+from analysis.reading import limits, names, value_cells
 from analysis.reading.choices import Reading
 from analysis.reading.marks import Known
 from analysis.reading.records import RAW, raw_line
 from analysis.reading.text_cells import TextCells
 from analysis.table import Cells, Column, Decision, Rows, Table
 
-MOST_VALUES = 400_000_000  # rows × columns; a small file can declare any number of equal ones
+_VALUES = 400_000_000  # rows × columns; a small file can declare any number of equal ones
 _UNNAMED_INDEX = "__index_level_"
 
 
@@ -40,13 +40,22 @@ def read(data: bytes, name: str, decisions: tuple[Decision, ...], fingerprint: s
 def _load(data: bytes) -> pa.Table:
     try:
         source = parquet.ParquetFile(io.BytesIO(data))
-        if source.metadata.num_rows * max(1, source.metadata.num_columns) > MOST_VALUES:
-            raise refusals.TooManyCellsInSheet("table", source.metadata.num_rows, source.metadata.num_columns)
+        _refuse_vast(source.metadata.num_rows, source.metadata.num_columns)
         return source.read()
     except (pa.ArrowException, OSError, ValueError, KeyError) as error:
         if "encrypt" in str(error).lower():
             raise refusals.Encrypted() from error
         raise refusals.DamagedFile("Parquet file") from error
+
+
+def _refuse_vast(rows: int, columns: int) -> None:
+    """Turn down a file by what it declares; raises TooManyRows, TooManyColumns or TooManyCellsInSheet."""
+    if columns > limits.COLUMNS:
+        raise refusals.TooManyColumns(1, columns, limits.COLUMNS)
+    if rows > limits.ROWS:
+        raise refusals.TooManyRows(rows, limits.ROWS)
+    if rows * columns > _VALUES:
+        raise refusals.TooManyCellsInSheet("table", rows, columns)
 
 
 def _cells(name: str, column: pa.ChunkedArray, rows: Rows, known: Known) -> Cells:

@@ -4,7 +4,7 @@ from collections.abc import Callable, Sequence
 from functools import partial
 
 from analysis import refusals
-from analysis.reading import archives, books, cell_values, ods_marks, ole, sheet_choice, sheets, table_choice, xls_marks, xlsx_marks
+from analysis.reading import archives, books, cell_values, limits, ods_marks, ole, sheet_choice, sheets, table_choice, xls_marks, xlsx_marks
 from analysis.reading.books import Book
 from analysis.reading.choices import Reading
 from analysis.reading.marks import Known
@@ -13,8 +13,6 @@ from analysis.reading.sheet_marks import Marks
 from analysis.reading.sheets import Sheet
 from analysis.reading.signatures import Kind
 from analysis.table import Decision
-
-MOST_CELLS = 40_000_000  # of the rectangle that a sheet spans
 
 
 def read(data: bytes, kind: Kind, reading: Reading) -> Sheet:
@@ -48,8 +46,10 @@ def _marks(data: bytes, kind: Kind) -> Callable[[str], Marks]:
 
 
 def _refuse_vast(name: str, marks: Marks) -> None:
-    if marks.rows * marks.columns > MOST_CELLS:
+    if marks.rows * marks.columns > limits.SHEET_CELLS:
         raise refusals.TooManyCellsInSheet(name, marks.rows, marks.columns)
+    if marks.columns > limits.COLUMNS:
+        raise refusals.TooManyColumns(None, marks.columns, limits.COLUMNS)
 
 
 def _sheet(book: Book, marks_of: Callable[[str], Marks], name: str, reading: Reading) -> Sheet:

@@ -110,6 +110,23 @@ class TooManyCellsInSheet(Refusal):
         )
 
 
+class TooManyRows(Refusal):
+    """A file with more rows than are read."""
+
+    def __init__(self, rows: int, limit: int) -> None:
+        super().__init__(f"The file has {rows:,} rows and the limit is {limit:,}: bring a part of it, or means of its experimental units.")
+
+
+class TooManyColumns(Refusal):
+    """A table with more columns than are read."""
+
+    def __init__(self, row: int | None, columns: int, limit: int) -> None:
+        where = "The table" if row is None else f"Row {row}"
+        super().__init__(
+            f"{where} fills {columns:,} columns and the limit is {limit:,}: keep the factors and the response, or check the separator."
+        )
+
+
 class MissingSheet(Refusal):
     """A sheet that the workbook does not have."""
 
