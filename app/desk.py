@@ -1,26 +1,35 @@
 """The open study and its history: the only module that knows the session, so that undo and page changes cannot disagree."""
 
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass, replace
-from pathlib import Path
+from dataclasses import dataclass, field, replace
 from typing import Any
 
 import streamlit as st
 
-from analysis import analyse, counted, log, read_table
+from analysis import analyse, counted, log
 from analysis.findings import Findings
 from analysis.implausible import Suspicion, suspicions
 from analysis.refusals import Refusal
 from analysis.roles import Roles, guess_roles
 from analysis.study import ROLES, Study
+from analysis.study_file import Saved
 from analysis.table import Table
 from analysis.unit_question import UnitAnswer, unit_answers
-from app import samples
+from app import keeping
 
 HISTORY = 200  # studies kept for undo
-TABLE, CHOICE = "table", "choice"
-PASTED = "pasted cells"
+TABLE, READING, CHOICE = "table", "reading", "choice"
+ADDRESS = "study"  # what the address calls the place where the open study is kept
 STATE = "desk"  # the one entry of the session that matters; widgets are views of it
+
+
+@dataclass(frozen=True, eq=False)
+class Brought:
+    """A file as it was brought, from which its table can be read again in another way."""
+
+    content: bytes
+    name: str
+    place: str  # where studies of it are kept
 
 
 @dataclass(frozen=True, eq=False)
@@ -33,6 +42,9 @@ class State:
     complaint: str | None = None  # why the last file or choice was not taken
     about: str = TABLE  # what the complaint is about
     views: Mapping[str, Any] | None = None  # what is looked at, which no analysis depends on
+    files: Mapping[str, Brought] = field(default_factory=dict)  # by the fingerprint of each table read from them
+    news: tuple[str, ...] = ()  # what the last change brought along, told until the next one
+    unkept: str | None = None  # why the open study could not be written down
 
 
 def _state() -> State:
@@ -53,10 +65,87 @@ def complaint(about: str) -> str | None:
     return _state().complaint if _state().about == about else None
 
 
-def open_study(new: Study | None) -> None:
-    """Make a study the open one; the one before can be had back by undo."""
+def complain(sentence: str, about: str) -> None:
+    """Tell why a table or a choice was not taken."""
+    _remember(complaint=sentence, about=about)
+
+
+def open_study(new: Study, file: Brought | None = None, news: tuple[str, ...] = ()) -> None:
+    """Make a study the open one, of a file where it is the first of its table; the study before can be had back by undo."""
+    _open((new,), 0, file, news)
+
+
+def open_saved(saved: Saved, place: str) -> None:
+    """Open a study with its history, as it was saved."""
+    _open(saved.studies, saved.place, Brought(saved.content, saved.name, place), ())
+
+
+def _open(studies: tuple[Study, ...], at: int, file: Brought | None, news: tuple[str, ...]) -> None:
     now = _state()
-    _remember(study=new, past=(*now.past, now.study)[-HISTORY:], future=(), complaint=None)
+    past = (*now.past, now.study, *studies[:at])[-HISTORY:]
+    files = now.files if file is None else {**now.files, **{study.table.fingerprint: file for study in studies}}
+    _remember(study=studies[at], past=past, future=studies[at + 1 :], complaint=None, files=files, news=news)
+    _keep()
+
+
+def file() -> Brought | None:
+    """Return the file that the open table was read from; None where there is none, as for a data frame."""
+    now = study()
+    return None if now is None else _state().files.get(now.table.fingerprint)
+
+
+def _place_of(table: Table) -> str:
+    """Return where studies of a table's file are kept, or what else tells the table from others."""
+    found = _state().files.get(table.fingerprint)
+    return table.fingerprint if found is None else found.place
+
+
+def saved() -> Saved | None:
+    """Return the open study with its history and its file; None where there is no file."""
+    now, brought = _state(), file()
+    if brought is None:
+        return None
+    past = log.of_one_file([*now.past, now.study], _place_of)
+    future = log.of_one_file([*reversed(now.future), now.study], _place_of)[-2::-1]
+    return Saved(brought.name, brought.content, (*past, *future), len(past) - 1)
+
+
+def _keep() -> None:
+    """Write the open study down, so that neither a reload nor a restart loses it."""
+    brought, written = file(), saved()
+    if brought is None or written is None:
+        return
+    try:
+        keeping.keep(brought.place, written)
+    except OSError as error:
+        _remember(unkept=error.strerror or str(error))
+    else:
+        _remember(unkept=None)
+
+
+def unkept() -> str | None:
+    """Return why the open study could not be written down, or None where it was."""
+    return _state().unkept
+
+
+def news() -> tuple[str, ...]:
+    """Return what the last change brought along."""
+    return _state().news
+
+
+def come_back(reopen: Callable[[str], None]) -> None:
+    """Open the study that the address names, where a page was loaded anew."""
+    if STATE not in st.session_state and ADDRESS in st.query_params:
+        reopen(st.query_params[ADDRESS])
+
+
+def tell_address() -> None:
+    """Name the open study in the address, so that the page can be loaded anew."""
+    brought = file()
+    if brought is None:
+        st.query_params.pop(ADDRESS, None)
+    elif st.query_params.get(ADDRESS) != brought.place:
+        st.query_params[ADDRESS] = brought.place
 
 
 def change(**fields: Any) -> None:
@@ -96,14 +185,16 @@ def undo() -> None:
     """Go back to the study before the last change."""
     now = _state()
     if now.past:
-        _remember(study=now.past[-1], past=now.past[:-1], future=(now.study, *now.future), complaint=None)
+        _remember(study=now.past[-1], past=now.past[:-1], future=(now.study, *now.future), complaint=None, news=())
+        _keep()
 
 
 def redo() -> None:
     """Take back the last undo."""
     now = _state()
     if now.future:
-        _remember(study=now.future[0], past=(*now.past, now.study), future=now.future[1:], complaint=None)
+        _remember(study=now.future[0], past=(*now.past, now.study), future=now.future[1:], complaint=None, news=())
+        _keep()
 
 
 def can_undo() -> bool:
@@ -174,48 +265,15 @@ def look_at(**chosen: Any) -> None:
     _remember(views={**(_state().views or {}), **chosen})
 
 
-def bind_upload(key: str) -> dict[str, Any]:
-    """Tie an uploader to the desk: a file is read once, in its callback, and is not needed afterwards."""
-    return {"key": key, "on_change": lambda: _take_upload(key)}
+def bind_taken(key: str, take: Callable[[Any], None]) -> dict[str, Any]:
+    """Tie a widget to what is done with what it takes, once it took something."""
+    return {"key": key, "on_change": lambda: take(st.session_state[key])}
 
 
-def bind_paste(key: str) -> dict[str, Any]:
-    """Tie a text area to the desk: cells pasted into it are read like a file."""
-    return {"key": key, "on_change": lambda: _take_pasted(st.session_state[key])}
-
-
-def bind_sample(key: str) -> dict[str, Any]:
-    """Tie the choice of samples to the desk: choosing one opens it."""
-    now = study()
-    name = None if now is None else now.table.name
-    st.session_state[key] = next((sample.file for sample in samples.SAMPLES if Path(sample.file).name == name), None)
-    return {"key": key, "on_change": lambda: _take_sample(st.session_state[key])}
-
-
-def _take_upload(key: str) -> None:
-    file = st.session_state[key]
-    if file is not None:
-        bring(file.getvalue(), file.name)
-
-
-def _take_pasted(text: str) -> None:
-    if text.strip():
-        bring(text.encode(), PASTED)
-
-
-def _take_sample(file: str | None) -> None:
-    if file is not None:
-        bring(samples.path_of(file).read_bytes(), file)
-
-
-def bring(content: bytes, name: str) -> None:
-    """Read a file and open a study of it with the roles that its columns suggest; a refusal leaves the open study as it is."""
-    try:
-        table = read_table(content, name=name)
-        roles = guess_roles(table)
-        open_study(Study(table, roles.response, roles.row_factor, roles.column_factor, roles.block, roles.unit))
-    except Refusal as refusal:
-        _remember(complaint=str(refusal), about=TABLE)
+def bind_shown(key: str, value: Any, take: Callable[[Any], None]) -> dict[str, Any]:
+    """Tie a widget to a value that it shows, and to what is done with another one."""
+    st.session_state[key] = value
+    return bind_taken(key, take)
 
 
 @st.cache_resource(max_entries=64, show_spinner=False)
@@ -274,7 +332,7 @@ def reasons() -> Mapping[str, str]:
 
 def decisions() -> tuple[log.Entry, ...]:
     """Return every decision that led to the open study, in order; what was undone is not among them."""
-    studies = log.of_one_file([*_state().past, study()], lambda table: table.fingerprint)
+    studies = log.of_one_file([*_state().past, study()], _place_of)
     return log.log(studies, _roles(studies[0].table.fingerprint, studies[0].table).reasons if studies else {})
 
 

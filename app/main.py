@@ -4,7 +4,7 @@ from pathlib import Path
 
 import streamlit as st
 
-from app import desk, paper, stage, words
+from app import bringing, desk, paper, stage, words
 from app.stations import STATIONS
 
 HERE = Path(__file__).parent
@@ -15,8 +15,10 @@ page = st.navigation(
 st.set_page_config(page_title=f"{page.title} · Crossgrain", page_icon=str(HERE / "assets" / "icon.png"), layout="wide")
 st.html(paper.variables(stage.at_hand()))
 st.html(HERE / "assets" / "house.css")
+desk.come_back(bringing.come_back)
 with st.container(key="tools", horizontal=True, vertical_alignment="center", horizontal_alignment="right"):
     st.html(paper.status(words.open_table(desk.study())))
     st.button("Undo", key="undo", icon=":material/undo:", type="tertiary", disabled=not desk.can_undo(), on_click=desk.undo)
     st.button("Redo", key="redo", icon=":material/redo:", type="tertiary", disabled=not desk.can_redo(), on_click=desk.redo)
 page.run()
+desk.tell_address()

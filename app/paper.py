@@ -37,9 +37,10 @@ def heading(text: str, aside: str = "") -> str:
     return f"<h1 class='station'>{safe(text)}{beside}</h1>"
 
 
-def question(text: str) -> str:
-    """Return the heading of one part of a station."""
-    return f"<h2 class='question'>{safe(text)}</h2>"
+def question(text: str, aside: str = "") -> str:
+    """Return the heading of one part of a station, with a quieter part beside it."""
+    beside = f" <span class='aside'>{safe(aside)}</span>" if aside else ""
+    return f"<h2 class='question'>{safe(text)}{beside}</h2>"
 
 
 def answer(sentence: str, statistic: str, decided: bool, known: Sequence[str] = ()) -> str:
@@ -101,6 +102,17 @@ def levels(factor: str, counts: Sequence[tuple[str, int]]) -> str:
     """Return a factor's levels in their order, each with its count."""
     told = "".join(f"<li>{safe(level)} <span>{count}</span></li>" for level, count in counts)
     return f"<div class='levels'><h2>{safe(factor)}</h2><ul>{told}</ul></div>"
+
+
+def decided(sentence: str) -> str:
+    """Return a decision that is followed by what it could be instead."""
+    return f"<p class='decided'>{safe(sentence)} <span class='quiet'>Instead:</span></p>"
+
+
+def lines(numbered: Iterable[tuple[int, str]]) -> str:
+    """Return lines of a file as they stand there, each with its number."""
+    told = "".join(f"<li value='{number}'><code>{safe(text) or '&nbsp;'}</code></li>" for number, text in numbered)
+    return f"<div class='lines' tabindex='0' role='region' aria-label='The file as it stands'><ol>{told}</ol></div>"
 
 
 def offer(sentence: str) -> str:

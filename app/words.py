@@ -30,7 +30,7 @@ TYPES = "Cells are unequal, so each type of sums of squares answers a question o
 NOT_GIVEN = "not given"
 MATTERS_NOT_APPLIED = "The difference that matters is in the units of the response and is not applied on another scale."
 ADJUST, FAMILY, LETTERS = "Adjusted by", "What is compared", "Letters for a figure or table"
-DROP, SAMPLE = "Drop a file here or browse for one", "Or look around with an invented experiment"
+SAMPLE = "Or look around with an invented experiment"
 PASTE, PASTE_EXAMPLE = "Or paste cells from a spreadsheet, headings included", "light\tfeed\tyield (g)\nFull sun\tFeed A\t30.7"
 CHOOSE = "choose a column"
 ROLES: Mapping[str, str] = MappingProxyType(
@@ -64,7 +64,6 @@ CONTROL_HELP = "The level that the others are compared with, where Compare adjus
 LEVELS_HELP = "Write another name to rename a level; the name of another level makes the two one."
 NOTHING_OPEN = "There is no table yet."
 TO_BRING, TO_LAY_OUT = "Bring one", "Choose columns at Lay out"
-NOTHING_DECIDED = "Nothing: the file could be read in one way only."
 NO_ADDITIVE = "The model without interaction leaves no residual here."
 ADDITIVE_TABLE = "The model without interaction: what the interaction would explain is counted as chance. Type II sums of squares."
 FAMILY_TOO_LARGE = "This family holds too many comparisons to be written out; compare within one factor instead."
@@ -287,10 +286,8 @@ def rows_shown(shown: int, rows: int, columns: int) -> str:
     return f"{'All' if shown == rows else f'The first {shown} of'} {counted(rows, 'row')}, {counted(columns, 'column')}."
 
 
-def reckoning(analysed: int | None, left_out: int) -> str:
+def reckoning(analysed: int, left_out: int) -> str:
     """Return the account of the rows: each one is analysed or left out."""
-    if analysed is None:
-        return f"{counted(left_out, 'row')} left out so far; the full account follows once the columns have their roles."
     return f"{counted(analysed + left_out, 'row')} in the file: {fixed(analysed, 0)} analysed, {fixed(left_out, 0)} left out."
 
 

@@ -1,11 +1,13 @@
 """What every test may ask for: the checkout's folder, the samples, and a browser where there is one."""
 
+import os
 from pathlib import Path
 
 import hypothesis
 import pytest
 
 from analysis.refusals import NoBrowser
+from app import keeping
 from app.exports import images
 
 ROOT = Path(__file__).resolve().parents[1]
@@ -41,6 +43,12 @@ def browser_path() -> str | None:
         return images.browser()
     except NoBrowser:
         return None
+
+
+@pytest.fixture(scope="session", autouse=True)
+def private_folder(tmp_path_factory: pytest.TempPathFactory) -> None:
+    """Keep the studies that tests open out of the user's own folder, also those of servers that a test starts."""
+    os.environ[keeping.HOME] = str(tmp_path_factory.mktemp("home"))
 
 
 @pytest.fixture(scope="session")

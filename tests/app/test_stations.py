@@ -153,7 +153,7 @@ def test_a_dropped_file_opens_with_its_roles() -> None:
     dashboard.file_uploader(key="bring_file").upload("my pots.csv", content, "text/csv").run()
     study = opening.study_of(dashboard)
     assert (study.table.name, study.response, study.row_factor, study.column_factor) == ("my pots.csv", "yield (g)", "light", "feed")
-    assert "72 rows in the file: 72 analysed, 0 left out." in opening.page(dashboard)
+    assert "72 rows in the file: 72 analysed, 0 set aside, 0 unusable." in opening.page(dashboard)
 
 
 def test_a_sample_opens_by_its_name() -> None:
@@ -168,7 +168,7 @@ def test_pasted_cells_are_read_like_a_file() -> None:
     dashboard.text_area(key="bring_paste").set_value(text).run()
     study = opening.study_of(dashboard)
     assert (study.table.name, study.response, study.table.rows) == ("pasted cells", "yield (g)", 72)
-    assert "72 rows in the file: 72 analysed, 0 left out." in opening.page(dashboard)
+    assert "72 rows in the file: 72 analysed, 0 set aside, 0 unusable." in opening.page(dashboard)
     dashboard.button(key="undo").click().run()
     assert opening.study_of(dashboard) is None
 
