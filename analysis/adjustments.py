@@ -8,6 +8,7 @@ import numpy as np
 from numpy.typing import NDArray
 from scipy import stats
 
+from analysis import tails
 from analysis.distributions import dunnett, studentized_range
 
 Floats = NDArray[np.float64]
@@ -64,7 +65,7 @@ def single_step(family: Family, p: Floats, critical: float) -> Adjusted:
 
 def unadjusted(family: Family) -> Adjusted:
     """Leave every comparison at its own p-value and t quantile."""
-    return single_step(family, _p(family), stats.t.isf(family.alpha / 2, family.df))
+    return single_step(family, _p(family), tails.t_quantile(family.alpha / 2, family.df))
 
 
 def bonferroni(family: Family) -> Adjusted:
@@ -77,7 +78,7 @@ def sidak(family: Family) -> Adjusted:
     m = max(family.size, 1)
     with np.errstate(divide="ignore"):  # p = 1 (t = 0) stays 1
         p = -np.expm1(m * np.log1p(-_p(family)))
-    return single_step(family, p, stats.t.isf(-np.expm1(np.log1p(-family.alpha) / m) / 2, family.df))
+    return single_step(family, p, tails.t_quantile(-np.expm1(np.log1p(-family.alpha) / m) / 2, family.df))
 
 
 def holm(family: Family) -> Adjusted:
@@ -121,11 +122,11 @@ def against_control(family: Family) -> Adjusted:
 
 
 def _p(family: Family) -> Floats:
-    return np.asarray(2 * stats.t.sf(np.abs(family.t), family.df), dtype=np.float64)
+    return np.asarray(tails.t_two_sided(family.t, family.df), dtype=np.float64)
 
 
 def _bonferroni_critical(family: Family) -> float:
-    return float(stats.t.isf(family.alpha / (2 * max(family.size, 1)), family.df))
+    return float(tails.t_quantile(family.alpha / (2 * max(family.size, 1)), family.df))
 
 
 ADJUSTMENTS: Mapping[str, Adjustment] = MappingProxyType(

@@ -5,8 +5,8 @@ from dataclasses import dataclass
 
 import numpy as np
 import pandas as pd
-from scipy import stats
 
+from analysis import tails
 from analysis.distributions import noncentral_f
 from analysis.estimates import Estimates
 from analysis.model import Model
@@ -120,7 +120,7 @@ def _term_row(part: Part, model: Model, total: float, confidence: float) -> dict
         row["ms"] = part.ss / part.df
     if part.df > 0 and model.residual_df > 0 and model.residual_ms > 0:
         f = part.ss / part.df / model.residual_ms
-        row |= {"f": f, "p": float(stats.f.sf(f, part.df, model.residual_df))}
+        row |= {"f": f, "p": float(tails.f_upper(f, part.df, model.residual_df))}
         row |= effect_sizes(part.df, part.ss, f, model, total, confidence)
     return row
 
@@ -158,5 +158,5 @@ def r_squared(model: Model) -> tuple[float, float]:
 
 def is_defined(frame: pd.DataFrame, term: str) -> bool:
     """Return whether a table tests this term."""
-    row = frame.loc[frame["term"] == term, "df"]
-    return bool(row.size) and bool(np.isfinite(float(row.iloc[0])))
+    df = dict(zip(frame["term"].tolist(), frame["df"].tolist(), strict=True)).get(term)
+    return df is not None and bool(np.isfinite(df))

@@ -1,6 +1,6 @@
 """What each filled combination of the layout holds: count, mean and spread, from one pass over the rows."""
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cached_property
 
 import numpy as np
@@ -11,6 +11,7 @@ from analysis.observations import Observations
 Vector = NDArray[np.float64]
 Matrix = NDArray[np.float64]
 Codes = NDArray[np.intp]
+ROUNDED = 4 * float(np.finfo(float).eps)  # share of a mean that rounding can leave of a spread
 CHUNK = 1 << 18  # rows handled at a time, so that the working memory does not grow with the table
 
 
@@ -98,7 +99,22 @@ def strata_of(observed: Observations) -> Strata:
         mean=mean[filled] + drift / n,
         within_ss=np.maximum(squares[filled] - drift * drift / n, 0.0),
         pivot=observed.pivot,
-        rounding=4 * np.finfo(float).eps * float(np.abs(mean).max(initial=0.0)),
+        rounding=ROUNDED * float(np.abs(mean).max(initial=0.0)),
+    )
+
+
+def with_values(strata: Strata, stratum: Codes, values: Vector) -> Strata:
+    """Return the strata holding other values of the same observations (n,), none far from 0; stratum (n,) tells where each stands."""
+    size = strata.n.size
+    first = np.bincount(stratum, values, size) / strata.n
+    apart = values - first[stratum]
+    drift = np.bincount(stratum, apart, size) / strata.n
+    return replace(
+        strata,
+        mean=first + drift,
+        within_ss=np.maximum(np.bincount(stratum, apart * apart, size) - strata.n * drift * drift, 0.0),
+        pivot=0.0,
+        rounding=ROUNDED * float(np.abs(first).max(initial=0.0)),
     )
 
 

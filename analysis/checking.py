@@ -9,7 +9,7 @@ import pandas as pd
 from numpy.typing import NDArray
 
 from analysis.anova import INTERACTION
-from analysis.cells import Matrix, Vector, strata_of
+from analysis.cells import Matrix, Vector, with_values
 from analysis.checks import box_cox, hc3, influence, nonadditivity, shape, spread
 from analysis.checks.outcomes import FTest
 from analysis.coding import contrast_rows, sum_to_zero
@@ -61,7 +61,7 @@ def checks(layout: Design, confidence: float) -> dict[str, Any]:
         "bartlett": spread.bartlett(left.residual, left.cell, cells),
         "shapiro": None if layout.analysed.residual_ms == 0 else shape.shapiro(left.residual),
         "nonadditivity": product_test(layout, left.stratum),
-        "box_cox": best_power(layout, confidence),
+        "box_cox": best_power(layout, left.stratum, confidence),
         "hc3": robust_tests(layout, left),
         "influence": influence_frame(layout, left),
     }
@@ -107,13 +107,15 @@ def product_test(layout: Design, stratum: NDArray[np.intp]) -> FTest | None:
     return nonadditivity.nonadditivity_general(residual, row, column, left_over, additive.residual_df)
 
 
-def best_power(layout: Design, confidence: float) -> dict[str, float] | None:
+def best_power(layout: Design, stratum: NDArray[np.intp], confidence: float) -> dict[str, float] | None:
     """Return the Box-Cox power of the response as measured, for the model analysed."""
     observed = layout.observed
     measured = observed.scale.back(observed.values)
 
     def residual_ss(values: Vector) -> float:
-        strata = strata_of(replace(observed, offsets=values, pivot=0.0))
+        strata = with_values(layout.strata, stratum, values)
+        if layout.analysed.interaction and not strata.has_blocks:  # every cell is fitted by its own mean
+            return strata.without_rounding(float(strata.within_ss.sum()))
         return Model(Surfaces(strata), layout.analysed.interaction).residual_ss
 
     found = box_cox.box_cox(measured, residual_ss, confidence)

@@ -5,8 +5,8 @@ from dataclasses import dataclass
 
 import numpy as np
 import pandas as pd
-from scipy import stats
 
+from analysis import tails
 from analysis.adjustments import ADJUSTMENTS, Family, stepped_down
 from analysis.cells import Matrix, Vector
 from analysis.estimates import FREE_TOLERANCE, Estimates
@@ -24,17 +24,15 @@ def simple_effects(factor: str, slices: tuple[Slice, ...], model: Model) -> pd.D
 
     Source: Winer (1971), Statistical Principles in Experimental Design, section 5.2; Holm (1979), Scand. J. Statist. 6, 65-70.
     """
-    rows = []
-    for part in slices:
-        ss, df = part.estimates.equality()
-        rows.append((factor, part.within, df, model.residual_df, model.strata.without_rounding(ss) if df else np.nan))
-    frame = pd.DataFrame(rows, columns=list(SIMPLE_COLUMNS[:5]))
+    tested = [part.estimates.equality() for part in slices]
+    dfs = np.array([df for _, df in tested])
+    ss = np.array([model.strata.without_rounding(ss) if df else np.nan for ss, df in tested])
     ms = model.residual_ms if model.residual_ms > 0 else np.nan
-    dfs = frame["df"].to_numpy(float)
     with np.errstate(divide="ignore", invalid="ignore"):
-        f = np.where(dfs > 0, frame["ss"].to_numpy(float) / dfs / ms, np.nan)
-    p = np.asarray(stats.f.sf(f, dfs, model.residual_df), dtype=float)
-    return frame.assign(f=f, p=p, p_adjusted=stepped_down(p))
+        f = np.where(dfs > 0, ss / dfs / ms, np.nan)
+    p = np.asarray(tails.f_upper(f, dfs, model.residual_df), dtype=float)
+    columns = (factor, [part.within for part in slices], dfs, model.residual_df, ss, f, p, stepped_down(p))
+    return pd.DataFrame(dict(zip(SIMPLE_COLUMNS, columns, strict=True)))
 
 
 @dataclass(frozen=True)
@@ -67,7 +65,7 @@ def contrast(
     se = float(np.sqrt(one.unit_variance[0] * model.residual_ms))
     t = value / se if se > 0 else float("nan")
     reach = model.quantile(confidence) * se
-    return Contrast(value, se, model.residual_df, t, 2 * float(stats.t.sf(abs(t), model.residual_df)), value - reach, value + reach)
+    return Contrast(value, se, model.residual_df, t, float(tails.t_two_sided(t, model.residual_df)), value - reach, value + reach)
 
 
 def count(shape: tuple[int, int]) -> int:
@@ -100,7 +98,7 @@ def interaction_contrasts(
             "se": se,
             "t": t,
             "df": model.residual_df,
-            "p": 2 * stats.t.sf(np.abs(t), model.residual_df),
+            "p": tails.t_two_sided(t, model.residual_df),
             "p_adjusted": _adjusted_contrasts(t, dimension, model, choices),
             "lower": difference - reach,
             "upper": difference + reach,

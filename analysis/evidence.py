@@ -62,5 +62,6 @@ class Evidence:
 
     def tested(self, term: str) -> pd.Series | None:
         """Return the table's row of a term, or None where it has no F."""
-        row = self.table[self.table["term"] == term]
-        return None if row.empty or pd.isna(row["f"].iloc[0]) else row.iloc[0]
+        terms = self.table["term"].tolist()
+        row = self.table.iloc[terms.index(term)] if term in terms else None
+        return None if row is None or pd.isna(row["f"]) else row

@@ -3,6 +3,7 @@
 from analysis import verdicts
 from analysis.evidence import Evidence
 from analysis.families import within_name
+from analysis.frames import estimable
 from analysis.observations import Factor
 from analysis.rounding import measured, significant
 from analysis.sizes import SMALL_ENOUGH, Size
@@ -30,7 +31,7 @@ def shown(evidence: Evidence, factor: Factor, size: Size | None) -> tuple[str, s
     if size is not None and size.all_small:
         return verdicts.SMALL, f"{_capital(factor)} makes a difference, but one too small to matter."
     verdict = verdicts.LARGER if size is not None and size.verdict == verdicts.LARGER else verdicts.DIFFERS
-    means = evidence.marginal_means[factor.name].dropna(subset=["mean"])
+    means = estimable(evidence.marginal_means[factor.name], "mean")
     if size is None or means.empty:
         missing = "its means cannot be averaged while combinations are missing"
         return verdict, f"{_capital(factor)} matters, judged beside the other factor; {missing}."

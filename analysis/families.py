@@ -8,11 +8,12 @@ from typing import Any
 import numpy as np
 import pandas as pd
 from numpy.typing import NDArray
-from scipy import stats
 
+from analysis import tails
 from analysis.adjustments import ADJUSTMENTS, Adjusted, Family
 from analysis.cells import Vector
 from analysis.estimates import Estimates
+from analysis.frames import frame_of
 from analysis.model import Model
 from analysis.scales import Scale
 from analysis.verdicts import verdicts
@@ -74,8 +75,7 @@ def family_frame(slices: Sequence[Slice], model: Model, choices: Choices) -> pd.
     """Return the comparisons of a family, each slice adjusted on its own."""
     parts = [_slice_columns(part, model, choices) for part in slices]
     columns = {name: np.concatenate([part[name] for part in parts]) for name in COLUMNS}
-    # Levels stay objects: a column of text would be converted anew at every step.
-    return pd.DataFrame({name: pd.Series(values, dtype=values.dtype) for name, values in columns.items()})
+    return frame_of(columns)
 
 
 def _slice_columns(part: Slice, model: Model, choices: Choices) -> dict[str, NDArray[Any]]:
@@ -85,7 +85,7 @@ def _slice_columns(part: Slice, model: Model, choices: Choices) -> dict[str, NDA
     se = np.sqrt(unit_variance * model.residual_ms)
     with np.errstate(divide="ignore", invalid="ignore"):
         t = np.where(se > 0, difference / se, np.nan)
-    p = 2 * stats.t.sf(np.abs(t), model.residual_df)
+    p = tails.t_two_sided(t, model.residual_df)
     known = np.flatnonzero(np.isfinite(t))
     adjusted = _adjusted(part, t[known], left[known], right[known], model, choices)
     p_adjusted = np.full(t.size, np.nan)

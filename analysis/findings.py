@@ -18,15 +18,14 @@ from analysis.doubting import order
 from analysis.doubting.signs import Signs
 from analysis.evidence import Evidence
 from analysis.families import Choices, Slice
-from analysis.holding import agreement, table
-from analysis.holding.table import Analysed
+from analysis.holding import agreement, refits, table
+from analysis.holding.analysed import Analysed
 from analysis.layout import lay_out
 from analysis.model import Model
 from analysis.observations import Observations
 from analysis.refusals import UnknownLevel
 from analysis.study import Study
 
-ASKED_FOR = ("doubts", "holds")  # thousands of permutations stand behind them, so the object goes without
 VERSION = "0.1.0"
 LIBRARIES = ("numpy", "pandas", "scipy", "statsmodels")
 PARTS = (
@@ -216,7 +215,8 @@ class Findings:
     @cached_property
     def analysed(self) -> Analysed:
         """What the other defensible analyses are held against."""
-        return Analysed(self.layout, self.names, self.used["table"], self.tables, self.checks, self.study.confidence)
+        whole = refits.put_back(self.study, self.layout)
+        return Analysed(self.layout, self.names, self.used["table"], self.checks, self.study.confidence, whole)
 
     @cached_property
     def holds(self) -> pd.DataFrame:
@@ -300,7 +300,6 @@ class Findings:
                 self.study.matters is not None and self.choices.matters is None
             ),
             **checking.reasons(self.layout),
-            "Doubts and other defensible analyses are not written out here; from Python they are findings.doubts and findings.holds.": True,
         }
         large = [f"The family “{name}” holds too many comparisons to be written out one by one." for name in self._too_large()]
         return [*(sentence for sentence, applies in reasons.items() if applies), *large]
@@ -311,8 +310,8 @@ class Findings:
         return _versions()
 
     def to_dict(self) -> dict[str, Any]:
-        """Return the whole object in plain values: no NaN, None where something is undefined or asked for by name only."""
-        return {name: None if name in ASKED_FOR else plain.plain(getattr(self, name)) for name in PARTS}
+        """Return the whole object in plain values: no NaN, None where something is undefined."""
+        return {name: plain.plain(getattr(self, name)) for name in PARTS}
 
 
 @cache

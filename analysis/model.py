@@ -4,8 +4,8 @@ from dataclasses import dataclass
 from functools import cached_property
 
 import numpy as np
-from scipy import stats
 
+from analysis import tails
 from analysis.cells import Matrix, Strata
 from analysis.estimates import Estimates
 from analysis.surfaces import BLOCK, CELL, COLUMN, ROW, Surface, connected_parts
@@ -69,7 +69,7 @@ class Model:
 
     def quantile(self, confidence: float) -> float:
         """Return the two-sided t quantile for an interval at this confidence."""
-        return float(stats.t.isf((1 - confidence) / 2, self.residual_df)) if self.residual_df > 0 else float("nan")
+        return float(tails.t_quantile((1 - confidence) / 2, self.residual_df)) if self.residual_df > 0 else float("nan")
 
     @cached_property
     def cells(self) -> Estimates:

@@ -6,6 +6,7 @@ import numpy as np
 import pandas as pd
 
 from analysis import verdicts
+from analysis.frames import estimable
 from analysis.scales import Scale
 
 SMALL_ENOUGH = (verdicts.SMALL, verdicts.NONE_THAT_MATTERS)
@@ -28,9 +29,9 @@ class Size:
 
 def largest(frame: pd.DataFrame | None, scale: Scale) -> Size | None:
     """Return the size of the largest difference of a family with its adjusted interval, or None where nothing is estimable."""
-    if frame is None or frame["difference"].dropna().empty:
+    known = None if frame is None else estimable(frame, "difference")
+    if frame is None or known is None or known.empty:
         return None
-    known = frame.dropna(subset=["difference"])
     at = known.iloc[int(known["difference"].abs().to_numpy(float).argmax())]
     return _size(
         at,
@@ -44,9 +45,9 @@ def largest(frame: pd.DataFrame | None, scale: Scale) -> Size | None:
 
 def largest_contrast(frame: pd.DataFrame | None, matters: float | None, scale: Scale) -> Size | None:
     """Return the size of the largest difference of differences with its own (unadjusted) interval."""
-    if frame is None or frame["difference"].dropna().empty:
+    known = None if frame is None else estimable(frame, "difference")
+    if frame is None or known is None or known.empty:
         return None
-    known = frame.dropna(subset=["difference"])
     limit = matters if scale.is_identity else None
     found = verdicts.verdicts(known["lower"].to_numpy(float), known["upper"].to_numpy(float), limit)
     at = known.iloc[int(known["difference"].abs().to_numpy(float).argmax())]

@@ -2,8 +2,9 @@
 
 import numpy as np
 import pandas as pd
-from scipy import linalg, stats
+from scipy import linalg
 
+from analysis import tails
 from analysis.cells import Matrix, Vector
 from analysis.estimates import Estimates
 from analysis.families import Slice
@@ -68,7 +69,7 @@ def _single(part: str, one: Estimates, model: Model, confidence: float) -> dict[
 
 def _tested(part: str, ss: float, df: int, model: Model) -> dict[str, object]:
     f = ss / df / model.residual_ms if model.residual_ms > 0 else float("nan")
-    return {"part": part, "df": df, "residual_df": model.residual_df, "ss": ss, "f": f, "p": float(stats.f.sf(f, df, model.residual_df))}
+    return {"part": part, "df": df, "residual_df": model.residual_df, "ss": ss, "f": f, "p": float(tails.f_upper(f, df, model.residual_df))}
 
 
 def _slopes_differ(factor: str, x: Vector, slices: tuple[Slice, ...], model: Model) -> dict[str, object]:

@@ -5,6 +5,8 @@ from typing import SupportsFloat
 
 from scipy import stats
 
+from analysis import tails
+
 
 @dataclass(frozen=True)
 class FTest:
@@ -27,7 +29,7 @@ class ChiSquare:
 
 def f_test(f: SupportsFloat, df1: int, df2: int) -> FTest:
     """Return the test of an F statistic."""
-    return FTest(float(f), df1, df2, float(stats.f.sf(float(f), df1, df2)))
+    return FTest(float(f), df1, df2, float(tails.f_upper(float(f), df1, df2)))
 
 
 def chi_square(chi2: SupportsFloat, df: int) -> ChiSquare:

@@ -8,8 +8,8 @@ from typing import Any
 import numpy as np
 import pandas as pd
 from numpy.typing import NDArray
-from scipy import stats
 
+from analysis import tails
 from analysis.cells import Vector
 from analysis.design import Design
 
@@ -64,7 +64,7 @@ class Signs:
         df = self.layout.analysed.residual_df - 1
         if df < 1 or not np.isfinite(self.student).any():
             return 1.0
-        return float(min(1.0, 2 * self.n * stats.t.sf(np.nanmax(np.abs(self.student)), df)))
+        return float(min(1.0, self.n * tails.t_two_sided(np.nanmax(np.abs(self.student)), df)))
 
     @cached_property
     def farthest(self) -> int:

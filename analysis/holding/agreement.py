@@ -22,8 +22,11 @@ def told(holds: pd.DataFrame) -> str:
 
 def dissenting(holds: pd.DataFrame) -> dict[str, tuple[str, ...]]:
     """Return the analyses that answer otherwise, by question."""
-    other = holds[[value is False for value in holds["same"].tolist()]]
-    return {str(term): tuple(rows["analysis"]) for term, rows in other.groupby("term", sort=False)}
+    apart: dict[str, tuple[str, ...]] = {}
+    for analysis, term, same in zip(holds["analysis"], holds["term"], holds["same"], strict=True):
+        if same is False:
+            apart[term] = (*apart.get(term, ()), analysis)
+    return apart
 
 
 def _one(term: str, names: tuple[str, ...], count: int) -> str:

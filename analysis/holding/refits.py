@@ -6,8 +6,11 @@ import numpy as np
 from numpy.typing import NDArray
 
 from analysis.design import Design, design_over
+from analysis.layout import lay_out
 from analysis.observations import Factor, Observations
+from analysis.refusals import Refusal
 from analysis.scales import Scale
+from analysis.study import Study
 
 
 def without(layout: Design, left_out: NDArray[np.bool_]) -> Design:
@@ -33,6 +36,18 @@ def on_scale(layout: Design, scale: Scale) -> Design | None:
         return None
     other: Observations = replace(layout.observed, scale=scale, offsets=scale.forward(measured), pivot=0.0)
     return design_over(other, layout.wants_interaction)
+
+
+def put_back(study: Study, layout: Design) -> Design | None:
+    """Return the layout with the rows set aside put back; None where none are, or where they bring levels of their own."""
+    if not study.set_aside:
+        return None
+    try:
+        observed = lay_out(replace(study, set_aside={}))
+    except Refusal:  # the rows were set aside because they stand in the way, of a scale or of a unit: then nothing else can be compared
+        return None
+    same = all(one.levels == other.levels for one, other in zip(observed.factors[:2], layout.observed.factors[:2], strict=True))
+    return design_over(observed, layout.wants_interaction) if same and observed.size > layout.observed.size else None
 
 
 def without_interaction(layout: Design) -> Design:

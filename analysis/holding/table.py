@@ -1,76 +1,31 @@
 """The defensible analyses of one study beside each other: each question's p-value and its largest difference."""
 
 from collections.abc import Callable, Iterator, Mapping
-from dataclasses import dataclass
-from functools import cached_property, partial
-from typing import Any
+from functools import partial
 
 import numpy as np
 import pandas as pd
-from scipy import stats
 
-from analysis import anova
-from analysis.anova import INTERACTION, Names
+from analysis import tails
 from analysis.cells import Vector
-from analysis.design import Design
-from analysis.holding import refits, welch
-from analysis.holding.bases import Bases, bases_of
-from analysis.holding.hypotheses import hypotheses, largest_contrasts
-from analysis.holding.permutation import PERMUTATIONS, permuted
-from analysis.scales import Scale, scale_named
+from analysis.holding import fits, refits, unequal_spread
+from analysis.holding.analysed import Analysed, Entry, ends
+from analysis.holding.bases import Bases
+from analysis.holding.permutation import LEAST, SIDE, permuted, side_for
+from analysis.rounding import fixed
+from analysis.scales import scale_named
 
 COLUMNS = ("analysis", "term", "p", "effect", "lower", "upper", "same", "note")
 AS_ANALYSED = "as analysed"
 LOG, MEASURED = "log scale", "scale as measured"
-MOST_ENTRIES = 2_000_000  # entries of the questions' directions beyond which permutation takes no part
 MOST_BLOCKS = 50  # blocks left out one at a time
 TYPES_TOLD = {
     "type_1": "Type I, the row factor first",
     "type_1_column_first": "Type I, the column factor first",
     "type_2": "Type II",
-    "type_3": "Type III",
-}
+}  # Type III is the one told wherever it is defined and differs from these
 Progress = Callable[[int, int], None]  # analyses done, analyses in all
-
-
-@dataclass(frozen=True)
-class Entry:
-    """What one analysis says of one question: effects in response units, or a ratio where a log scale is analysed."""
-
-    p: float | None
-    effect: float | None = None
-    lower: float | None = None
-    upper: float | None = None
-    note: str = ""
-
-
-@dataclass(frozen=True, eq=False)
-class Analysed:
-    """The analysis that the others are held against."""
-
-    layout: Design
-    names: Names
-    used: str  # the type of table that the answers read
-    tables: Mapping[str, pd.DataFrame]
-    checks: Mapping[str, Any]
-    confidence: float
-
-    @property
-    def terms(self) -> tuple[str, ...]:
-        """The questions, the interaction first where it is analysed."""
-        factors = (self.names.row, self.names.column)
-        return (INTERACTION, *factors) if self.layout.analysed.interaction else factors
-
-    @cached_property
-    def contrasts(self) -> Mapping[str, Vector]:
-        """The weights over cells of the difference that every analysis tells."""
-        return largest_contrasts(self.layout, self.names)
-
-    @cached_property
-    def bases(self) -> Bases | None:
-        """The questions' hypotheses, None where the layout leaves an effect open or is too large."""
-        strata = self.layout.strata
-        return bases_of(self.layout, self.names) if strata.n.size * self.layout.analysed.parameters <= MOST_ENTRIES else None
+Analyses = Iterator[tuple[str, Callable[[], Mapping[str, Entry]]]]
 
 
 def holds(analysed: Analysed, progress: Progress | None = None) -> pd.DataFrame:
@@ -79,7 +34,7 @@ def holds(analysed: Analysed, progress: Progress | None = None) -> pd.DataFrame:
     `same` says whether the question is decided alike at the study's confidence with the difference pointing the same way; missing
     where an analysis cannot test the question.
     """
-    analyses = _analyses(analysed)
+    analyses = list(_analyses(analysed))
     reference: Mapping[str, Entry] = {}
     rows = []
     for done, (name, compute) in enumerate(analyses, start=1):
@@ -91,83 +46,43 @@ def holds(analysed: Analysed, progress: Progress | None = None) -> pd.DataFrame:
                 rows.append((name, term, *vars(entries[term]).values(), same))
         if progress is not None:
             progress(done, len(analyses))
-    frame = pd.DataFrame(rows, columns=["analysis", "term", "p", "effect", "lower", "upper", "note", "same"])
-    return frame[list(COLUMNS)].astype(dict.fromkeys(("p", "effect", "lower", "upper"), float))
+    columns = dict(zip(("analysis", "term", "p", "effect", "lower", "upper", "note", "same"), zip(*rows, strict=True), strict=True))
+    numbers = {name: np.array(columns[name], dtype=float) for name in ("p", "effect", "lower", "upper")}
+    same_told = {"same": np.array(columns["same"], dtype=object)}
+    return pd.DataFrame({name: (columns | numbers | same_told)[name] for name in COLUMNS})
 
 
 def _tells_ratios(name: str, analysed: Analysed) -> bool:
-    scale = analysed.layout.observed.scale
-    return name == LOG or (scale.tells_ratios and name != MEASURED)
+    return name == LOG or (analysed.scale.tells_ratios and name != MEASURED)
 
 
-def _analyses(analysed: Analysed) -> list[tuple[str, Callable[[], Mapping[str, Entry]]]]:
-    """Return every analysis that this study allows with the way to compute it, cheap ones first."""
-    return [
-        (AS_ANALYSED, lambda: _from_table(analysed, analysed.layout, analysed.used)),
-        *_other_models(analysed),
-        *_other_types(analysed),
-        *_scales(analysed),
-        *_unequal_spread(analysed),
-        *_less_data(analysed),
-        *_permutation(analysed),
-    ]
-
-
-Analyses = Iterator[tuple[str, Callable[[], Mapping[str, Entry]]]]
-
-
-def _from_table(analysed: Analysed, layout: Design, kind: str) -> dict[str, Entry]:
-    """Return the entries of a least-squares fit with tests of one type."""
-    parts = {part.term: part for part in anova.parts(layout.analysed, analysed.names, kind)}
-    entries = {}
-    for term in analysed.terms:
-        if term in parts:
-            effect = _effect(analysed, layout, analysed.contrasts[term])
-            entries[term] = Entry(_p(parts[term], layout), *effect)
-    return entries
-
-
-def _p(part: anova.Part, layout: Design) -> float | None:
-    model = layout.analysed
-    if not part.df or part.ss is None or model.residual_df < 1 or model.residual_ms == 0:
-        return None
-    return float(stats.f.sf(part.ss / part.df / model.residual_ms, part.df, model.residual_df))
-
-
-def _effect(analysed: Analysed, layout: Design, weights: Vector) -> tuple[float | None, float | None, float | None]:
-    """Return the difference with its interval; nothing where it is not estimable or has no unit to be told in."""
-    model, scale = layout.analysed, layout.observed.scale
-    told = model.cells.combined(weights[None])
-    if not told.estimable[0] or not (scale.tells_ratios or scale.is_identity or scale.name == analysed.layout.observed.scale.name):
-        return None, None, None
-    half = model.quantile(analysed.confidence) * float(np.sqrt(model.residual_ms * told.unit_variance[0]))
-    return _ends(scale, float(told.value[0]), half)
-
-
-def _ends(scale: Scale, value: float, half: float) -> tuple[float, float, float]:
-    ends = (value, value - half, value + half)
-    return tuple(float(np.exp(end)) for end in ends) if scale.tells_ratios else ends  # type: ignore[return-value]
+def _analyses(analysed: Analysed) -> Analyses:
+    """Yield every analysis that this study allows with the way to compute it, cheap ones first."""
+    yield AS_ANALYSED, lambda: fits.entries(analysed, analysed.layout, analysed.used)
+    yield from _other_models(analysed)
+    yield from _other_types(analysed)
+    yield from _scales(analysed)
+    yield from unequal_spread.analyses(analysed)
+    yield from _other_rows(analysed)
+    yield from _permutation(analysed)
 
 
 def _other_models(analysed: Analysed) -> Analyses:
     layout = analysed.layout
     if layout.analysed.interaction and layout.connected:
         other = refits.without_interaction(layout)
-        yield "without the interaction", lambda: _from_table(analysed, other, "type_2")
+        yield "without the interaction", lambda: fits.entries(analysed, other, "type_2")
     elif layout.full.residual_df > 1 and not layout.empty_cells:
         other = refits.with_interaction(layout)
-        yield "with the interaction", lambda: _from_table(analysed, other, "type_3")
+        yield "with the interaction", lambda: fits.entries(analysed, other, "type_3")
 
 
 def _other_types(analysed: Analysed) -> Analyses:
     """Yield the other sums of squares where they are not the same for every question."""
-    if analysed.layout.balanced:
-        return
-    for kind, told in TYPES_TOLD.items():
-        table = analysed.tables[kind]
-        defined = all(anova.is_defined(table, term) for term in (analysed.names.row, analysed.names.column))
-        if kind != analysed.used and defined and (kind != "type_3" or analysed.layout.analysed.interaction):
-            yield told, partial(_from_table, analysed, analysed.layout, kind)
+    if not analysed.layout.balanced:
+        for kind, told in TYPES_TOLD.items():
+            if kind != analysed.used:
+                yield told, partial(fits.entries, analysed, analysed.layout, kind)
 
 
 def _scales(analysed: Analysed) -> Analyses:
@@ -175,88 +90,64 @@ def _scales(analysed: Analysed) -> Analyses:
     best = analysed.checks["box_cox"]
     rounded = None if best is None else round(2 * best["lambda"]) / 2
     if rounded is not None and rounded not in (0.0, 1.0):
-        names[f"power {rounded:g}, the best one rounded"] = f"power={rounded:g}"
+        names[f"power {fixed(rounded, int(rounded % 1 > 0))}, the best one rounded"] = f"power={rounded:g}"
     for told, name in names.items():
-        if name == analysed.layout.observed.scale.name:
+        if name == analysed.scale.name:
             continue
         other = refits.on_scale(analysed.layout, scale_named(name))
         if other is not None:
-            yield told, partial(_from_table, analysed, other, analysed.used)
+            yield told, partial(fits.entries, analysed, other, analysed.used)
 
 
-def _unequal_spread(analysed: Analysed) -> Analyses:
-    robust = analysed.checks["hc3"].set_index("term")["p"]
-    if robust.notna().any():
-        yield "unequal spread allowed (HC3)", lambda: _hc3_entries(analysed, robust)
-    layout = analysed.layout
-    if layout.analysed.interaction and not layout.strata.has_blocks and layout.cells.n.min() > 1 and np.all(layout.cells.sd > 0):
-        yield "unequal spread allowed (ANOVA-type statistic)", lambda: _welch_entries(analysed)
-
-
-def _hc3_entries(analysed: Analysed, robust: "pd.Series[float]") -> dict[str, Entry]:
-    return {
-        term: Entry(float(robust[term]), *_own_spread_effect(analysed, term, inflated=True))
-        for term in analysed.terms
-        if pd.notna(robust[term])
-    }
-
-
-def _welch_entries(analysed: Analysed) -> dict[str, Entry]:
-    cells = analysed.layout.cells
-    tests = hypotheses(analysed.layout.observed.shape, analysed.names)
-    means, variances, n = cells.mean.ravel(), cells.sd.ravel() ** 2, cells.n.ravel().astype(float)
-    means = means - means.mean()
-    return {
-        term: Entry(welch.anova_type_p(means, variances, n, tests[term]), *_own_spread_effect(analysed, term, inflated=False))
-        for term in analysed.terms
-    }
-
-
-def _own_spread_effect(analysed: Analysed, term: str, *, inflated: bool) -> tuple[float | None, float | None, float | None]:
-    """Return the difference with an interval from the cells' own spreads: HC3 variances, or Welch's with Satterthwaite's df.
-
-    Source: Satterthwaite (1946), Biometrics Bulletin 2, 110-114; HC3 in a cell is SS n² / (n - 1)² / n².
-    """
-    layout, weights = analysed.layout, analysed.contrasts[term]
-    n, sd = layout.cells.n.ravel(), layout.cells.sd.ravel()
-    if layout.strata.has_blocks or not layout.analysed.interaction:
-        return _effect(analysed, layout, weights)[0], None, None
-    used = weights != 0
-    share = weights[used] ** 2 * sd[used] ** 2 / (n[used] - (1 if inflated else 0))
-    df = layout.analysed.residual_df if inflated else float(share.sum() ** 2 / np.sum(share**2 / (n[used] - 1)))
-    half = float(stats.t.isf((1 - analysed.confidence) / 2, df) * np.sqrt(share.sum()))
-    return _ends(layout.observed.scale, float(layout.analysed.cells.combined(weights[None]).value[0]), half)
-
-
-def _less_data(analysed: Analysed) -> Analyses:
-    layout, frame = analysed.layout, analysed.checks["influence"]
-    cook = frame["cook"].to_numpy(float)
-    if np.isfinite(cook).any() and layout.analysed.residual_df > 2:
-        at = int(np.nanargmax(cook))
-        yield (
-            f"without row {frame['row'].iloc[at]}, the most influential",
-            lambda: _from_table(analysed, refits.without(layout, np.arange(cook.size) == at), analysed.used),
-        )
+def _other_rows(analysed: Analysed) -> Analyses:
+    """Yield the analyses without the most influential observation, without each block, and with the rows set aside."""
+    layout, at = analysed.layout, analysed.most_influential
+    if at is not None:
+        yield f"without row {layout.observed.file_rows[at]}, the most influential", lambda: _without_one(analysed, at)
     block = layout.observed.block
     for k, level in enumerate(block.levels[:MOST_BLOCKS] if block is not None and block.size > 2 else ()):
         smaller = refits.without(layout, block.codes == k) if block is not None else layout
         if smaller.analysed.residual_df > 1 and smaller.analysed.interaction == layout.analysed.interaction:
-            yield f"without block {level}", partial(_from_table, analysed, smaller, analysed.used)
+            yield f"without block {level}", partial(fits.entries, analysed, smaller, analysed.used)
+    if analysed.whole is not None and analysed.whole.analysed.interaction == layout.analysed.interaction:
+        yield "rows set aside put back", partial(fits.entries, analysed, analysed.whole, analysed.used)
+
+
+def _without_one(analysed: Analysed, at: int) -> dict[str, Entry]:
+    """Return the answers without one observation: in closed form, or by fitting again where the layout leaves an effect open."""
+    if analysed.without is None:
+        left_out = np.arange(analysed.layout.observed.size) == at
+        return fits.entries(analysed, refits.without(analysed.layout, left_out), analysed.used)
+    found = {}
+    for term, told in analysed.without.items():
+        half = float(tails.t_quantile((1 - analysed.confidence) / 2, told.df) * told.se[at])
+        found[term] = Entry(float(told.p[at]), *ends(analysed.scale, float(told.effect[at]), half))
+    return found
 
 
 def _permutation(analysed: Analysed) -> Analyses:
-    if analysed.bases is not None and analysed.layout.analysed.residual_ms > 0 and analysed.used != "type_1":
-        yield f"permutation of residuals ({PERMUTATIONS:,})".replace(",", "\u202f"), lambda: _permuted_entries(analysed)
+    bases = analysed.bases
+    if bases is not None and analysed.layout.analysed.residual_ms > 0:
+        side = side_for(bases)
+        count = f" ({fixed(side * side, 0)})" if side else ""
+        yield f"permutation of residuals{count}", lambda: _permuted(analysed, bases, side)
 
 
-def _permuted_entries(analysed: Analysed) -> dict[str, Entry]:
-    found = permuted(analysed.bases) if analysed.bases is not None else {}
+def _permuted(analysed: Analysed, bases: Bases, side: int) -> dict[str, Entry]:
+    if not side:
+        why = f"Left out: {fixed(LEAST, 0)} permutations of so many observations would take too long."
+        return {term: Entry(None, note=why) for term in analysed.terms}
+    fewer = "" if side == SIDE else " Fewer permutations than usual, because there are many observations."
     return {
         term: Entry(
-            value.p, _effect(analysed, analysed.layout, analysed.contrasts[term])[0], None, None, f"Monte Carlo error {value.error:.4f}"
+            value.p, _estimate(analysed, bases, analysed.contrasts[term]), note=f"Monte Carlo error {fixed(value.error, 4)}.{fewer}"
         )
-        for term, value in found.items()
+        for term, value in permuted(bases, side).items()
     }
+
+
+def _estimate(analysed: Analysed, bases: Bases, contrast: Vector) -> float:
+    return ends(analysed.scale, float(contrast @ bases.cell_rows @ bases.coordinates), 0.0)[0]
 
 
 def _same(entry: Entry, reference: Entry, alpha: float, ratios: bool) -> bool | None:

@@ -4,11 +4,12 @@ import numpy as np
 import pandas as pd
 import pytest
 from scipy import stats
+from statsmodels.stats import oneway
 
 from analysis.anova import INTERACTION
+from analysis.coding import contrast_rows
 from analysis.holding import agreement, table, welch
-from analysis.holding.leave_one_out import p_without_each
-from analysis.holding.permutation import PERMUTATIONS, permuted
+from analysis.holding.permutation import permuted
 from analysis.plain import plain
 from tests.analysis.experiments import analysed, crossed
 
@@ -27,11 +28,14 @@ def _blocked() -> pd.DataFrame:
 def test_leaving_one_out_equals_fitting_again(frame: pd.DataFrame, choices: dict[str, str]) -> None:
     found = analysed(frame, **choices)
     kind = "type_3" if found.layout.analysed.interaction else "type_2"
-    told = p_without_each(found.analysed.bases)
     for k in range(len(frame)):
-        again = analysed(frame.drop(index=k), **choices).tables[kind].set_index("term")["p"]
-        for term, p in told.items():
-            assert p[k] == pytest.approx(again[term], rel=1e-10, abs=1e-14)
+        again = analysed(frame.drop(index=k), **choices)
+        p = again.tables[kind].set_index("term")["p"]
+        for term, told in found.analysed.without.items():
+            estimate = again.layout.analysed.cells.combined(found.analysed.contrasts[term][None])
+            assert told.p[k] == pytest.approx(p[term], rel=1e-10, abs=1e-14)
+            assert told.effect[k] == pytest.approx(estimate.value[0] + 0.0, rel=1e-10, abs=1e-12)
+            assert told.se[k] == pytest.approx(np.sqrt(again.fit["residual_ms"] * estimate.unit_variance[0]), rel=1e-10)
 
 
 @pytest.mark.parametrize("seed", range(4))
@@ -42,7 +46,7 @@ def test_permutation_agrees_with_f_on_normal_data(seed: int) -> None:
     found = analysed(frame)
     f = found.tables["type_3"].set_index("term")["p"]
     for term, told in permuted(found.analysed.bases).items():
-        assert told.error == pytest.approx(np.sqrt(told.p * (1 - told.p) / PERMUTATIONS))
+        assert told.error == pytest.approx(np.sqrt(told.p * (1 - told.p) / told.permutations))
         assert told.p == pytest.approx(f[term], abs=4 * told.error + 0.012)
 
 
@@ -51,13 +55,24 @@ def test_permutation_gives_the_same_each_time() -> None:
     assert permuted(bases) == permuted(bases)
 
 
-def test_with_two_cells_the_anova_type_statistic_is_welchs_t() -> None:
+def _test_of_groups(groups: list[np.ndarray]) -> welch.WelchJames:
+    means, variances, n = (np.array([measure(group) for group in groups]) for measure in (np.mean, lambda g: g.var(ddof=1), np.size))
+    return welch.welch_james(means, variances, n, contrast_rows(len(groups)))
+
+
+def test_with_two_cells_welch_james_is_welchs_t() -> None:
     """Source: scipy.stats.ttest_ind(equal_var=False); with one contrast of two means the statistic is Welch's t squared."""
     rng = np.random.default_rng(1)
     one, other = rng.normal(size=9), rng.normal(1, 3, size=5)
-    means, variances = np.array([one.mean(), other.mean()]), np.array([one.var(ddof=1), other.var(ddof=1)])
-    p = welch.anova_type_p(means, variances, np.array([9.0, 5.0]), np.array([[1.0, -1.0]]))
-    assert p == pytest.approx(stats.ttest_ind(one, other, equal_var=False).pvalue, rel=1e-10)
+    assert _test_of_groups([one, other]).p == pytest.approx(stats.ttest_ind(one, other, equal_var=False).pvalue, rel=1e-10)
+
+
+def test_with_one_factor_welch_james_is_welchs_f() -> None:
+    """Source: statsmodels.stats.oneway.anova_oneway(use_var="unequal"), Welch (1951), Biometrika 38, 330-336."""
+    rng = np.random.default_rng(2)
+    groups = [spread * rng.normal(size=n) for n, spread in ((4, 4), (12, 1), (7, 2), (9, 1))]
+    told, welchs = _test_of_groups(groups), oneway.anova_oneway(groups, use_var="unequal", welch_correction=True)
+    assert (told.f, told.df2, told.p) == pytest.approx((welchs.statistic, welchs.df_denom, welchs.pvalue), rel=1e-10)
 
 
 def test_the_analysis_told_comes_first_and_every_question_has_its_row() -> None:
