@@ -1,6 +1,8 @@
 """The words of Bring: what may be brought, what is being read, how the reader's decisions are changed, and which studies are kept."""
 
 from analysis.counted import Account
+from analysis.reading import limits
+from analysis.rounding import fixed
 from app import keeping, words
 from app.keeping import Earlier
 
@@ -13,6 +15,14 @@ FOLLOWED = "What followed from reading it so"
 EARLIER, OPEN_AGAIN, FORGET = "Earlier studies on this machine", "Open", "Forget"
 COMING_BACK = "Opening the study again …"
 BUSY_FROM = 5 * 2**20  # bytes, from which a file is told with its size while it is read
+
+
+def file_limit(megabytes: int) -> str:
+    """Return how large a file may be."""
+    return (
+        f"Up to {megabytes} MB, {fixed(limits.ROWS, 0)} rows and {fixed(limits.COLUMNS, 0)} columns; a workbook may unpack to "
+        f"{limits.UNPACKED_BYTES // 2**20} MB. Up to {limits.FILE_BYTES // 2**30} GB is read from a shell: python -m analysis."
+    )
 
 
 def reading(name: str, size: int) -> str:

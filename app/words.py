@@ -237,11 +237,6 @@ def percent_told(share: float) -> str:
     return f"{share * 100:g} %"
 
 
-def file_limit(megabytes: int) -> str:
-    """Return how large a file may be that is dropped on the screen."""
-    return f"Up to {megabytes} MB. A larger one is read from a shell: python -m analysis."
-
-
 def open_table(study: Study | None) -> str:
     """Return which table is open."""
     return "" if study is None else f"{study.table.name} · {counted(study.table.rows, 'row')}"

@@ -19,7 +19,7 @@ def show() -> None:
     left, right = st.columns([5, 7] if study is None else [4, 9], gap="large")
     with left:
         st.file_uploader(bring_words.DROP, type=FILES, help=bring_words.DROP_HELP, **desk.bind_taken("bring_file", bringing.upload))
-        st.html(paper.caption(words.file_limit(st.get_option("server.maxUploadSize"))))
+        st.html(paper.caption(bring_words.file_limit(st.get_option("server.maxUploadSize"))))
         stage.complaint(desk.TABLE)
         st.text_area(words.PASTE, height=90, placeholder=words.PASTE_EXAMPLE, **desk.bind_taken("bring_paste", bringing.paste))
         _earlier()

@@ -6,7 +6,7 @@ import streamlit as st
 
 from analysis.findings import Findings
 from analysis.refusals import NoBrowser
-from app import boards, paper, stage, take_away, walk, words
+from app import boards, paper, saving, stage, take_away, walk, words
 from app.exports import images
 from app.figures import interaction
 
@@ -49,6 +49,7 @@ def _files(findings: Findings) -> None:
             )  # fmt: skip
             if off:
                 st.html(paper.notice(off))
+    saving.show()
 
 
 def _why_no_pictures() -> str | None:

@@ -8,7 +8,7 @@ from streamlit.testing.v1 import AppTest
 
 from analysis import log, study_file
 from analysis.reading.choices import Reading
-from app import bring_words, keeping
+from app import bring_words, keeping, saving
 from tests.app import opening
 
 MESSY = "Trial 12, greenhouse\n\nlight;feed;yield;pot\n" + "".join(
@@ -176,3 +176,11 @@ def test_a_folder_that_cannot_be_written_is_told(home: Path) -> None:
     dashboard = dropped()
     assert opening.study_of(dashboard).table.rows == 18
     assert "could not be kept on this machine" in opening.page(dashboard)
+
+
+def test_the_study_is_saved_at_tell() -> None:
+    dashboard = dropped()
+    dashboard.switch_page("stops/tell.py").run()
+    assert not dashboard.exception
+    assert html.escape(saving.HOLDS) in opening.page(dashboard)
+    assert html.escape(saving.NO_FILE) in opening.page(opening.station("tell", opening.sample()))

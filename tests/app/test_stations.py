@@ -10,7 +10,7 @@ import pytest
 from analysis.refusals import Refusal
 from analysis.rounding import p_number
 from analysis.study import Study
-from app import records, tabled, words
+from app import bring_words, records, tabled, words
 from app.stations import STATIONS
 from tests.app import opening
 
@@ -21,7 +21,7 @@ KEYS = {
     "answer": ("answers", "grid", "interaction", "cell_means", "choice_model", "choice_scale", "choice_confidence", "choice_matters"),
     "compare": ("compare_table", "choice_adjust", "grid"),
     "doubt": ("by_cell", "along_fitted", "against_bell"),
-    "tell": ("tell_start", "save_deck", "save_workbook", "save_tables", "save_script", "save_figures"),
+    "tell": ("tell_start", "save_deck", "save_workbook", "save_tables", "save_script", "save_figures", "save_study"),
 }
 NAMES = [station.name for station in STATIONS]
 SAMPLES = ["basil_light_feed.csv", "coating_primer_cure.csv", "yeast_sugar.xlsx"]
@@ -181,8 +181,8 @@ def test_pasted_words_get_one_sentence() -> None:
 
 
 def test_the_limit_of_a_file_is_that_of_the_server() -> None:
-    limit = words.file_limit(tomllib.loads((opening.ROOT / ".streamlit" / "config.toml").read_text())["server"]["maxUploadSize"])
-    assert limit.startswith("Up to 200 MB.")
+    limit = bring_words.file_limit(tomllib.loads((opening.ROOT / ".streamlit" / "config.toml").read_text())["server"]["maxUploadSize"])
+    assert limit.startswith("Up to 200 MB, ")
     assert limit in opening.page(opening.station("bring"))
     assert "up to 200 MB" in (opening.ROOT / "README.md").read_text(encoding="utf-8")
 
