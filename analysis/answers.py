@@ -111,7 +111,8 @@ def _statistic(evidence: Evidence, tested: pd.Series, term: str, size: Size | No
         what = "largest difference of differences" if term == anova.INTERACTION else "largest difference"
         what += "" if size.complete else " that can be estimated"
         ends = f"{measured(size.lower, size.se)} to {measured(size.upper, size.se)}"
-        words.append(f"{what} {measured(size.effect, size.se)}{evidence.unit} ({ends})")
+        where = evidence.unit if evidence.scale.is_identity else " on the scale analysed"
+        words.append(f"{what} {measured(size.effect, size.se)}{where} ({ends})")
     low, high = percent_number(tested["partial_eta2_lower"]), percent(tested["partial_eta2_upper"])
     words.append(f"explains {percent(tested['partial_eta2'])} of what the other terms leave open ({low} to {high})")
     return " · ".join(words)

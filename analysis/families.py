@@ -133,6 +133,25 @@ def _adjusted(part: Slice, t: Vector, left: Indices, right: Indices, model: Mode
     return ADJUSTMENTS[choices.adjust].adjust(family)
 
 
+@dataclass(frozen=True)
+class Price:
+    """What adjusting a family costs: how much wider its intervals are, and how many differences are decided alone but not together."""
+
+    wider: float  # adjusted width over plain width, the largest of the slices
+    lost: int
+
+
+def price(frame: pd.DataFrame) -> Price | None:
+    """Return what the adjustment of some comparisons costs beside taking each on its own; None where none has an interval."""
+    known = frame.dropna(subset=["lower", "lower_adjusted"])
+    plain, wide = (known[f"upper{end}"] - known[f"lower{end}"] for end in ("", "_adjusted"))
+    if not (plain > 0).any():
+        return None
+    alone = (known["lower"] > 0) | (known["upper"] < 0)
+    together = (known["lower_adjusted"] > 0) | (known["upper_adjusted"] < 0)
+    return Price(float((wide[plain > 0] / plain[plain > 0]).max()), int((alone & ~together).sum()))
+
+
 def told(scale: Scale, frame: pd.DataFrame) -> pd.DataFrame:
     """Add a column `told` in original units: ratios with both intervals where differences are ratios, nothing where they are neither."""
     if not scale.tells_ratios:

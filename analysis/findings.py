@@ -11,18 +11,19 @@ from typing import Any
 import numpy as np
 import pandas as pd
 
-from analysis import anova, answers, checking, contrasts, design, families, lettering, means, plain, second_route, trends
+from analysis import anova, answers, checking, contrasts, design, families, five_numbers, lettering, means, plain, second_route, trends
 from analysis.answers import Answer
 from analysis.design import Design
 from analysis.doubting import order
 from analysis.doubting.signs import Signs
+from analysis.estimates import Estimates
 from analysis.evidence import Evidence
 from analysis.families import Choices, Slice
 from analysis.holding import agreement, refits, table
 from analysis.holding.analysed import Analysed
 from analysis.layout import lay_out
 from analysis.model import Model
-from analysis.observations import Observations
+from analysis.observations import Factor, Observations
 from analysis.refusals import UnknownLevel
 from analysis.study import Study
 
@@ -74,6 +75,13 @@ class Findings:
         return anova.tables(self.layout.additive, self.names, self.study.confidence)
 
     @cached_property
+    def tables_full(self) -> Mapping[str, pd.DataFrame] | None:
+        """The tables of the model with interaction, whichever model is analysed; None where it leaves no residual."""
+        if self.layout.full.residual_df < 1:
+            return None
+        return self.tables if self.model.interaction else anova.tables(self.layout.full, self.names, self.study.confidence)
+
+    @cached_property
     def used(self) -> Mapping[str, str]:
         """Which table the answers read, and why."""
         return answers.table_used(self.layout, self.tables)
@@ -101,6 +109,11 @@ class Findings:
     def cells(self) -> pd.DataFrame:
         """One row a cell, empty ones included."""
         return means.cell_frame(self.observed, self.layout.cells, self.layout.full, self.model, self.study.confidence)
+
+    @cached_property
+    def five_numbers(self) -> pd.DataFrame:
+        """Lowest observation, quartiles, median and highest of each cell, in original units."""
+        return five_numbers.by_cell(self.observed)
 
     @cached_property
     def marginal_means(self) -> Mapping[str, pd.DataFrame]:
@@ -175,13 +188,30 @@ class Findings:
     @cached_property
     def trends(self) -> pd.DataFrame:
         """Straight trend, curvature and departure of every factor whose levels are amounts; empty where neither's are."""
+        frames = [
+            trends.trends(factor.name, amounts, overall, slices, self.model, self.study.confidence)
+            for factor, amounts, overall, slices in self._along_amounts()
+        ]
+        return pd.concat(frames, ignore_index=True) if frames else pd.DataFrame(columns=list(trends.COLUMNS))
+
+    @cached_property
+    def trend_curves(self) -> pd.DataFrame:
+        """The straight line and the curve behind `trends`, on the scale analysed, to be drawn along the amounts."""
+        frames = [
+            trends.curves(factor.name, amounts, overall, slices, self.observed.pivot)
+            for factor, amounts, overall, slices in self._along_amounts()
+        ]
+        return pd.concat(frames, ignore_index=True) if frames else pd.DataFrame(columns=list(trends.CURVE_COLUMNS))
+
+    def _along_amounts(self) -> list[tuple[Factor, tuple[float, ...], Estimates, tuple[Slice, ...]]]:
+        """Return every factor whose levels are amounts, with its means on average and within each level of the other."""
         row, column = self.observed.row, self.observed.column
-        frames = [pd.DataFrame(columns=list(trends.COLUMNS))]
-        for factor, other, overall in ((row, column, self.model.row_means), (column, row, self.model.column_means)):
-            if factor.amounts is not None and factor.size > 1:
-                slices = self.families[families.within_name(factor.name, other.name)]
-                frames.append(trends.trends(factor.name, factor.amounts, overall, slices, self.model, self.study.confidence))
-        return frames[0] if len(frames) == 1 else pd.concat(frames[1:], ignore_index=True)
+        sides = ((row, column, self.model.row_means), (column, row, self.model.column_means))
+        return [
+            (factor, factor.amounts, overall, self.families[families.within_name(factor.name, other.name)])
+            for factor, other, overall in sides
+            if factor.amounts is not None and factor.size > 1
+        ]
 
     def spacing(self, factor: str) -> tuple[float, ...] | None:
         """Return the amounts that a factor's levels stand for, in their order; None where they count as groups."""

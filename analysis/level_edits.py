@@ -105,6 +105,12 @@ def taken_back(study: Study, column: str, level: str) -> Changes:
     return _kept(study, column, order)
 
 
+def controlled(study: Study, column: str, level: str | None) -> Changes:
+    """Make a level the one that the others of its factor are compared with; None for the first level."""
+    others = {factor: name for factor, name in study.control.items() if factor != column}
+    return {"control": others if level is None else {**others, column: level}}
+
+
 def _levels(study: Study, column: str) -> Levels:
     return relabelled(study.table.column(column).as_levels(), study.relabel.get(column, {}))
 

@@ -11,6 +11,8 @@ from analysis.families import Slice
 from analysis.model import Model
 
 COLUMNS = ("factor", "within", "part", "df", "residual_df", "estimate", "se", "lower", "upper", "ss", "f", "p")
+CURVE_COLUMNS = ("factor", "within", "amount", "straight", "curved")
+STEPS = 61  # of a drawn line
 LINEAR, QUADRATIC, DEPARTURE, DIFFER = "linear", "quadratic", "departure", "slopes differ"
 
 
@@ -28,6 +30,34 @@ def polynomial(amounts: Vector) -> tuple[Vector, Vector, Matrix]:
     bend = centred**2 - (centred**2).mean() - slope @ centred**2 * centred
     beyond = linalg.null_space(np.vstack([np.ones_like(centred), centred / np.abs(centred).max(), bend / np.abs(bend).max()])).T
     return slope, bend / (bend @ bend), np.asarray(beyond)
+
+
+def curves(factor: str, amounts: tuple[float, ...], overall: Estimates, slices: tuple[Slice, ...], pivot: float) -> pd.DataFrame:
+    """Return the straight line and the curve through the means along the amounts, on average and within each slice, on the scale analysed.
+
+    Each has 61 steps from the lowest amount to the highest; NaN where a mean cannot be estimated. Weights are equal for every
+    level, as in the tests of trend: ordinary least squares through the means.
+    """
+    x = np.array(amounts, dtype=float)
+    at = np.linspace(x.min(), x.max(), STEPS)
+    frames = []
+    for within, means in ((None, overall), *((part.within, part.estimates) for part in slices)):
+        value = np.where(means.estimable, means.value, np.nan)
+        straight, curved = _lines_through(x, value, at)
+        frames.append(
+            pd.DataFrame({"factor": factor, "within": within, "amount": at, "straight": straight + pivot, "curved": curved + pivot})
+        )
+    return pd.concat(frames, ignore_index=True)
+
+
+def _lines_through(x: Vector, value: Vector, at: Vector) -> tuple[Vector, Vector]:
+    """Return the straight line and the parabola through values at x, at other places; the parabola needs three values."""
+    slope, bend, _ = polynomial(x)
+    centred, away = x - x.mean(), at - x.mean()
+    straight = value.mean() + (slope @ value) * away
+    if x.size < 3:
+        return straight, np.full_like(at, np.nan)
+    return straight, straight + (bend @ value) * (away**2 - (centred**2).mean() - slope @ centred**2 * away)
 
 
 def trends(

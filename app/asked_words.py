@@ -6,15 +6,17 @@ from typing import Any
 
 import pandas as pd
 
-from analysis import trends, verdicts
+from analysis import families, trends, verdicts
 from analysis.findings import Findings
+from analysis.naming import word_and_unit
 from analysis.rounding import p_number, p_value, percent, significant
-from app import asking, records, tabled, words
+from app import answers_told, asking, records, tabled, words
 from app.asking import Asked
 from app.paper import Sheet
 
 FAMILY, WITHIN, CELLS = "What is compared", "Within", "Which combinations"
 ALL = "every one, each adjusted on its own"
+CONTROL = "Against"
 CHOSEN = "two combinations, or four of a block"
 HOW_TO_POINT = (
     "Point at a head to compare within it, at a factor’s name to compare its levels, at two cells for their difference, "
@@ -34,6 +36,7 @@ EXPLAINED: Mapping[str, str] = MappingProxyType(
         "none": "Not adjusted: each comparison stands alone; among many, some will differ by chance.",
     }
 )
+DECIDED = (verdicts.LARGER, verdicts.DIFFERS, verdicts.SMALL)
 PARTS: Mapping[str, str] = MappingProxyType(
     {
         trends.LINEAR: "straight trend", trends.QUADRATIC: "curvature", trends.DEPARTURE: "what is left beyond a curve",
@@ -47,7 +50,7 @@ def family(findings: Findings, name: str) -> str:
     if name == asking.CHOSEN:
         return CHOSEN
     if name.startswith(asking.TREND):
-        return f"{name}, an amount"
+        return f"trend along {name.removeprefix(asking.TREND)}"
     return words.family(name, findings.study.factors)
 
 
@@ -61,10 +64,19 @@ def question(findings: Findings, asked: Asked, frame: pd.DataFrame | None) -> st
     if asked.family == asking.CHOSEN:
         return _chosen(asked, frame)
     if asked.family.startswith(asking.TREND):
-        return f"How {findings.observed.word} follows {asked.family.removeprefix(asking.TREND)}"
+        return f"How {findings.observed.word} follows {findings.observed.factor(asked.family.removeprefix(asking.TREND)).word}"
+    against = _against(findings, asked)
     if asked.within is None:
-        return words.family(asked.family, findings.study.factors)
-    return f"Within {asked.within}: {asked.family.partition(' within ')[0]}"
+        return f"{words.family(asked.family, findings.study.factors)}{against}"
+    return f"Within {asked.within}: {asking.factor_of(findings, asked)}{against}"
+
+
+def _against(findings: Findings, asked: Asked) -> str:
+    """Return the control that each level is compared with, where comparisons are made with one."""
+    factor = asking.factor_of(findings, asked)
+    if findings.control is None or factor is None:
+        return ""
+    return f", each against {findings.observed.factor(factor).levels[findings.control[factor]]}"
 
 
 def _chosen(asked: Asked, frame: pd.DataFrame | None) -> str:
@@ -88,23 +100,49 @@ def family_told(findings: Findings, asked: Asked, frame: pd.DataFrame) -> str:
     return f"{one}{counted}{each}, adjusted together ({words.adjusted_by(findings)})"
 
 
-def answer(findings: Findings, asked: Asked, frame: pd.DataFrame) -> tuple[str, str, bool]:
-    """Return the sentence of the answer, the numbers beneath it, and whether anything is decided."""
+def answer(findings: Findings, asked: Asked, frame: pd.DataFrame) -> tuple[str, str, str]:
+    """Return the sentence of the answer, the numbers beneath it, and how it stands."""
     known = frame[frame["difference"].notna()]
     if known.empty:
-        return "Cannot be told: no observations stand behind this difference.", "", False
-    decided = known[known["verdict"].isin((verdicts.LARGER, verdicts.DIFFERS, verdicts.SMALL))]
+        return "Cannot be told: no observations stand behind this difference.", "", answers_told.OPEN
+    decided = known[known["verdict"].isin(DECIDED)]
     largest = next(records.lines(known.loc[[known["t"].abs().fillna(0).idxmax()]]))
     if len(known) == 1:
         sentence = _block(largest) if len(asked.cells) == asking.MOST_CELLS else _single(largest)
     elif len(decided):
-        sentence = f"{len(decided)} of {len(known)} comparisons differ."
+        sentence = f"{len(decided)} of {len(known)} comparisons differ{_rest(known)}."
     elif (known["verdict"] == verdicts.NONE_THAT_MATTERS).all():
         sentence = f"No difference that matters in any of the {len(known)} comparisons."
     else:
-        sentence = f"Not decided: none of the {len(known)} comparisons excludes zero."
+        sentence = f"Not decided: none of the {len(known)} comparisons excludes {_nothing(findings)}{_rest(known)}."
     clearest = "" if len(known) == 1 else "clearest: " if known["within"].nunique() < 2 else f"clearest, within {largest.within}: "
-    return sentence, f"{clearest}{told(findings, largest)}", bool(len(decided))
+    return sentence, f"{clearest}{told(findings, largest)}", standing(known)
+
+
+def standing(known: pd.DataFrame) -> str:
+    """Return how an answer stands: decided where something differs by enough, small where all is known not to matter, else open."""
+    standings = {answers_told.standing_of(verdict) for verdict in known["verdict"]}
+    return (
+        answers_told.DECIDED
+        if answers_told.DECIDED in standings
+        else answers_told.SMALL
+        if standings == {answers_told.SMALL}
+        else answers_told.OPEN
+    )
+
+
+def _rest(known: pd.DataFrame) -> str:
+    """Return how many of the comparisons that do not differ are known not to matter, and how many are open."""
+    small, still = (int((known["verdict"] == verdict).sum()) for verdict in (verdicts.NONE_THAT_MATTERS, verdicts.UNDECIDED))
+    return (
+        f"; {small} {'shows' if small == 1 else 'show'} no difference that matters, {still} {'is' if still == 1 else 'are'} not decided"
+        if small
+        else ""
+    )
+
+
+def _nothing(findings: Findings) -> str:
+    return "one" if findings.observed.scale.tells_ratios else "zero"
 
 
 def _block(line: Any) -> str:
@@ -147,8 +185,28 @@ def told(findings: Findings, line: Any) -> str:
 
 
 def explained(findings: Findings, frame: pd.DataFrame) -> str:
-    """Return what the adjustment of these comparisons holds."""
-    return ALONE_MEANS if set(frame["family_size"]) == {1} else EXPLAINED[findings.study.adjust]
+    """Return what the adjustment of these comparisons holds, and what it costs."""
+    if set(frame["family_size"]) == {1}:
+        return ALONE_MEANS
+    price = families.price(frame)
+    if price is None or findings.study.adjust == "none":
+        return EXPLAINED[findings.study.adjust]
+    one_by_one = f"Intervals are {significant(price.wider)} times as wide as one by one"
+    lost = f", and {words.counted(price.lost, 'comparison')} that would differ taken alone {'is' if price.lost == 1 else 'are'} left open"
+    return f"{EXPLAINED[findings.study.adjust]} {one_by_one}{lost if price.lost else ''}."
+
+
+def changed(now: Findings, before: Findings, asked: Asked) -> str:
+    """Return what changing the adjustment did to the question asked; nothing where it could not be asked before."""
+    if asking.valid(before, asked) != asked:
+        return ""
+    frames = [asking.compared(findings, asked) for findings in (before, now)]
+    if any(frame is None for frame in frames):
+        return ""
+    differ = [
+        f"{int(frame['verdict'].isin(DECIDED).sum())} of {int(frame['difference'].notna().sum())}" for frame in frames if frame is not None
+    ]
+    return f"Changed from {words.adjusted_by(before)}, with which {differ[0]} differed; now {differ[1]}."
 
 
 def trend(findings: Findings, asked: Asked) -> Sheet:
@@ -169,14 +227,34 @@ def trend(findings: Findings, asked: Asked) -> Sheet:
     return Sheet("Trend", columns, rows, frozenset({0, 1}))
 
 
-def trend_answer(findings: Findings, asked: Asked) -> tuple[str, str, bool]:
-    """Return the sentence on the straight trend over the average, the numbers beneath it, and whether it is decided."""
-    straight = next(t for t in records.lines(asking.trend(findings, asked)) if t.part == trends.LINEAR and not isinstance(t.within, str))
-    factor, response = asked.family.removeprefix(asking.TREND), words.response_label(findings)
+def trend_answer(findings: Findings, asked: Asked) -> tuple[str, str, str]:
+    """Return the sentence on the trend over the average, the numbers beneath it, and how it stands."""
+    on_average = {str(t.part): t for t in records.lines(asking.trend(findings, asked)) if not isinstance(t.within, str)}
+    straight, bend = on_average[trends.LINEAR], on_average.get(trends.QUADRATIC)
+    name = asked.family.removeprefix(asking.TREND)
+    factor, response = findings.observed.factor(name).word, findings.observed.word
     if pd.isna(straight.lower):
-        return "Cannot be told: the average over the other factor cannot be estimated.", "", False
-    numbers = f"{significant(straight.estimate)} ({significant(straight.lower)} to {significant(straight.upper)}), {p_value(straight.p)}"
-    beneath = f"{response} per unit of {factor}, on average: {numbers} · each line of the table asked on its own, not adjusted"
+        return "Cannot be told: the average over the other factor cannot be estimated.", "", answers_told.OPEN
+    numbers = f"{significant(straight.estimate)}{_per(findings, name)} ({significant(straight.lower)} to {significant(straight.upper)})"
+    beneath = f"on average {numbers}, {p_value(straight.p)} · each line of the table asked on its own, not adjusted"
+    curved = bend is not None and pd.notna(bend.lower) and not bend.lower <= 0 <= bend.upper
     if straight.lower <= 0 <= straight.upper:
-        return f"Not decided: a straight trend of {response} along {factor} is not shown.", beneath, False
-    return f"{_capital(response)} {'rises' if straight.estimate > 0 else 'falls'} with {factor}.", beneath, True
+        only = f"{_capital(response)} bends along {factor}, with no straight trend shown." if curved else ""
+        return (
+            only or f"Not decided: no trend of {response} along {factor} is shown.",
+            beneath,
+            (answers_told.DECIDED if curved else answers_told.OPEN),
+        )
+    way = "rises" if (straight.estimate > 0) != findings.observed.scale.reverses else "falls"
+    return f"{_capital(response)} {way} with {factor}{', along a curve' if curved else ''}.", beneath, answers_told.DECIDED
+
+
+def _per(findings: Findings, factor: str) -> str:
+    """Return the units of a slope."""
+    scale, along = findings.observed.scale, word_and_unit(factor)[1] or findings.study.table.column(factor).unit
+    unit = (
+        f" {findings.observed.unit or ''}".rstrip()
+        if scale.is_identity
+        else f" on the scale analysed ({words.scale_name(scale.name).lower()})"
+    )
+    return f"{unit} per {along or f'unit of {factor}'}"

@@ -75,6 +75,13 @@ def slices(findings: Findings, family: str) -> list[str]:
     return list(levels.get(family, ()))
 
 
+def factor_of(findings: Findings, asked: Asked) -> str | None:
+    """Return the factor whose levels a question compares; None where it compares combinations."""
+    row, column = findings.study.factors
+    within = {within_name(row, column): row, within_name(column, row): column}
+    return within.get(asked.family, asked.family if asked.family in (row, column) else None)
+
+
 def valid(findings: Findings, asked: Asked) -> Asked:
     """Return the question as far as the findings know its names, else the question of the first family."""
     a, b = findings.observed.shape

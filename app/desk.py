@@ -292,6 +292,15 @@ def findings() -> Findings | Refusal | None:
         return refusal
 
 
+def findings_before(field: str) -> Findings | None:
+    """Return what the study came to before the last change, where that change was of this field alone."""
+    now, past = study(), _state().past
+    old = past[-1] if past else None
+    if now is None or old is None or old.fingerprint == now.fingerprint:
+        return None
+    return _findings(old.fingerprint, old) if replace(old, **{field: getattr(now, field)}).fingerprint == now.fingerprint else None
+
+
 @st.cache_resource(max_entries=16, show_spinner=False)
 def _crossing(fingerprint: str, _study: Study) -> Mapping[str, Any]:
     return counted.crossing(_study)

@@ -1,6 +1,5 @@
 """How the levels of one factor are shown and changed: merges offered, names, order, levels left out, the control level."""
 
-from collections.abc import Mapping
 from typing import Any
 
 import streamlit as st
@@ -46,13 +45,8 @@ def changes(study: Study, column: str, key: str) -> None:
             _level(column, level, f"{key}_{place}", at_start=place == 0, at_end=place == len(analysed) - 1, only=len(analysed) == 1)
         st.selectbox(
             words.CONTROL, analysed, index=None, placeholder=words.CONTROL_FIRST, help=words.CONTROL_HELP, width=320,
-            **desk.bind_edit(f"{key}_control", study.control.get(column), _controlled, column),
+            **desk.bind_edit(f"{key}_control", study.control.get(column), level_edits.controlled, column),
         )  # fmt: skip
-
-
-def _controlled(study: Study, column: str, level: str | None) -> Mapping[str, Any]:
-    others = {factor: name for factor, name in study.control.items() if factor != column}
-    return {"control": others if level is None else {**others, column: level}}
 
 
 def _level(column: str, level: Level, key: str, at_start: bool, at_end: bool, only: bool) -> None:

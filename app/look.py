@@ -1,9 +1,8 @@
 """How everything is drawn: the palette, markers and dashes of levels, and the four looks of a figure."""
 
+from collections.abc import Mapping
 from dataclasses import dataclass
 from typing import Any
-
-import plotly.graph_objects as go
 
 # Checked in the tests under simulated colour-vision deficiencies; marker and dash tell levels apart where hue cannot.
 HUES = ("#1F5F8B", "#C8741A", "#5B8C3A", "#8A3B6E", "#4F3B22", "#A362C7", "#1B2F78", "#3A938F")
@@ -56,8 +55,8 @@ class Look:
         hollow = "-open" if index >= len(self.hues) else ""
         return LevelStyle(self.hues[place], self.inks[place], MARKERS[place] + hollow, DASHES[place])
 
-    def layout(self, **changes: Any) -> go.Layout:
-        """Return the ground of a figure: type, colours, margins and axes; changes are set last."""
+    def layout(self, **changes: Any) -> dict[str, Any]:
+        """Return the ground of a figure: type, colours, margins and axes; changes are set last, part by part."""
         axis = {
             "gridcolor": self.rule,
             "linecolor": self.rule,
@@ -68,26 +67,32 @@ class Look:
             "automargin": True,
             "fixedrange": True,
         }
-        layout = go.Layout(
-            template="none",
-            font={"family": self.font, "size": self.text, "color": self.ink},
-            paper_bgcolor=self.paper,
-            plot_bgcolor=self.paper,
-            height=self.height,
-            width=self.width,
-            margin={"l": 8, "r": 12, "t": 12, "b": 8},
-            showlegend=False,
-            xaxis=axis,
-            yaxis=axis,
-            hoverlabel={
+        ground = {
+            "template": "none",
+            "font": {"family": self.font, "size": self.text, "color": self.ink},
+            "paper_bgcolor": self.paper,
+            "plot_bgcolor": self.paper,
+            "height": self.height,
+            "width": self.width,
+            "margin": {"l": 8, "r": 12, "t": 12, "b": 8},
+            "showlegend": False,
+            "xaxis": axis,
+            "yaxis": axis,
+            "hoverlabel": {
                 "bgcolor": self.panel,
                 "bordercolor": self.rule,
                 "font": {"size": self.text, "color": self.ink, "family": self.font},
             },
-            hovermode="closest",
-            dragmode=False,
-        )
-        return layout.update(changes)
+            "hovermode": "closest",
+            "dragmode": False,
+        }
+        return _changed(ground, changes)
+
+
+def _changed(ground: Mapping[str, Any], changes: Mapping[str, Any]) -> dict[str, Any]:
+    """Return a ground with changes, those of a part leaving the rest of that part as it was."""
+    parts = {name: _changed(ground[name], new) for name, new in changes.items() if isinstance(new, Mapping) and name in ground}
+    return {**ground, **changes, **parts}
 
 
 DESK = Look("desk", text=14, small=12, line=2.4, marker=10, point=6, height=430)

@@ -1,5 +1,7 @@
-"""How numbers are told on the logarithmic scale: in the response's own units, as the engine hands them back."""
+"""How numbers are told where another scale is analysed: in the response's own units, as the engine hands them back."""
 
+from collections.abc import Mapping
+from types import MappingProxyType
 from typing import Any
 
 import numpy as np
@@ -9,20 +11,23 @@ from analysis.findings import Findings
 from analysis.rounding import measured, significant
 from app import words
 
+# A mean taken on another scale and turned back has a name of its own on two of them.
+MEANS: Mapping[str, str] = MappingProxyType({"none": "mean", "log": "geometric mean", "reciprocal": "harmonic mean"})
+
 
 def is_told(findings: Findings) -> bool:
-    """Return whether means are told in original units although another scale is analysed: as geometric means, for the logarithm."""
-    return bool(findings.observed.scale.tells_ratios)
+    """Return whether another scale than the response's own is analysed, so that means are told back in original units."""
+    return not findings.observed.scale.is_identity
 
 
 def label(findings: Findings) -> str:
     """Return the response with its unit, in the units that means are told in."""
-    return words.response_in_units(findings.study) if is_told(findings) else words.response_label(findings)
+    return words.response_in_units(findings)
 
 
 def mean_word(findings: Findings) -> str:
     """Return what a mean is called in the units that it is told in."""
-    return "geometric mean" if is_told(findings) else "mean"
+    return MEANS.get(findings.observed.scale.name, "back-transformed mean")
 
 
 def means(findings: Findings, frame: pd.DataFrame) -> pd.DataFrame:

@@ -1,10 +1,14 @@
 """How sentences and tables are set on the page: small pieces of HTML in which every name is inert text."""
 
 import html
-from collections.abc import Iterable, Sequence
+from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass
+from types import MappingProxyType
 
 from app.look import Look
+
+# Words before the statistic of an answer that is no plain yes, so that the edge alone need not say it.
+MARKS: Mapping[str, str] = MappingProxyType({"decided": "", "small": "too small to matter", "open": "still open"})
 
 
 @dataclass(frozen=True)
@@ -43,12 +47,12 @@ def question(text: str, aside: str = "") -> str:
     return f"<h2 class='question'>{safe(text)}{beside}</h2>"
 
 
-def answer(sentence: str, statistic: str, decided: bool, known: Sequence[str] = ()) -> str:
+def answer(sentence: str, statistic: str, standing: str, known: Sequence[str] = ()) -> str:
     """Return one answer: the sentence, beneath it the statistic, and folded away how it is known."""
-    kind = "decided" if decided else "open"
+    mark = f"<span class='mark'>{MARKS[standing]}</span>"
     fold = f"<details><summary>How we know</summary>{bullets(known)}</details>" if known else ""
-    told = f"<p class='sentence'>{safe(sentence)}</p><p class='statistic'>{safe(statistic)}</p>{fold}"
-    return f"<section class='answer {kind}'>{told}</section>"
+    told = f"<p class='sentence'>{safe(sentence)}</p><p class='statistic'>{mark}{safe(statistic)}</p>{fold}"
+    return f"<section class='answer {standing}'>{told}</section>"
 
 
 def notice(sentence: str) -> str:

@@ -18,32 +18,18 @@ MOST_CASES = 8  # observations listed as the most influential
 
 def anova(findings: Findings, table: pd.DataFrame) -> Sheet:
     """Return one analysis of variance, a row for each question, with the share of variation and its interval."""
-    columns = (
-        "term",
-        "df",
-        "sum of squares",
-        "mean square",
-        "F",
-        "p",
-        "partial η²",
-        f"{percent(findings.study.confidence)} interval",
-        "partial ω²",
-    )
-    rows = [
-        (
-            str(r.term),
-            fixed(r.df, 0),
-            significant(r.ss, 5),
-            significant(r.ms, 4) if _known(r.ms) else "",
-            significant(r.f) if _known(r.f) else "",
-            p_number(r.p) if _known(r.f) else "",
-            fixed(r.partial_eta2, 2) if _known(r.f) else "",
-            f"{fixed(r.partial_eta2_lower, 2)} to {fixed(r.partial_eta2_upper, 2)}" if _known(r.f) else "",
-            fixed(r.partial_omega2, 2) if _known(r.f) else "",
-        )
-        for r in records.lines(table)
-    ]
-    return Sheet("Analysis of variance", columns, rows, foot=2)
+    share = f"partial η² ({percent(findings.study.confidence)} interval)"
+    columns = ("term", "df", "sum of squares", "mean square", "F", "p", share, "partial ω²")
+    return Sheet("Analysis of variance", columns, [_source(line) for line in records.lines(table)], foot=2)
+
+
+def _source(r: Any) -> tuple[str, ...]:
+    """Return the row of one term; what is not defined for it stays blank."""
+    squares = (fixed(r.df, 0), significant(r.ss, 5), significant(r.ms, 4) if _known(r.ms) else "")
+    if not _known(r.f):
+        return (str(r.term), *squares, "", "", "", "")
+    share = f"{fixed(r.partial_eta2, 2)} ({fixed(r.partial_eta2_lower, 2)} to {fixed(r.partial_eta2_upper, 2)})"
+    return (str(r.term), *squares, significant(r.f), p_number(r.p), share, fixed(r.partial_omega2, 2))
 
 
 def _known(value: Any) -> bool:

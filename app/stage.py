@@ -1,6 +1,7 @@
 """What all stations share: the open findings or the sentence that stands in their place, figures with caption and description."""
 
 from collections.abc import Callable
+from dataclasses import dataclass
 
 import plotly.graph_objects as go
 import streamlit as st
@@ -50,6 +51,31 @@ def pointed(key: str, take: Callable[[asking.Cell], None]) -> Callable[[], None]
             take((int(row), int(column)))
 
     return follow
+
+
+@dataclass(frozen=True, eq=False)
+class Picture:
+    """A figure with the words that belong to it."""
+
+    figure: go.Figure
+    caption: str
+    alt: str
+
+
+@st.cache_resource(max_entries=128, show_spinner=False)
+def _picture(study: str, look_name: str, name: str, choices: tuple[object, ...], _make: Callable[[], Picture]) -> Picture:
+    return _make()
+
+
+def picture(found: Findings, name: str, choices: tuple[object, ...], make: Callable[[look.Look], Picture]) -> Picture:
+    """Return the picture of this name, drawn at the first time only: the same study, look and choices give the same picture."""
+    worn = at_hand()
+    return _picture(found.study.fingerprint, worn.name, name, choices, lambda: make(worn))
+
+
+def show(drawn: Picture, key: str) -> None:
+    """Show a picture with its caption beneath."""
+    figure(drawn.figure, key, drawn.caption, drawn.alt)
 
 
 def figure(drawn: go.Figure, key: str, caption: str, alt: str, camera: bool = False) -> None:

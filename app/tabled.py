@@ -113,7 +113,8 @@ def difference_head(findings: Findings) -> str:
     """Return what heads the column of differences: what they are, in which unit, with which interval."""
     scale = findings.observed.scale
     unit = findings.observed.unit if scale.is_identity else None
-    what = "ratio" if scale.tells_ratios else f"difference{f' in {unit}' if unit else ''}"
+    where = f" in {unit}" if unit else "" if scale.is_identity else " on the scale analysed"
+    what = "ratio" if scale.tells_ratios else f"difference{where}"
     return f"{what} ({rounding.percent(findings.study.confidence)} interval)"
 
 

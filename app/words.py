@@ -10,6 +10,7 @@ from numpy.typing import NDArray
 
 from analysis.adjustments import ADJUSTMENTS
 from analysis.findings import Findings
+from analysis.naming import word_and_unit
 from analysis.rounding import decimals_for, fixed, measured, percent, significant
 from analysis.study import Study
 from analysis.unit_question import UnitAnswer
@@ -64,8 +65,6 @@ CONTROL_HELP = "The level that the others are compared with, where Compare adjus
 LEVELS_HELP = "Write another name to rename a level; the name of another level makes the two one."
 NOTHING_OPEN = "There is no table yet."
 TO_BRING, TO_LAY_OUT = "Bring one", "Choose columns at Lay out"
-NO_ADDITIVE = "The model without interaction leaves no residual here."
-ADDITIVE_TABLE = "The model without interaction: what the interaction would explain is counted as chance. Type II sums of squares."
 FAMILY_TOO_LARGE = "This family holds too many comparisons to be written out; compare within one factor instead."
 FAMILY_EMPTY = "There is nothing to compare in this family."
 WALK, NEXT, BACK, LEAVE = "Walk through it", "Next", "Back", "Leave"
@@ -109,21 +108,24 @@ def mean_hover(confidence: float) -> str:
 
 def response_label(findings: Findings) -> str:
     """Return the response with its unit and the scale it is analysed on, as an axis names it."""
-    study = findings.study
-    scale = "" if study.scale == "none" else f"{scale_name(study.scale).lower()} of "
-    return f"{scale}{response_in_units(study)}"
+    scale = findings.study.scale
+    return f"{'' if scale == 'none' else f'{scale_name(scale).lower()} of '}{response_in_units(findings)}"
 
 
-def response_in_units(study: Study) -> str:
-    """Return the response with its unit, as it was measured."""
-    unit = unit_of(study)
-    return f"{study.response}{f' ({unit})' if unit else ''}"
+def response_in_units(findings: Findings) -> str:
+    """Return the response with its unit, as it was measured; a name that holds the unit already stays as it is."""
+    return with_unit(findings.observed.response, findings.observed.response_unit)
 
 
-def unit_of(study: Study) -> str | None:
-    """Return the unit of the response, None where the file names none or the name of the column already does."""
-    unit = study.table.column(str(study.response)).unit
-    return None if unit is None or unit in str(study.response) else unit
+def factor_in_units(findings: Findings, factor: str) -> str:
+    """Return a factor with the unit that the file gives its column, which a row of units may do."""
+    return with_unit(factor, findings.study.table.column(factor).unit)
+
+
+def with_unit(name: str, unit: str | None) -> str:
+    """Return a name with its unit in brackets behind it, where it does not end in that unit by itself."""
+    said = unit is None or unit == word_and_unit(name)[1] or name.split()[-1:] == [unit]
+    return name if said else f"{name} ({unit})"
 
 
 def scale_name(scale: str) -> str:
@@ -284,21 +286,6 @@ def rows_shown(shown: int, rows: int, columns: int) -> str:
 def reckoning(analysed: int, left_out: int) -> str:
     """Return the account of the rows: each one is analysed or left out."""
     return f"{counted(analysed + left_out, 'row')} in the file: {fixed(analysed, 0)} analysed, {fixed(left_out, 0)} left out."
-
-
-def margins(findings: Findings) -> str:
-    """Return what stands in the table of cell means."""
-    what = "Geometric means in original units, estimates of the model" if findings.observed.scale.tells_ratios else "Estimates of the model"
-    return (
-        f"{what} with {intervals(findings)}. The margins give every combination the same weight; "
-        "with unequal cells they differ from the plain averages of the observations."
-    )
-
-
-def table_used(findings: Findings) -> str:
-    """Return which sums of squares the table holds, and why."""
-    fit = f"Residual standard deviation {significant(findings.fit['sigma'])}, R² {percent(findings.fit['r2'])}."
-    return f"{TABLES[findings.used['table']]} sums of squares. {findings.used['why']} {fit}"
 
 
 def family_told(findings: Findings, name: str) -> str:

@@ -1,18 +1,23 @@
 """The differences of a family against zero: one line each, with the interval that is adjusted for the size of the family."""
 
+from typing import Any
+
 import numpy as np
 import pandas as pd
 import plotly.graph_objects as go
 
+from analysis import verdicts
 from analysis.findings import Findings
 from analysis.rounding import measured, p_value, percent
 from app import original, records, tabled, words
 from app.figures import lettering
 from app.look import Look
 
-MOST_LINES = 40  # a longer figure is no figure; the table holds all of them
-FEW_LINES = 8
-ROOMY, TIGHT = 1.9, 1.55  # height of a line, of the type size, for few lines and for more
+MOST_LINES = 24  # a longer figure is no figure; the table holds all of them
+SYMBOLS = dict.fromkeys(verdicts.VERDICTS, "circle") | {
+    verdicts.UNDECIDED: "circle-open", verdicts.NONE_THAT_MATTERS: "diamond-open-dot"
+}  # fmt: skip
+LINE_HEIGHTS = ((8, 1.9), (14, 1.55), (10**6, 1.25))  # up to so many lines, the height of one, of the type size
 
 
 def shown(findings: Findings, family: str, asked: pd.DataFrame | None = None) -> pd.DataFrame:
@@ -28,17 +33,15 @@ def shown(findings: Findings, family: str, asked: pd.DataFrame | None = None) ->
 
 
 def differences(findings: Findings, look: Look, family: str, asked: pd.DataFrame | None = None) -> go.Figure:
-    """Draw each difference with its adjusted interval; filled marks exclude zero, hollow ones do not.
+    """Draw each difference with its adjusted interval; filled marks exclude zero, hollow ones are undecided, diamonds too small to matter.
 
     Where the scale tells ratios they are drawn on a logarithmic axis, against one.
     """
     frame = shown(findings, family, asked)
     names, heights = _lines(frame, findings.observed.scale.tells_ratios)
-    figure = go.Figure(layout=_ground(findings, look, frame, names, heights))
-    figure.add_vline(x=1 if findings.observed.scale.tells_ratios else 0, line={"color": look.ink, "width": 1})
-    _band_of_what_matters(figure, findings, look)
-    figure.add_trace(_marks(findings, look, frame, [height for name, height in zip(names, heights, strict=True) if not is_heading(name)]))
-    return figure
+    at = [height for name, height in zip(names, heights, strict=True) if not is_heading(name)]
+    ground = _ground(findings, look, frame, names, heights)
+    return go.Figure([_marks(findings, look, frame, at)], {**ground, "shapes": _standards(findings, look)})
 
 
 def ends(findings: Findings, frame: pd.DataFrame) -> pd.DataFrame:
@@ -68,17 +71,17 @@ def _pair(left: object, right: object, ratio: bool) -> str:
     return f"{lettering.wrapped(words.cell_name(left), 26, 1)} {'÷' if ratio else '−'} {lettering.wrapped(words.cell_name(right), 26, 1)}"
 
 
-def _ground(findings: Findings, look: Look, frame: pd.DataFrame, names: list[str], heights: list[float]) -> go.Layout:
+def _ground(findings: Findings, look: Look, frame: pd.DataFrame, names: list[str], heights: list[float]) -> dict[str, Any]:
     bars, ratio = ends(findings, frame), findings.observed.scale.tells_ratios
     places = np.log10(bars) if ratio else bars
     low, high = min(0.0, places["lower"].min()), max(0.0, places["upper"].max())
     air = 0.04 * (high - low) or 1.0
-    what = "ratio of" if ratio else "difference in"
-    label = original.label(findings)
+    what = f"ratio of {original.label(findings)}" if ratio else f"difference in {words.response_label(findings)}"
+    tall = next(tall for most, tall in LINE_HEIGHTS if len(names) <= most)
     return look.layout(
         xaxis={
             "range": [low - air, high + air],
-            "title": {"text": f"{what} {lettering.plain(label)}"},
+            "title": {"text": lettering.plain(what)},
             **({"type": "log", "tickvals": _round_ratios(low - air, high + air)} if ratio else {"nticks": 9}),
         },
         yaxis={
@@ -89,7 +92,7 @@ def _ground(findings: Findings, look: Look, frame: pd.DataFrame, names: list[str
             "automargin": False,
         },
         margin={"l": lettering.widest(names, look.text) + 10},
-        height=round(max(len(names), 2) * look.text * (ROOMY if len(names) <= FEW_LINES else TIGHT) + 4.5 * look.text + 24),
+        height=round(max(len(names), 2) * look.text * tall + 4.5 * look.text + 24),
     )
 
 
@@ -100,44 +103,42 @@ def _round_ratios(low: float, high: float) -> list[float]:
     return [value for value in values if low <= np.log10(value) <= high]
 
 
-def _band_of_what_matters(figure: go.Figure, findings: Findings, look: Look) -> None:
-    matters = findings.choices.matters
-    if matters is not None:
-        figure.add_vrect(x0=-matters, x1=matters, fillcolor=look.rule, opacity=0.45, line_width=0, layer="below")
+def _standards(findings: Findings, look: Look) -> list[dict[str, Any]]:
+    """Return what differences are held against: the line of no difference, and the band of those that do not matter."""
+    nothing, matters = 1 if findings.observed.scale.tells_ratios else 0, findings.choices.matters
+    upright = {"yref": "paper", "y0": 0, "y1": 1}
+    line = {"type": "line", **upright, "x0": nothing, "x1": nothing, "line": {"color": look.ink, "width": 1}}
+    if matters is None:
+        return [line]
+    band = {"type": "rect", **upright, "x0": -matters, "x1": matters, "fillcolor": look.rule, "opacity": 0.45, "line": {"width": 0}}
+    return [{**band, "layer": "below"}, line]
 
 
-def _marks(findings: Findings, look: Look, frame: pd.DataFrame, heights: list[float]) -> go.Scatter:
-    decided = (frame["lower_adjusted"] > 0) | (frame["upper_adjusted"] < 0)
-    bars = ends(findings, frame)
-    told = [
-        [
-            _pair(c.left, c.right, findings.observed.scale.tells_ratios),
-            tabled.size(c),
-            p_value(c.p_adjusted),
-            words.VERDICTS[c.verdict],
-        ]
-        for c in records.lines(frame)
-    ]
-    return go.Scatter(
-        x=bars["middle"].to_numpy(),
-        y=heights,
-        mode="markers",
-        marker={
-            "symbol": np.where(decided, "circle", "circle-open").tolist(),
+def _marks(findings: Findings, look: Look, frame: pd.DataFrame, heights: list[float]) -> dict[str, Any]:
+    bars, ratio = ends(findings, frame), findings.observed.scale.tells_ratios
+    colours = [look.quiet if verdict == verdicts.UNDECIDED else look.accent for verdict in frame["verdict"]]
+    told = [[_pair(c.left, c.right, ratio), tabled.size(c), p_value(c.p_adjusted), words.VERDICTS[c.verdict]] for c in records.lines(frame)]
+    return {
+        "type": "scatter",
+        "x": bars["middle"].to_numpy(),
+        "y": heights,
+        "mode": "markers",
+        "marker": {
+            "symbol": [SYMBOLS[verdict] for verdict in frame["verdict"]],
             "size": look.marker,
-            "color": np.where(decided, look.accent, look.quiet).tolist(),
-            "line": {"width": look.line * 0.75, "color": np.where(decided, look.accent, look.quiet).tolist()},
+            "color": colours,
+            "line": {"width": look.line * 0.75, "color": colours},
         },
-        error_x={
+        "error_x": {
             "array": (bars["upper"] - bars["middle"]).to_numpy(),
             "arrayminus": (bars["middle"] - bars["lower"]).to_numpy(),
             "color": look.quiet,
             "thickness": look.line * 0.75,
             "width": 0,
         },
-        customdata=told,
-        hovertemplate="%{customdata[0]}<br>%{customdata[1]}<br>adjusted %{customdata[2]}: %{customdata[3]}<extra></extra>",
-    )
+        "customdata": told,
+        "hovertemplate": "%{customdata[0]}<br>%{customdata[1]}<br>adjusted %{customdata[2]}: %{customdata[3]}<extra></extra>",
+    }
 
 
 def differences_caption(findings: Findings, family: str, asked: pd.DataFrame | None = None) -> str:
@@ -151,7 +152,22 @@ def differences_caption(findings: Findings, family: str, asked: pd.DataFrame | N
     size = words.family_size(findings, family) if asked is None else words.sizes_told(asked)
     how = "not adjusted" if alone else f"adjusted within the family ({words.adjusted_by(findings)}; {size})"
     nothing = "one" if findings.observed.scale.tells_ratios else "zero"
-    return f"Bars: {percent(findings.study.confidence)} intervals, {how}. A filled mark’s interval excludes {nothing}.{band}{cut}"
+    signs = f" A filled mark’s interval excludes {nothing}; a hollow one is undecided{small_told(frame)}."
+    return f"Bars: {percent(findings.study.confidence)} intervals, {how}.{signs}{band}{scale_told(findings)}{cut}"
+
+
+def small_told(frame: pd.DataFrame) -> str:
+    """Return what the mark of no difference that matters is, where there is one."""
+    return "; a diamond shows no difference that matters" if (frame["verdict"] == verdicts.NONE_THAT_MATTERS).any() else ""
+
+
+def scale_told(findings: Findings) -> str:
+    """Return what a difference is where the scale analysed tells neither differences nor ratios of the response."""
+    scale = findings.observed.scale
+    if scale.is_identity or scale.tells_ratios:
+        return ""
+    named = words.scale_name(scale.name).lower()
+    return f" Differences are on the scale analysed ({named}), where they were computed; they have no fixed size in original units."
 
 
 def differences_alt(findings: Findings, family: str, asked: pd.DataFrame | None = None) -> str:
@@ -163,5 +179,6 @@ def differences_alt(findings: Findings, family: str, asked: pd.DataFrame | None 
         for c in records.lines(frame.head(24))
     )
     more = f"; and {len(frame) - 24} more" if len(frame) > 24 else ""
-    what, nothing = ("Ratios of", "one") if ratio else ("Differences in", "zero")
-    return f"{what} {original.label(findings)} with adjusted intervals, against {nothing}. {told}{more}."
+    what = f"Ratios of {original.label(findings)}" if ratio else f"Differences in {words.response_label(findings)}"
+    nothing = "one" if ratio else "zero"
+    return f"{what} with adjusted intervals, against {nothing}. {told}{more}."

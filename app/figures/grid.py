@@ -82,13 +82,11 @@ def _drawn(
     tall = height_of_field(len(rows), look, height)
     names = [lettering.wrapped(level, 14, max(1, int(tall // (look.text * 1.3)))) for level in rows]
     heads = [lettering.wrapped(level, max(5, int(58 / len(columns))), 2) for level in columns]
-    figure = go.Figure(layout=_ground(names, heads, design, look, tall))
-    figure.update_layout(shapes=[_box(field, look) for field in fields])
-    figure.add_trace(texts(fields, len(columns), look, tall))
-    return figure
+    ground = _ground(names, heads, design, look, tall)
+    return go.Figure([texts(fields, len(columns), look, tall)], {**ground, "shapes": [_box(field, look) for field in fields]})
 
 
-def _ground(names: list[str], heads: list[str], design: Mapping[str, Any], look: Look, tall: float) -> go.Layout:
+def _ground(names: list[str], heads: list[str], design: Mapping[str, Any], look: Look, tall: float) -> dict[str, Any]:
     top = (max(lettering.line_count(head) for head in heads) * 1.3 + 0.8) * look.small
     left = lettering.widest(names, look.small) + 12
     ticks = {"showgrid": False, "showline": False, "title": None, "automargin": False}
@@ -116,21 +114,22 @@ def _box(field: Field, look: Look) -> dict[str, Any]:
     return {"type": "rect", **sides, "fillcolor": field.colour, "line": line, "layer": "below"}
 
 
-def texts(fields: Sequence[Field], columns: int, look: Look, tall: float) -> go.Scatter:
+def texts(fields: Sequence[Field], columns: int, look: Look, tall: float) -> dict[str, Any]:
     """Return the lettering of the fields; hovering tells the whole of each."""
     room = tall >= ONE_LINE and columns * max(len(line) for f in fields for line in f.lines) <= LETTERS
     shown = [f.lines if room else f.lines[:1] for f in fields]
     size = look.text if columns <= 8 else look.small * 8 / columns + 2
-    return go.Scatter(
-        x=[f.column for f in fields],
-        y=[f.row for f in fields],
-        mode="text",
-        text=[_lettered(lines, size, look) for lines in shown],
-        textfont={"size": size, "color": [text_on(f.colour) if f.colour != look.paper else look.quiet for f in fields]},
-        hovertext=[f.told for f in fields],
-        hoverinfo="text",
-        customdata=[[f.row, f.column] for f in fields],
-    )
+    return {
+        "type": "scatter",
+        "x": [f.column for f in fields],
+        "y": [f.row for f in fields],
+        "mode": "text",
+        "text": [_lettered(lines, size, look) for lines in shown],
+        "textfont": {"size": size, "color": [text_on(f.colour) if f.colour != look.paper else look.quiet for f in fields]},
+        "hovertext": [f.told for f in fields],
+        "hoverinfo": "text",
+        "customdata": [[f.row, f.column] for f in fields],
+    }
 
 
 def _lettered(lines: tuple[str, ...], size: float, look: Look) -> str:

@@ -2,6 +2,7 @@
 
 from collections.abc import Set
 from dataclasses import dataclass
+from typing import Any
 
 import plotly.graph_objects as go
 
@@ -34,7 +35,7 @@ def pointing(findings: Findings, look: Look, chosen: Set[asking.Cell], height: i
     rows, columns = findings.design["row_levels"], findings.design["column_levels"]
     tall = grid.height_of_field(len(rows), look, height)
     names = [lettering.wrapped(level, 14, max(1, int(tall // (look.text * 1.3)))) for level in rows]
-    corner = [lettering.wrapped(factor, 12, 1) for factor in findings.study.factors]
+    corner = _factor_names(findings)
     left = max(lettering.widest([*names, *(f"{name} ↓" for name in corner)], look.small) + 18, 60.0)
     side, top = left * len(columns) / (WIDE - left), HEADS / tall
     fields = grid.mean_fields(findings, look)
@@ -44,13 +45,12 @@ def pointing(findings: Findings, look: Look, chosen: Set[asking.Cell], height: i
         *_column_heads(findings, top, look),
         *_corner(findings, side, top, look),
     ]
-    figure = go.Figure(layout=_ground(look, (-0.5 - side, len(columns) - 0.5), (len(rows) - 0.5, -0.52 - top), tall * len(rows) + HEADS))
-    letters = grid.texts(fields, len(columns), look, tall)
-    figure.add_traces([letters.update(hoverinfo="skip", hovertext=None), _bars(marks, chosen, look), _names(marks, look)])
-    return figure
+    ground = _ground(look, (-0.5 - side, len(columns) - 0.5), (len(rows) - 0.5, -0.52 - top), tall * len(rows) + HEADS)
+    letters = {**grid.texts(fields, len(columns), look, tall), "hoverinfo": "skip", "hovertext": None}
+    return go.Figure([letters, _bars(marks, chosen, look), _names(marks, look)], ground)
 
 
-def _ground(look: Look, across: tuple[float, float], down: tuple[float, float], height: float) -> go.Layout:
+def _ground(look: Look, across: tuple[float, float], down: tuple[float, float], height: float) -> dict[str, Any]:
     bare = {"showgrid": False, "showline": False, "showticklabels": False, "title": None, "automargin": False}
     return look.layout(
         xaxis={**bare, "range": across},
@@ -92,7 +92,7 @@ def _column_heads(findings: Findings, top: float, look: Look) -> list[Mark]:
 
 
 def _corner(findings: Findings, side: float, top: float, look: Look) -> list[Mark]:
-    row, column = (lettering.wrapped(factor, 12, 1) for factor in findings.study.factors)
+    row, column = _factor_names(findings)
     x, wide, half = -0.5 - side / 2, side - grid.GAP, top / 2
     return [
         Mark(
@@ -102,35 +102,41 @@ def _corner(findings: Findings, side: float, top: float, look: Look) -> list[Mar
     ]
 
 
-def _bars(marks: list[Mark], chosen: Set[asking.Cell], look: Look) -> go.Bar:
+def _factor_names(findings: Findings) -> list[str]:
+    return [lettering.wrapped(findings.observed.factor(factor).word, 16, 1) for factor in findings.study.factors]
+
+
+def _bars(marks: list[Mark], chosen: Set[asking.Cell], look: Look) -> dict[str, Any]:
     still = {"marker": {"opacity": 1}}  # what is chosen is framed, so nothing need fade
-    return go.Bar(
-        x=[m.x for m in marks],
-        y=[m.tall for m in marks],
-        base=[m.y for m in marks],
-        width=[m.wide for m in marks],
-        marker={
+    return {
+        "type": "bar",
+        "x": [m.x for m in marks],
+        "y": [m.tall for m in marks],
+        "base": [m.y for m in marks],
+        "width": [m.wide for m in marks],
+        "marker": {
             "color": [m.colour for m in marks],
             "line": {
                 "color": [look.ink if m.place in chosen else look.rule for m in marks],
                 "width": [FRAME if m.place in chosen else 1 for m in marks],
             },
         },
-        hovertext=[m.told for m in marks],
-        hoverinfo="text",
-        customdata=[list(m.place) for m in marks],
-        selected=still,
-        unselected=still,
-    )
+        "hovertext": [m.told for m in marks],
+        "hoverinfo": "text",
+        "customdata": [list(m.place) for m in marks],
+        "selected": still,
+        "unselected": still,
+    }
 
 
-def _names(marks: list[Mark], look: Look) -> go.Scatter:
+def _names(marks: list[Mark], look: Look) -> dict[str, Any]:
     heads = [m for m in marks if m.text]
-    return go.Scatter(
-        x=[m.x for m in heads],
-        y=[m.y + m.tall / 2 for m in heads],
-        mode="text",
-        text=[m.text for m in heads],
-        textfont={"size": look.small, "color": look.ink},
-        hoverinfo="skip",
-    )
+    return {
+        "type": "scatter",
+        "x": [m.x for m in heads],
+        "y": [m.y + m.tall / 2 for m in heads],
+        "mode": "text",
+        "text": [m.text for m in heads],
+        "textfont": {"size": look.small, "color": look.ink},
+        "hoverinfo": "skip",
+    }

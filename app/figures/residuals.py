@@ -1,5 +1,7 @@
 """Residuals drawn as three questions ask for them: cell by cell, along the fitted values, and against a bell curve."""
 
+from typing import Any
+
 import numpy as np
 import pandas as pd
 import plotly.graph_objects as go
@@ -8,7 +10,7 @@ from analysis.findings import Findings
 from analysis.normal_scores import normal_scores
 from app import records, words
 from app.figures import lettering, placing
-from app.figures.interaction import MANY_POINTS
+from app.figures.lines import MANY_POINTS
 from app.figures.scene import Scene
 from app.look import Look
 
@@ -40,7 +42,7 @@ def cells_shown(findings: Findings) -> pd.DataFrame:
     return filled if len(filled) <= MOST_CELLS else filled.loc[filled["sd"].nlargest(MOST_CELLS).index.sort_values()]
 
 
-def _cell_ground(findings: Findings, look: Look, cells: pd.DataFrame, heights: placing.Positions) -> go.Layout:
+def _cell_ground(findings: Findings, look: Look, cells: pd.DataFrame, heights: placing.Positions) -> dict[str, Any]:
     names = [f"{lettering.wrapped(c.row, 20, 1)} · {lettering.wrapped(c.column, 20, 1)}" for c in records.lines(cells)]
     quiet = {"showgrid": False, "automargin": False}
     return look.layout(

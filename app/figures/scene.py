@@ -8,7 +8,8 @@ import pandas as pd
 
 from analysis.findings import Findings
 from app import original
-from app.figures import placing
+from app.figures import along, placing
+from app.figures.along import Along
 
 
 @dataclass(frozen=True, eq=False)
@@ -90,7 +91,32 @@ class View(Scene):
     @property
     def is_log(self) -> bool:
         """Whether the axis of the response is logarithmic."""
-        return original.is_told(self.findings)
+        return bool(self.findings.observed.scale.tells_ratios)
+
+    @cached_property
+    def axis(self) -> Along:
+        """Where the levels along the axis stand."""
+        return along.along(self.findings, self.findings.design[f"{self.along}_factor"])
+
+    @property
+    def step(self) -> float:
+        """Distance of neighbouring lines at one place of the axis."""
+        return placing.step(len(self.rows)) * self.axis.step
+
+    @property
+    def room(self) -> float:
+        """How far observations may stand to either side of their line."""
+        return 0.36 * self.step
+
+    @cached_property
+    def offsets(self) -> placing.Positions:
+        """How far each line stands from the place of its column level."""
+        return (np.arange(len(self.rows), dtype=np.float64) - (len(self.rows) - 1) / 2) * self.step
+
+    @property
+    def label_place(self) -> float:
+        """Where the names of the lines begin: just right of the last cluster of points."""
+        return float(self.axis.places[-1]) + len(self.rows) / 2 * self.step + 0.05
 
     @cached_property
     def rows(self) -> tuple[str, ...]:

@@ -98,3 +98,24 @@ def test_a_contrast_over_an_empty_cell_is_refused():
         findings.contrast({("a0", "b1"): 1, ("a0", "b0"): -1})
     with pytest.raises(UnknownLevel, match="a9"):
         findings.contrast({("a9", "b1"): 1})
+
+
+@pytest.mark.parametrize("within", [None, "Victory"])
+def test_the_drawn_lines_are_regressions_through_the_means(oats, within):
+    amounts = np.array(oats.observed.column.amounts)
+    if within is None:
+        means = oats.marginal_means["nitrogen"]["mean"].to_numpy()
+    else:
+        means = oats.cells.loc[oats.cells["row"] == within, "estimate"].to_numpy()
+    frame = oats.trend_curves
+    drawn = frame[frame["within"].isna() if within is None else frame["within"] == within]
+    for name, degree in (("straight", 1), ("curved", 2)):
+        np.testing.assert_allclose(drawn[name], np.polyval(np.polyfit(amounts, means, degree), drawn["amount"]), rtol=1e-9)
+
+
+def test_two_amounts_have_a_line_and_no_curve():
+    rng = np.random.default_rng(5)
+    frame = pd.DataFrame({"a": np.tile(["p", "q"], 8), "b": np.repeat([1.0, 2.0], 8), "y": rng.normal(size=16)})
+    drawn = analysed(frame).trend_curves
+    assert drawn["curved"].isna().all()
+    assert drawn["straight"].notna().all()

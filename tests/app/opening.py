@@ -36,6 +36,11 @@ def findings_of(frame: pd.DataFrame, **choices: object) -> Findings:
     return analysis.analyse(Study(analysis.read_table(frame, name="frame"), "y", "a", "b", **choices))  # type: ignore[arg-type]
 
 
+def findings_of_file(content: bytes, response: str, row: str, column: str) -> Findings:
+    """Return the findings of a file."""
+    return analysis.analyse(Study(analysis.read_table(content, name="file.csv"), response, row, column))
+
+
 def station(name: str, study: Study | None = None) -> AppTest:
     """Return the dashboard open at a station."""
     dashboard = AppTest.from_file(str(ROOT / "app" / "main.py"), default_timeout=SECONDS)

@@ -7,7 +7,7 @@ import pytest
 from analysis.findings import Findings
 from analysis.rounding import measured
 from app import records
-from app.figures import differences, grid, interaction, placing, residuals
+from app.figures import differences, distributions, effects, grid, interaction, main_effects, placing, residuals
 from app.look import DESK, NIGHT, PRINT, PROJECTOR, SLIDE, Look
 from tests.app import opening
 
@@ -151,7 +151,7 @@ def test_a_filled_mark_is_an_interval_without_zero() -> None:
 def test_a_long_family_is_cut_and_the_caption_says_so() -> None:
     found = opening.findings(opening.sample())
     assert len(differences.shown(found, "cells")) == differences.MOST_LINES
-    assert "40 that lie farthest" in differences.differences_caption(found, "cells")
+    assert "24 that lie farthest" in differences.differences_caption(found, "cells")
     assert "all 66" in differences.differences_caption(found, "cells")
 
 
@@ -180,6 +180,10 @@ def test_names_that_look_like_markup_are_inert() -> None:
         grid.counts(found.design, DESK),
         differences.differences(found, DESK, "a within b"),
         residuals.by_cell(found, DESK),
+        distributions.distributions(found, DESK),
+        distributions.distributions(found, DESK, boxes=True),
+        main_effects.main_effects(found, DESK),
+        effects.effects(found, DESK),
     ]
     for figure in drawn:
         assert "<b>loud" not in figure.to_json().replace("\\u003c", "<")
