@@ -18,12 +18,17 @@ ARGUMENTS = ["--no-sandbox", "--disable-gpu", "--disable-dev-shm-usage"]
 READY = "h1.station"
 
 
-@contextmanager
-def dashboard(script: str = "app/main.py") -> Iterator[str]:
-    """Run the dashboard, or another page, on a free port of this machine and give its address."""
+def free_port() -> int:
+    """Return a port of this machine that nobody listens at."""
     with socket.socket() as free:
         free.bind(("127.0.0.1", 0))
-        port = free.getsockname()[1]
+        return int(free.getsockname()[1])
+
+
+@contextmanager
+def dashboard(script: str = "app/main.py", port: int | None = None) -> Iterator[str]:
+    """Run the dashboard, or another page, on a port of this machine, a free one unless one is given, and tell its address."""
+    port = port or free_port()
     words = ["-m", "streamlit", "run", script, f"--server.port={port}", "--server.headless=true", "--server.fileWatcherType=none"]
     server = subprocess.Popen([sys.executable, *words], cwd=ROOT, stdout=subprocess.DEVNULL, stderr=subprocess.DEVNULL)
     try:
