@@ -134,7 +134,8 @@ MESSES = (
         "row_merge_0",
         "3",
         "3 levels of cultivar × 2 of column, 16 observations",
-        "Alba with dry (t): 2; Alba with wet (t): 2; Bruna with dry (t): 3; Bruna with wet (t): 3; Carla with dry (t): 3; Carla with wet (t): 3",
+        "Alba with dry (t): 2; Alba with wet (t): 2; Bruna with dry (t): 3; Bruna with wet (t): 3; "
+        "Carla with dry (t): 3; Carla with wet (t): 3",
     ),
     Mess(
         "nitrate.csv",
