@@ -51,11 +51,9 @@ def suggestions(study: Study, column: str) -> tuple[Suggestion, ...]:
     return tuple(Suggestion(tuple(levels[name] for name in names), levels[into]) for into, names in groups.items())
 
 
-def settled_notes(study: Study, column: str) -> frozenset[str]:
-    """Return the notes that offered a merge which was taken or refused since."""
-    unsettled = [label for label in _levels(study, column).labels if label not in study.apart.get(column, {})]
-    offered = look_alikes.notes(column, study.table.column(column).as_levels().labels)
-    return frozenset(offered) - frozenset(look_alikes.notes(column, unsettled))
+def merge_notes(study: Study, column: str) -> frozenset[str]:
+    """Return the notes that offer a merge, which the suggestions say better as long as they are open."""
+    return frozenset(look_alikes.notes(column, study.table.column(column).as_levels().labels))
 
 
 def merged(study: Study, column: str, levels: Sequence[str], into: str) -> Changes:

@@ -205,7 +205,8 @@ def _reasons(response: Look | None, factors: Sequence[Look], block: Look | None,
     for look in factors:
         kind = "numbers" if look.levels.amounts is not None else "levels"
         balance = ", equally often" if look.is_balanced else ""
-        reasons[look.column.name] = f"{look.count} {kind} that recur{balance}"
+        spelled = "" if look.count == len(look.column.as_levels().labels) else ", look-alikes taken for one"
+        reasons[look.column.name] = f"{look.count} {kind} that recur{balance}{spelled}"
     if block is not None:
         reasons[block.column.name] = f"named like a block, {block.count} levels across the cells"
     if unit is not None:

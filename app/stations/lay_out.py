@@ -110,8 +110,10 @@ def _account(study: Study, design: Mapping[str, Any]) -> None:
 
 
 def _notes(findings: Findings) -> None:
-    settled = frozenset[str]().union(*(level_edits.settled_notes(findings.study, factor) for factor in findings.study.factors))
-    notes = [note for note in findings.notes if note not in settled]
+    """Show what the levels, the response and the layout mean for the answers; what the reader decided stands at Bring."""
+    study = findings.study
+    told_elsewhere = frozenset(study.table.notes).union(*(level_edits.merge_notes(study, factor) for factor in study.factors))
+    notes = [note for note in findings.notes if note not in told_elsewhere]
     if notes:
         st.html(paper.question("Worth knowing"))
         st.html(paper.bullets(notes))
