@@ -24,32 +24,29 @@ def check(data: bytes) -> None:
             if sum(entry.file_size for entry in entries) > UNPACKED_BYTES or len(entries) > _MOST_ENTRIES:
                 raise refusals.UnpacksTooLarge(UNPACKED_BYTES)
             if sum(entry.compress_size for entry in entries) * _DEFLATE_RATIO > UNPACKED_BYTES:
-                _measure(data, entries)
+                _hold_to_its_word(data, entries)
             if "META-INF/manifest.xml" in archive.namelist() and b"encryption-data" in archive.read("META-INF/manifest.xml"):
                 raise refusals.Encrypted()
     except FAULTS as error:
         raise refusals.DamagedFile("workbook") from error
 
 
-def _measure(data: bytes, entries: list[zipfile.ZipInfo]) -> None:
-    """Unpack every part, step by step and keeping nothing, until the limit is passed."""
-    total = 0
+def _hold_to_its_word(data: bytes, entries: list[zipfile.ZipInfo]) -> None:
+    """Unpack every part, step by step and keeping nothing, until one of them turns out larger than it says."""
     for entry in entries:
         start = entry.header_offset + 30 + sum(data[entry.header_offset + at] + 256 * data[entry.header_offset + at + 1] for at in (26, 28))
         packed = data[start : start + entry.compress_size]
-        if entry.compress_type == zipfile.ZIP_STORED:
-            total += len(packed)
-        elif entry.compress_type == zipfile.ZIP_DEFLATED:
-            total = _unpacked(packed, total)
-        else:
+        if entry.compress_type not in (zipfile.ZIP_STORED, zipfile.ZIP_DEFLATED):
             raise refusals.DamagedFile("workbook")
-        if total > UNPACKED_BYTES:
-            raise refusals.UnpacksTooLarge(UNPACKED_BYTES)
+        stored = entry.compress_type == zipfile.ZIP_STORED
+        if (len(packed) if stored else _unpacked(packed, entry.file_size)) > entry.file_size:
+            raise refusals.UnpacksBeyondItsWord(UNPACKED_BYTES)
 
 
-def _unpacked(packed: bytes, total: int) -> int:
-    inflater = zlib.decompressobj(-15)
-    while packed and not inflater.eof and total <= UNPACKED_BYTES:
+def _unpacked(packed: bytes, most: int) -> int:
+    """How many bytes a stream unpacks to, as far as beyond a limit."""
+    inflater, total = zlib.decompressobj(-15), 0
+    while packed and not inflater.eof and total <= most:
         total += len(inflater.decompress(packed, _STEP))
         packed = inflater.unconsumed_tail
     return total

@@ -3,6 +3,7 @@
 import csv
 import io
 import re
+from collections import deque
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 from functools import cached_property
@@ -51,7 +52,8 @@ class Delimited:
         if len(self.data) <= limit:
             return self.data.decode("utf-8")
         end = self.data.rfind(b"\n", 0, limit)
-        return self.data[: end if end > 0 else limit].decode("utf-8", errors="ignore")
+        long = end < limit // 2  # a line of that length is turned down where it is parsed
+        return self.data[: limit if long else end].decode("utf-8", errors="ignore")
 
     def _records(self, text: str) -> Iterator[tuple[int, list[str]]]:
         """Every record with its row number; raises UnclosedQuote or CellTooLong with the row where it happens."""
@@ -126,7 +128,10 @@ class Delimited:
         """Read record by record: short rows are filled with blanks, blank ones passed over, wide ones refused."""
         parts: list[list[pa.StringArray]] = [[] for _ in range(width)]
         numbers: list[int] = []
-        records = islice(self._records(self.data.decode("utf-8")), start, None)
+        text = self.data.decode("utf-8")
+        if text.count('"') % 2:
+            deque(self._records(text), maxlen=0)  # an open mark is told at once, before anything is kept
+        records = islice(self._records(text), start, None)
         while chunk := list(islice(records, _CHUNK)):
             filled = [(row, _fitted(row, cells, width)) for row, cells in chunk if any(cells)]
             numbers.extend(row for row, _ in filled)

@@ -105,8 +105,9 @@ def _remarks(body: Body, blanks: Mask) -> Mask:
     if len(body.columns) < 3:
         return np.zeros(body.rows.size, dtype=bool)
     alone = _all_blank(body, 1) & ~blanks
-    for index in np.flatnonzero(alone):
-        alone[index] = numerals.find(spaces.tidy(body.columns[0][int(index)].as_py())) is None
+    cells = body.columns[0].filter(pa.array(alone)).dictionary_encode()
+    words = np.array([numerals.find(spaces.tidy(text)) is None for text in cells.dictionary.to_pylist()], dtype=bool)
+    alone[alone] = words[cells.indices.to_numpy(zero_copy_only=False)]
     return alone
 
 

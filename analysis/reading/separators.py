@@ -12,6 +12,7 @@ from analysis.table import Alternative, Decision
 _WEIGHT = {"\t": 1.0, ";": 0.99, "|": 0.98, ",": 0.97, "  ": 0.85, " ": 0.75}  # at equal consistency the surer sign wins
 _DECLARED = re.compile(rb"(?:\"?sep=(.)\"?)[ ,;\t]*(?:\n|$)", re.IGNORECASE)
 _SAMPLE_LINES = 200
+_LONGEST = 100_000  # characters of a line looked at; a cell beyond would stop the parser
 _OFTEN = 0.5  # share of lines that a separator cuts alike from which it is offered
 _GAPS = {" ": re.compile(r'("(?:[^"]|"")*")|[ \t]+'), "  ": re.compile(r'("(?:[^"]|"")*")|\t| {2,}[ \t]*')}
 
@@ -60,7 +61,7 @@ def _alternatives(delimiter: str, found: str, lines: Sequence[str], reading: Rea
 
 def _sample(data: bytes) -> list[str]:
     text = data[:262144].decode("utf-8", errors="ignore")
-    lines = [line for line in text.split("\n")[: _SAMPLE_LINES + 1] if line.strip()]
+    lines = [line[:_LONGEST] for line in text.split("\n")[: _SAMPLE_LINES + 1] if line.strip()]
     if len(data) > 262144 and len(lines) > 1:
         lines.pop()  # it may have been cut
     remarks = sum(1 for _ in _leading_remarks(lines))

@@ -6,10 +6,9 @@ from dataclasses import dataclass, replace
 from functools import cached_property
 
 import numpy as np
-import pyarrow as pa
 
 from analysis import refusals
-from analysis.reading import cell_values
+from analysis.reading import cell_values, sheet_columns
 from analysis.reading.cell_values import Value
 from analysis.reading.records import HEAD, RAW, Body, Found, Record, Span, filled_part, raw_line, record_of
 from analysis.reading.sheet_marks import Marks
@@ -39,10 +38,9 @@ class Sheet:
             if len(row) > width and any(not cell_values.is_blank(value) for value in row[width:]):
                 raise refusals.TooManyFields(first + offset, sum(not cell_values.is_blank(value) for value in row), width)
         columns = [[row[index] if index < len(row) else "" for row in rows] for index in range(width)]
-        texts = tuple(pa.array([cell_values.text_of(value) for value in column], pa.string()) for column in columns)
-        numbers = tuple(cell_values.numbers_of(column) for column in columns)
+        texts, numbers = zip(*map(sheet_columns.read, columns), strict=True)
         units = tuple(self._percent(index, start, column) for index, column in enumerate(columns))
-        dates = tuple(tuple(first + i for i, value in enumerate(column) if isinstance(value, datetime.date)) for column in columns)
+        dates = tuple(_dates(column, first) for column in columns)
         return Body(texts, np.arange(first, first + len(rows), dtype=np.int64), numbers, units, dates)
 
     def _percent(self, index: int, start: int, column: Sequence[Value]) -> str | None:
@@ -57,6 +55,13 @@ class Sheet:
         values = [self.values[row][columns.start : columns.stop] for row in rows]
         found = replace(self.found, spans=tuple(_shifted(span, columns) for span in self.found.spans), raw=raw_rows(values, rows.start))
         return Sheet(values, self.marks, found, rows.start, columns.start)
+
+
+def _dates(column: Sequence[Value], first: int) -> tuple[int, ...]:
+    """The rows of a column that hold dates."""
+    if not any(issubclass(kind, datetime.date) for kind in set(map(type, column))):
+        return ()
+    return tuple(first + i for i, value in enumerate(column) if isinstance(value, datetime.date))
 
 
 def _shifted(span: Span, columns: range) -> Span:

@@ -26,6 +26,7 @@ from analysis.refusals.reading import (
     TooManyRows,
     UnclosedQuote,
     UnknownColumn,
+    UnpacksBeyondItsWord,
     UnpacksTooLarge,
 )
 from analysis.refusals.sentence import Refusal, rows_told
@@ -110,6 +111,7 @@ __all__ = [
     "UnknownLevel",
     "UnknownRow",
     "UnknownScale",
+    "UnpacksBeyondItsWord",
     "UnpacksTooLarge",
     "UnreadableChoice",
     "rows_told",

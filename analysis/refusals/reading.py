@@ -94,10 +94,17 @@ class Encrypted(Refusal):
 class UnpacksTooLarge(Refusal):
     """A compressed file that unpacks beyond the limit."""
 
-    def __init__(self, limit: int) -> None:
+    def __init__(self, limit: int, what: str = "more than") -> None:
         super().__init__(
-            f"The workbook unpacks to more than the limit of {limit // 2**20} MiB: save only the sheet with the data, or save it as .csv."
+            f"The workbook unpacks to {what} the limit of {limit // 2**20} MiB: save only the sheet with the data, or save it as .csv."
         )
+
+
+class UnpacksBeyondItsWord(UnpacksTooLarge):
+    """A compressed file with a part that is larger than it says, as it is made to pass a limit."""
+
+    def __init__(self, limit: int) -> None:
+        super().__init__(limit, "more than it says of itself, which may well be more than")
 
 
 class TooManyCellsInSheet(Refusal):
