@@ -22,6 +22,11 @@ def _suggestions(fingerprint: str, _study: Study, column: str) -> tuple[Suggesti
     return level_edits.suggestions(_study, column)
 
 
+def are_offered(study: Study) -> bool:
+    """Return whether some levels of a factor may be one and nobody has said so yet."""
+    return any(_suggestions(study.fingerprint, study, factor) for factor in study.factors)
+
+
 def offers(study: Study, column: str, key: str) -> None:
     """Show each merge that look-alike levels suggest, with what to do about it."""
     for place, offer in enumerate(_suggestions(study.fingerprint, study, column)):

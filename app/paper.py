@@ -30,6 +30,12 @@ def variables(look: Look) -> str:
     return f"<style>:root{{{told}}}</style>"
 
 
+def marks(settled: Sequence[str]) -> str:
+    """Return the style that fills the marks of the settled stops in the bar, by their titles."""
+    where = ", ".join(f'[data-testid="stTopNavLink"] span[label="{safe(title)}"] p::before' for title in settled)
+    return f"<style>{where} {{ background: var(--accent); border-color: var(--accent); }}</style>" if settled else ""
+
+
 def safe(text: object) -> str:
     """Return text that no browser takes for markup."""
     return html.escape(str(text))
@@ -97,9 +103,9 @@ def evidence(line: str, place: str) -> str:
     return f"<div class='evidence'><p>{safe(line)}</p><p class='place'>{safe(place)}</p></div>"
 
 
-def status(sentence: str) -> str:
-    """Return the words beside undo and redo."""
-    return f"<p class='status'>{safe(sentence)}</p>"
+def status(sentence: str, unseen: str) -> str:
+    """Return the words beside undo and redo, and what is told to a screen reader alone."""
+    return f"<p class='status'>{safe(sentence)}</p><p class='unseen'>{safe(unseen)}</p>"
 
 
 def levels(factor: str, counts: Sequence[tuple[str, int]]) -> str:

@@ -239,6 +239,11 @@ def percent_told(share: float) -> str:
     return f"{share * 100:g} %"
 
 
+def to_do(step: str) -> str:
+    """Return the next step as the bar names it."""
+    return f"To do: {step} →"
+
+
 def open_table(study: Study | None) -> str:
     """Return which table is open."""
     return "" if study is None else f"{study.table.name} · {counted(study.table.rows, 'row')}"

@@ -152,13 +152,18 @@ def differences_caption(findings: Findings, family: str, asked: pd.DataFrame | N
     size = words.family_size(findings, family) if asked is None else words.sizes_told(asked)
     how = "not adjusted" if alone else f"adjusted within the family ({words.adjusted_by(findings)}; {size})"
     nothing = "one" if findings.observed.scale.tells_ratios else "zero"
-    signs = f" A filled mark’s interval excludes {nothing}; a hollow one is undecided{small_told(frame)}."
-    return f"Bars: {percent(findings.study.confidence)} intervals, {how}.{signs}{band}{scale_told(findings)}{cut}"
+    return f"Bars: {percent(findings.study.confidence)} intervals, {how}.{_signs(frame, nothing)}{band}{scale_told(findings)}{cut}"
 
 
-def small_told(frame: pd.DataFrame) -> str:
-    """Return what the mark of no difference that matters is, where there is one."""
-    return "; a diamond shows no difference that matters" if (frame["verdict"] == verdicts.NONE_THAT_MATTERS).any() else ""
+def _signs(frame: pd.DataFrame, nothing: str) -> str:
+    """Return what the marks that occur mean."""
+    said = {
+        f"a filled mark’s interval excludes {nothing}": frame["verdict"].map(SYMBOLS).eq("circle").any(),
+        "a hollow mark is undecided": (frame["verdict"] == verdicts.UNDECIDED).any(),
+        "a diamond shows no difference that matters": (frame["verdict"] == verdicts.NONE_THAT_MATTERS).any(),
+    }
+    told = "; ".join(sign for sign, occurs in said.items() if occurs)
+    return f" {told[:1].upper()}{told[1:]}." if told else ""
 
 
 def scale_told(findings: Findings) -> str:

@@ -45,20 +45,17 @@ def _ask(asked: Asked) -> None:
 def _in_words(findings: Findings, asked: Asked) -> None:
     """Let question and adjustment be chosen in words: the same questions as by pointing."""
     families = asking.families(findings)
-    what, where = st.columns(2, gap="small")
-    with what:
-        st.selectbox(
-            asked_words.FAMILY, families, format_func=lambda name: asked_words.family(findings, name), **desk.bind_view(FAMILY, families)
-        )
-    with where:
-        _where(findings, asked)
-    adjust, control = st.columns(2, gap="small")
+    st.selectbox(
+        asked_words.FAMILY, families, format_func=lambda name: asked_words.family(findings, name), **desk.bind_view(FAMILY, families)
+    )
+    adjust, where = st.columns(2, gap="small")
     with adjust:
         st.selectbox(
             words.ADJUST, list(ADJUSTMENTS), format_func=lambda name: ADJUSTMENTS[name].word, **desk.bind("choice_adjust", "adjust")
         )
-    with control:
         _control(findings, asked)
+    with where:
+        _where(findings, asked)
 
 
 def _where(findings: Findings, asked: Asked) -> None:

@@ -30,6 +30,24 @@ def point(page: Page, text: str) -> None:
     page.mouse.up()
 
 
+def in_sight(page: Page) -> list[str]:
+    """Return what of question, sentence, figure and grid does not stand whole in the window, without scrolling."""
+    told: list[str] = page.evaluate(
+        """() => {
+            const main = document.querySelector('[data-testid="stMain"]');
+            const heads = document.querySelectorAll('h1.station');
+            const parts = {
+                question: heads[1], sentence: document.querySelector('.answer .sentence'),
+                figure: document.querySelector('.st-key-differences .main-svg'), grid: document.querySelector('.st-key-grid .main-svg'),
+            };
+            const inside = box => box.top >= 0 && box.bottom <= innerHeight && box.height > 0;
+            const missing = Object.keys(parts).filter(name => !parts[name] || !inside(parts[name].getBoundingClientRect()));
+            return main.scrollTop > 0 ? [...missing, 'the page was scrolled'] : missing;
+        }"""
+    )
+    return told
+
+
 @pytest.mark.parametrize(
     ("marks", "asked", "family", "within"),
     [
@@ -43,6 +61,7 @@ def test_heads_and_names_ask(page: Page, marks: list[str], asked: str, family: s
         point(page, mark)
     expect(page.locator("h1.station").nth(1)).to_contain_text(asked)
     driving.settle(page)
+    assert in_sight(page) == []
     frame = opening.findings(opening.sample()).comparisons[family]
     assert frame is not None
     table = page.locator(".st-key-compare_table").inner_text()
@@ -57,11 +76,14 @@ def test_two_cells_and_a_block_ask(page: Page) -> None:
     expect(choice).to_contain_text("Full sun, No feed")
     point(page, "30.22")
     expect(heading).to_contain_text("Within Full sun: Feed A against No feed")
+    driving.settle(page)
+    assert in_sight(page) == []
     point(page, "14.00")
     expect(choice).to_contain_text("Deep shade, No feed")
     point(page, "16.25")
     expect(heading).to_contain_text("Difference of differences: Feed A − No feed, with Deep shade against with Full sun")
     driving.settle(page)
+    assert in_sight(page) == []
     assert found.interaction_contrasts is not None
     told = next(
         c for c in found.interaction_contrasts.itertuples() if c.rows == ["Full sun", "Deep shade"] and c.columns == ["No feed", "Feed A"]

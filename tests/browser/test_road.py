@@ -51,6 +51,30 @@ def found() -> Findings:
     return opening.findings(opening.sample())
 
 
+MOST_CLICKS = 6  # from a dropped file to its three answers
+
+
+def test_a_new_file_is_answered_after_a_few_clicks(running: Browser, address: str, tmp_path: Path) -> None:
+    file = tmp_path / "cheese.csv"
+    lines = [
+        f"{rennet},{days},{50 + 3 * r + days / 7 + k / 5:.1f}"
+        for r, rennet in enumerate(("calf", "thistle"))
+        for days in (7, 14, 28)
+        for k in (0, 3, 1, 4)
+    ]
+    file.write_text("rennet,ripening (days),firmness (N)\n" + "\n".join(lines), encoding="utf-8")
+    opened = driving.open_page(running, address)
+    opened.evaluate("window.clicks = 0; addEventListener('click', event => { if (event.isTrusted) clicks += 1; }, true)")
+    driving.drop(opened, file)
+    driving.go(opened, "Lay out")  # a careful user looks at the roles first
+    driving.go(opened, "Answer")
+    told = opened.locator(".st-key-answers .sentence").all_inner_texts()
+    assert len(told) == 3
+    assert "rennet" in told[1].lower()
+    assert 0 < opened.evaluate("clicks") <= MOST_CLICKS
+    opened.context.close()
+
+
 def test_from_a_dropped_file_to_slides_and_workbook(page: Page, pots: Path, tmp_path: Path, found: Findings) -> None:
     driving.drop(page, pots)
     driving.go(page, "Lay out")
