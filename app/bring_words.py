@@ -13,8 +13,9 @@ DECIDED = "What was decided, and what it could be instead"
 ALSO = "Also seen on the way"
 FOLLOWED = "What followed from reading it so"
 EARLIER, OPEN_AGAIN, FORGET = "Earlier studies on this machine", "Open", "Forget"
+ON = "Lay out the design"
 COMING_BACK = "Opening the study again …"
-BUSY_FROM = 5 * 2**20  # bytes, from which a file is told with its size while it is read
+BUSY_FROM = 5_000_000  # bytes, from which a file is told with its size while it is read
 
 
 def file_limit(megabytes: int) -> str:
@@ -27,7 +28,7 @@ def file_limit(megabytes: int) -> str:
 
 def reading(name: str, size: int) -> str:
     """Return what is told while a file is read."""
-    return f"Reading {name} …" if size < BUSY_FROM else f"Reading {name}, {size / 2**20:.0f} MB: a few seconds for each 50 MB …"
+    return f"Reading {name} …" if size < BUSY_FROM else f"Reading {name}, {size / 1e6:.0f} MB: a few seconds for each 50 MB …"
 
 
 def earlier(one: Earlier) -> str:

@@ -6,16 +6,15 @@ from typing import Any
 
 import streamlit as st
 
-from analysis import analyse, counted, log
+from analysis import log
 from analysis.findings import Findings
-from analysis.implausible import Suspicion, suspicions
+from analysis.implausible import Suspicion
 from analysis.refusals import Refusal
-from analysis.roles import Roles, guess_roles
 from analysis.study import ROLES, Study
 from analysis.study_file import Saved
 from analysis.table import Table
-from analysis.unit_question import UnitAnswer, unit_answers
-from app import keeping
+from analysis.unit_question import UnitAnswer
+from app import found, keeping
 
 HISTORY = 200  # studies kept for undo
 TABLE, READING, CHOICE = "table", "reading", "choice"
@@ -45,6 +44,7 @@ class State:
     files: Mapping[str, Brought] = field(default_factory=dict)  # by the fingerprint of each table read from them
     news: tuple[str, ...] = ()  # what the last change brought along, told until the next one
     unkept: str | None = None  # why the open study could not be written down
+    stamps: Mapping[str, str] = field(default_factory=dict)  # of what this session wrote or opened last, by place
 
 
 def _state() -> State:
@@ -77,6 +77,7 @@ def open_study(new: Study, file: Brought | None = None, news: tuple[str, ...] = 
 
 def open_saved(saved: Saved, place: str) -> None:
     """Open a study with its history, as it was saved."""
+    _remember(stamps={**_state().stamps, place: keeping.stamp(place) or ""})
     _open(saved.studies, saved.place, Brought(saved.content, saved.name, place), ())
 
 
@@ -96,8 +97,8 @@ def file() -> Brought | None:
 
 def _place_of(table: Table) -> str:
     """Return where studies of a table's file are kept, or what else tells the table from others."""
-    found = _state().files.get(table.fingerprint)
-    return table.fingerprint if found is None else found.place
+    brought = _state().files.get(table.fingerprint)
+    return table.fingerprint if brought is None else brought.place
 
 
 def saved() -> Saved | None:
@@ -116,11 +117,20 @@ def _keep() -> None:
     if brought is None or written is None:
         return
     try:
-        keeping.keep(brought.place, written)
+        if keeping.stamp(brought.place) not in (None, _state().stamps.get(brought.place)):  # another window went on with it
+            brought = _part_ways(brought)
+        stamp = keeping.keep(brought.place, written)
     except OSError as error:
         _remember(unkept=error.strerror or str(error))
     else:
-        _remember(unkept=None)
+        _remember(unkept=None, stamps={**_state().stamps, brought.place: stamp})
+
+
+def _part_ways(brought: Brought) -> Brought:
+    """Keep what follows at a place of its own, so that two windows on one study lose nothing to each other."""
+    own = replace(brought, place=keeping.new_place())
+    _remember(files={table: own if file.place == brought.place else file for table, file in _state().files.items()})
+    return own
 
 
 def unkept() -> str | None:
@@ -276,20 +286,9 @@ def bind_shown(key: str, value: Any, take: Callable[[Any], None]) -> dict[str, A
     return bind_taken(key, take)
 
 
-@st.cache_resource(max_entries=64, show_spinner=False)
-def _findings(fingerprint: str, _study: Study) -> Findings:
-    return analyse(_study)
-
-
 def findings() -> Findings | Refusal | None:
     """Return what the open study comes to, the refusal where it cannot be analysed, None where nothing is open."""
-    now = study()
-    if now is None:
-        return None
-    try:
-        return _findings(now.fingerprint, now)
-    except Refusal as refusal:
-        return refusal
+    return found.findings(study())
 
 
 def findings_before(field: str) -> Findings | None:
@@ -298,62 +297,32 @@ def findings_before(field: str) -> Findings | None:
     old = past[-1] if past else None
     if now is None or old is None or old.fingerprint == now.fingerprint:
         return None
-    return _findings(old.fingerprint, old) if replace(old, **{field: getattr(now, field)}).fingerprint == now.fingerprint else None
-
-
-@st.cache_resource(max_entries=16, show_spinner=False)
-def _crossing(fingerprint: str, _study: Study) -> Mapping[str, Any]:
-    return counted.crossing(_study)
+    came_to = found.findings(old) if replace(old, **{field: getattr(now, field)}).fingerprint == now.fingerprint else None
+    return came_to if isinstance(came_to, Findings) else None
 
 
 def crossing() -> Mapping[str, Any] | None:
     """Return the layout of the open study with its counts, also where it cannot be analysed; None where there is nothing to count in."""
-    now, found = study(), findings()
-    if now is None or isinstance(found, Findings):
-        return None if found is None else found.design  # type: ignore[union-attr]
-    try:
-        return _crossing(now.fingerprint, now)
-    except Refusal:
-        return None
-
-
-@st.cache_resource(max_entries=16, show_spinner=False)
-def _suspicions(fingerprint: str, _study: Study) -> tuple[Suspicion, ...]:
-    return suspicions(_study)
+    return found.crossing(study())
 
 
 def worth_a_look() -> tuple[Suspicion, ...]:
     """Return the values of the open study that deserve a second look; none where it cannot be laid out."""
-    now = study()
-    return () if now is None or isinstance(findings(), Refusal) else _suspicions(now.fingerprint, now)
-
-
-@st.cache_resource(max_entries=16, show_spinner=False)
-def _roles(fingerprint: str, _table: Table) -> Roles:
-    return guess_roles(_table)
+    return found.worth_a_look(study())
 
 
 def reasons() -> Mapping[str, str]:
     """Return why each column of the open table got the role that was suggested for it, by column."""
     now = study()
-    return {} if now is None else _roles(now.table.fingerprint, now.table).reasons
+    return {} if now is None else found.roles(now.table).reasons
 
 
 def decisions() -> tuple[log.Entry, ...]:
     """Return every decision that led to the open study, in order; what was undone is not among them."""
     studies = log.of_one_file([*_state().past, study()], _place_of)
-    return log.log(studies, _roles(studies[0].table.fingerprint, studies[0].table).reasons if studies else {})
-
-
-@st.cache_resource(max_entries=16, show_spinner=False)
-def _unit_answers(fingerprint: str, _study: Study, column: str) -> tuple[UnitAnswer, UnitAnswer]:
-    return unit_answers(_study, column)
+    return log.log(studies, found.roles(studies[0].table).reasons if studies else {})
 
 
 def asked_units() -> tuple[UnitAnswer, ...]:
     """Return what each answer to the question of the unit means, where a column names the units or looks as if it did."""
-    now = study()
-    if now is None or isinstance(findings(), Refusal):
-        return ()
-    column = now.unit or _roles(now.table.fingerprint, now.table).unit
-    return () if column is None or column in (now.response, now.block, *now.factors) else _unit_answers(now.fingerprint, now, column)
+    return found.asked_units(study())

@@ -1,5 +1,6 @@
 """Where studies are kept on this machine between two visits: a private folder of the user, a folder in it for each study."""
 
+import hashlib
 import json
 import os
 import re
@@ -53,8 +54,11 @@ def new_place() -> str:
     return secrets.token_hex(6)
 
 
-def keep(place: str, saved: Saved) -> None:
-    """Write a study as it stands now; the table it was made of is written once. Raises OSError where that cannot be."""
+def keep(place: str, saved: Saved) -> str:
+    """Write a study as it stands now and return the stamp of what was written; the table it was made of is written once.
+
+    Raises OSError where that cannot be.
+    """
     home = folder() / place
     known = home.is_dir()
     home.mkdir(mode=0o700, parents=True, exist_ok=True)
@@ -64,6 +68,17 @@ def keep(place: str, saved: Saved) -> None:
     _write(home / _RECORD, study_file.record(saved))
     if not known:
         _tidy(place)
+    return stamp(place) or ""
+
+
+def stamp(place: str) -> str | None:
+    """Return what tells one writing of a study from another, None where it is not kept."""
+    if not _NAME.fullmatch(place):
+        return None
+    try:
+        return hashlib.sha256((folder() / place / _RECORD).read_bytes()).hexdigest()
+    except OSError:  # not there, or not to be read
+        return None
 
 
 def _write(file: Path, data: bytes) -> None:

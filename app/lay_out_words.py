@@ -11,6 +11,7 @@ from analysis.counted import Account
 from analysis.level_edits import Suggestion
 from analysis.naming import listed
 from analysis.rounding import fixed
+from analysis.unit_question import UnitAnswer
 from app import words
 
 NAMED = 4  # cells named one by one
@@ -31,6 +32,19 @@ def amounts_told(question: Question) -> str:
     """Return the reason for the answer that stands, and what follows from it."""
     who = words.CHOSEN.capitalize() if question.chosen else f"{question.reason[0].upper()}{question.reason[1:]}"
     return f"{who}. {AMOUNTS_MEAN[question.are_amounts]}"
+
+
+def one_unit(column: str | None) -> str:
+    """Return an answer to the question of the unit."""
+    return "Each row" if column is None else f"Each {words.literal(column)}"
+
+
+def unit_told(answer: UnitAnswer) -> str:
+    """Return what follows from an answer to the question of the unit."""
+    if answer.units is None or answer.residual_df is None:
+        return f"Not possible. {answer.refusal}"
+    averaged = "" if answer.unit is None else ", the mean of its rows each"
+    return f"{fixed(answer.units, 0)} values{averaged}; {fixed(answer.residual_df, 0)} residual df"
 
 
 def levels_alike(column: str, offer: Suggestion) -> str:

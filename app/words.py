@@ -13,7 +13,6 @@ from analysis.findings import Findings
 from analysis.naming import word_and_unit
 from analysis.rounding import decimals_for, fixed, measured, percent, significant
 from analysis.study import Study
-from analysis.unit_question import UnitAnswer
 from app import records
 
 EMPTY = "empty"
@@ -272,15 +271,6 @@ def decisions_head(count: int) -> str:
 def worth_a_look(count: int) -> str:
     """Return how many values deserve a second look."""
     return f"{counted(count, 'value')} worth a look"
-
-
-def unit_answer(answer: UnitAnswer, chosen: str | None) -> str:
-    """Return what follows from one answer to the question of the unit."""
-    what = "Each row" if answer.unit is None else f"Each {answer.unit}"
-    if answer.units is None or answer.residual_df is None:
-        return f"{what}: not possible. {answer.refusal}"
-    now = ", as analysed now" if answer.unit == chosen else ""
-    return f"{what}: {fixed(answer.units, 0)} values, {fixed(answer.residual_df, 0)} residual df{now}."
 
 
 def rows_shown(shown: int, rows: int, columns: int) -> str:

@@ -108,6 +108,7 @@ def _reckoning(study: Study) -> None:
     if left_out:
         with st.expander(lay_out_words.left_out_head(account), key="left_out"):
             st.html(paper.table(sheets.left_out(left_out)))
+    st.page_link("stops/lay_out.py", label=bring_words.ON, icon=":material/arrow_forward:")
     why = desk.unkept()
     if why is not None:
         st.html(paper.notice(bring_words.unkept(why)))

@@ -72,11 +72,18 @@ def _amounts(study: Study, column: str, key: str) -> None:
 
 
 def _unit_question(study: Study) -> None:
-    """Show what each answer leaves to judge chance by, where a column names the units or looks as if it did."""
+    """Ask what one unit is, with what each answer leaves to judge chance by, where a column names the units or looks as if it did."""
     answers = desk.asked_units()
     if answers:
-        st.html(paper.question(words.ONE_UNIT))
-        st.html(paper.bullets(words.unit_answer(answer, study.unit) for answer in answers))
+        st.radio(
+            words.ONE_UNIT, [answer.unit for answer in answers], format_func=lay_out_words.one_unit,
+            captions=[words.literal(lay_out_words.unit_told(answer)) for answer in answers],
+            **desk.bind_edit("unit_asked", study.unit, _unit),
+        )  # fmt: skip
+
+
+def _unit(study: Study, column: str | None) -> Mapping[str, Any]:
+    return {"unit": column}
 
 
 def _design(design: Mapping[str, Any]) -> None:

@@ -184,3 +184,16 @@ def test_the_study_is_saved_at_tell() -> None:
     assert not dashboard.exception
     assert html.escape(saving.HOLDS) in opening.page(dashboard)
     assert html.escape(saving.NO_FILE) in opening.page(opening.station("tell", opening.sample()))
+
+
+def test_two_windows_on_one_study_lose_nothing_to_each_other() -> None:
+    first = dropped()
+    place = place_of(first)
+    second = reloaded(first, "lay_out")
+    second.button(key="row_0_down").click().run()
+    assert place_of(second) == place
+    first.switch_page("stops/lay_out.py").run()
+    first.button(key="row_0_out").click().run()
+    assert place_of(first) != place
+    assert keeping.kept(place).study.fingerprint == opening.study_of(second).fingerprint
+    assert keeping.kept(place_of(first)).study.fingerprint == opening.study_of(first).fingerprint

@@ -127,16 +127,17 @@ def test_a_slip_is_offered_for_a_look() -> None:
 def test_the_question_of_the_unit_is_asked_where_a_column_looks_like_one() -> None:
     table = analysis.read_table(readings(), name="leaves")
     dashboard = opening.station("lay_out", Study(table, "y", "a", "b"))
-    page = opening.page(dashboard)
-    assert words.ONE_UNIT in page
-    assert "Each row: 48 values, 44 residual df, as analysed now." in page
-    assert "Each pot: 12 values, 8 residual df." in page
-    dashboard.selectbox(key="role_unit").select("pot").run()
-    assert "Each pot: 12 values, 8 residual df, as analysed now." in opening.page(dashboard)
+    asked = dashboard.radio(key="unit_asked")
+    assert (asked.label, asked.options, asked.value) == (words.ONE_UNIT, ["Each row", "Each pot"], None)
+    assert list(asked.proto.captions) == ["48 values; 44 residual df", "12 values, the mean of its rows each; 8 residual df"]
+    dashboard.radio(key="unit_asked").set_value("pot").run()
+    assert opening.study_of(dashboard).unit == "pot"
+    assert dashboard.selectbox(key="role_unit").value == "pot"
 
 
 def test_the_question_of_the_unit_is_not_asked_without_one() -> None:
-    assert words.ONE_UNIT not in opening.page(opening.station("lay_out", opening.sample("coating_primer_cure.csv")))
+    with pytest.raises(KeyError):
+        opening.station("lay_out", opening.sample("coating_primer_cure.csv")).radio(key="unit_asked")
 
 
 def test_single_cells_are_named_in_words() -> None:
