@@ -29,6 +29,7 @@ class Suggestion:
 
     levels: tuple[Level, ...]
     into: Level  # the commonest
+    ways: tuple[str, ...]  # in which each of the levels differs from it: "case", "one letter", …
 
 
 def levels_of(study: Study, column: str) -> tuple[Level, ...]:
@@ -48,7 +49,12 @@ def suggestions(study: Study, column: str) -> tuple[Suggestion, ...]:
         if refused.get(rarer) != into:
             groups.setdefault(into, []).append(rarer)
     levels = {level.name: level for level in levels_of(study, column)} if groups else {}
-    return tuple(Suggestion(tuple(levels[name] for name in names), levels[into]) for into, names in groups.items())
+    return tuple(Suggestion(tuple(levels[name] for name in names), levels[into], _ways(names, into)) for into, names in groups.items())
+
+
+def _ways(names: Sequence[str], into: str) -> tuple[str, ...]:
+    """Return in what each spelling differs from the one that stays; one that is like another spelling differs in several letters."""
+    return tuple(look_alikes.difference(name, into) or "a few letters" for name in names)
 
 
 def merge_notes(study: Study, column: str) -> frozenset[str]:

@@ -240,6 +240,11 @@ def held(key: str) -> Any:
     return st.session_state[key]
 
 
+def fill(key: str, text: str) -> None:
+    """Put text into a field, as if it had been typed there."""
+    st.session_state[key] = text
+
+
 def bind_typed(make: Callable[..., Mapping[str, Any]], *keys: str) -> dict[str, Any]:
     """Tie a button to the edit that it makes of what was typed; what was typed is gone once it was taken."""
     return {"on_click": lambda: _take_typed(make, keys)}

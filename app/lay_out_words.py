@@ -1,6 +1,6 @@
 """The words of Lay out: what the layout is, which cells need a word, what the levels are asked about, and the account of the rows."""
 
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from typing import Any
 
 import numpy as np
@@ -10,6 +10,7 @@ from analysis.amounts import Question
 from analysis.counted import Account
 from analysis.level_edits import Suggestion
 from analysis.naming import listed
+from analysis.refusals import rows_told
 from analysis.rounding import fixed
 from analysis.unit_question import UnitAnswer
 from app import words
@@ -20,6 +21,7 @@ AMOUNTS_MEAN: Mapping[bool, str] = {
     True: "As amounts, they keep their true spacing along the axis, and Compare asks how the response follows them.",
     False: "As groups, they stand side by side at equal distances, and no trend is computed.",
 }
+LOOK = "Each of these stays in the analysis until you set it aside, with a reason."
 COUNTED = "Counted are rows that are analysed; behind a level that is left out, the rows that it would bring."
 
 
@@ -50,7 +52,8 @@ def unit_told(answer: UnitAnswer) -> str:
 def levels_alike(column: str, offer: Suggestion) -> str:
     """Return which levels of a column may be one, each with its analysed rows."""
     told = [f"“{level.name}” ({words.counted(level.rows, 'row')})" for level in (*offer.levels, offer.into)]
-    return f"{column}: {'is' if len(told) == 2 else 'are'} {listed(told[:-1])} the same as {told[-1]}?"
+    ways = listed(list(dict.fromkeys(offer.ways)))
+    return f"{column}: {'is' if len(told) == 2 else 'are'} {listed(told[:-1])} the same as {told[-1]}? They differ only in {ways}."
 
 
 def layout(design: Mapping[str, Any]) -> str:
@@ -96,6 +99,16 @@ def _named(design: Mapping[str, Any], where: NDArray[np.bool_]) -> str:
     """Return cells by their levels, the first few in full."""
     found = [f"{design['row_levels'][i]} with {design['column_levels'][j]}" for i, j in np.argwhere(where)]
     return "; ".join(found[:NAMED]) + (f"; and {len(found) - NAMED} more" if len(found) > NAMED else "")
+
+
+def rows_head(odd: int) -> str:
+    """Return what is behind the rows, and whether any of their values is worth a look."""
+    return "Rows: look through them, set some aside" + (f" ({words.counted(odd, 'value')} worth a look)" if odd else "")
+
+
+def take_up(rows: Sequence[int]) -> str:
+    """Return what names the rows of an odd value in the field for rows to set aside."""
+    return f"Name {rows_told(rows)} below"
 
 
 def reckoning(account: Account) -> str:

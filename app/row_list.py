@@ -6,8 +6,9 @@ from typing import Any
 import streamlit as st
 
 from analysis import row_edits
+from analysis.implausible import Suspicion
 from analysis.study import ROLES, Study
-from app import desk, paper, sheets, words
+from app import desk, lay_out_words, paper, sheets, words
 
 STRETCH = 200  # rows shown at a time
 HEIGHT = 280  # px of the rows; the rest scrolls
@@ -16,13 +17,23 @@ HEIGHT = 280  # px of the rows; the rest scrolls
 def show(study: Study, left_out: Sequence[Mapping[str, Any]]) -> None:
     """Show what is worth a look, and the rows with those that take no part struck through."""
     odd = desk.worth_a_look()
-    if odd:
-        with st.expander(words.worth_a_look(len(odd)), key="odd_values"):
-            st.html(paper.bullets(suspicion.sentence for suspicion in odd))
-            st.html(paper.caption(words.LOOK_HEAD))
-    with st.expander(words.ROWS_HEAD, key="rows"):
+    with st.expander(lay_out_words.rows_head(len(odd)), key="rows"):
+        _odd(odd)
         _set_aside(study)
         _rows(study, {int(entry["row"]): str(entry["why"]) for entry in left_out})
+
+
+def _odd(odd: Sequence[Suspicion]) -> None:
+    """Show what is worth a look, each with a way to name its rows in the field below; nothing is set aside by it."""
+    for place, suspicion in enumerate(odd):
+        with st.container(horizontal=True, vertical_alignment="center", key=f"odd_{place}"):
+            st.html(paper.offer(suspicion.sentence), width="content")
+            st.button(
+                lay_out_words.take_up(suspicion.rows), key=f"odd_take_{place}", type="tertiary",
+                on_click=desk.fill, args=("rows_named", ", ".join(str(row) for row in suspicion.rows)),
+            )  # fmt: skip
+    if odd:
+        st.html(paper.caption(lay_out_words.LOOK))
 
 
 def _set_aside(study: Study) -> None:

@@ -9,6 +9,7 @@ import pandas as pd
 from analysis.findings import Findings
 from analysis.log import Entry
 from analysis.rounding import NOT_KNOWN, fixed, measured, p_number, percent, significant
+from analysis.understood import FirstRows
 from app import checks_told, original, records, tabled, words
 from app.paper import Sheet
 
@@ -139,7 +140,8 @@ def decisions(entries: Sequence[Entry]) -> Sheet:
     return Sheet("Decisions so far", ("step", "decision", "reason"), lines, frozenset({0, 1, 2}))
 
 
-def preview(frame: pd.DataFrame) -> Sheet:
-    """Return the first rows as they were read, each with its number in the file."""
-    rows = [(str(number), *row) for number, row in zip(frame.index, frame.itertuples(index=False), strict=True)]
-    return Sheet("First rows as read", ("row", *(str(name) for name in frame.columns)), rows, frozenset(range(len(frame.columns) + 1)))
+def preview(first: FirstRows) -> Sheet:
+    """Return the first rows as they were understood, each with its number in the file."""
+    rows = [(str(number), *cells) for number, cells in first.rows]
+    words_in = frozenset({0, *(place for place, are_numbers in enumerate(first.numbers, start=1) if not are_numbers)})
+    return Sheet("First rows as understood", ("row", *first.columns), rows, words_in)

@@ -56,8 +56,6 @@ MERGE, KEEP_APART, LEAVE_OUT, TAKE_BACK = "Merge", "Keep apart", "Leave out", "T
 ROWS, WHY, SET_ASIDE, ASIDE = "Rows of the file", "Why they do not belong to the experiment", "Set aside", "Set aside now"
 ROWS_EXAMPLE, WHY_EXAMPLE = "12, 15-18", "pot fell over on day 3"
 ASIDE_HELP = "Take a row out of this list to put it back into the analysis."
-ROWS_HEAD = "Rows: look through them, set some aside"
-LOOK_HEAD = "Each of these stays in the analysis until you set it aside."
 ONE_UNIT = "What is one independent unit?"
 CONTROL, CONTROL_FIRST = "Control level", "the first level"
 CONTROL_HELP = "The level that the others are compared with, where Compare adjusts by Dunnett."
@@ -266,11 +264,6 @@ def row_aside(row: int, why: str) -> str:
 def decisions_head(count: int) -> str:
     """Return what is behind the log."""
     return f"{counted(count, 'decision')} so far, in order"
-
-
-def worth_a_look(count: int) -> str:
-    """Return how many values deserve a second look."""
-    return f"{counted(count, 'value')} worth a look"
 
 
 def rows_shown(shown: int, rows: int, columns: int) -> str:

@@ -2,7 +2,7 @@
 
 import streamlit as st
 
-from analysis import counted
+from analysis import counted, understood
 from analysis.study import Study
 from analysis.table import Decision, Table
 from app import bring_words, bringing, desk, keeping, lay_out_words, paper, samples, sheets, stage, words
@@ -58,18 +58,18 @@ def _what_was_read(study: Study) -> None:
     """Show the file as it stands beside what was understood, the decisions with their alternatives, and where each row went."""
     table = study.table
     st.html(paper.question(f"{table.name}, as read", words.rows_shown(min(FIRST_ROWS, table.rows), table.rows, len(table.columns))))
-    _side_by_side(table)
+    _side_by_side(study)
     stage.complaint(desk.READING)
     _decisions(table)
     _reckoning(study)
 
 
-def _side_by_side(table: Table) -> None:
-    preview = paper.table(sheets.preview(table.preview(FIRST_ROWS)))
+def _side_by_side(study: Study) -> None:
+    table, preview = study.table, paper.table(sheets.preview(understood.first_rows(study, FIRST_ROWS)))
     if table.raw:
-        raw, understood = st.columns([6, 7], gap="medium")
-        raw.html(paper.caption(bring_words.AS_IT_STANDS) + paper.lines([(line.row, line.text) for line in table.raw]))
-        understood.html(paper.caption(bring_words.AS_UNDERSTOOD) + preview)
+        left, right = st.columns([6, 7], gap="medium")
+        left.html(paper.caption(bring_words.AS_IT_STANDS) + paper.lines([(line.row, line.text) for line in table.raw]))
+        right.html(paper.caption(bring_words.AS_UNDERSTOOD) + preview)
     else:
         st.html(preview)
 

@@ -23,7 +23,7 @@ def test_a_merge_is_offered_and_taken(misspelt: Study) -> None:
     dashboard = opening.station("lay_out", misspelt)
     assert "look-alikes taken for one" in opening.page(dashboard)
     assert "merge them if they are one" not in opening.page(dashboard)
-    assert html.escape("is “no feed” (3 rows) the same as “No feed” (15 rows)?") in opening.page(dashboard)
+    assert html.escape("is “no feed” (3 rows) the same as “No feed” (15 rows)? They differ only in case.") in opening.page(dashboard)
     dashboard.button(key="column_merge_0").click().run()
     assert opening.study_of(dashboard).relabel == {"feed": {"no feed": "No feed"}}
     assert "the same as" not in opening.page(dashboard)
@@ -121,6 +121,9 @@ def test_a_slip_is_offered_for_a_look() -> None:
     dashboard = opening.station("lay_out", study)
     page = opening.page(dashboard)
     assert "Row 2: 269, while the others of Full sun with No feed lie between" in page
+    dashboard.button(key="odd_take_0").click().run()
+    assert dashboard.text_input(key="rows_named").value == "2"
+    assert opening.study_of(dashboard) is study
     assert "72 rows in the file: 72 analysed, 0 set aside, 0 unusable." in page
 
 
