@@ -1,9 +1,10 @@
 """Which rows are set aside: row numbers as a person writes them, and what setting aside or putting back makes of a study."""
 
 import re
-from collections.abc import Iterable, Mapping
+from collections.abc import Iterable, Mapping, Sequence
 from typing import Any
 
+from analysis import understood
 from analysis.refusals import UnknownRow
 from analysis.study import Study
 from analysis.table import Table
@@ -42,10 +43,17 @@ def only_aside(study: Study, rows: Iterable[int]) -> Changes:
     return {"set_aside": {row: why for row, why in study.set_aside.items() if row in kept}}
 
 
-def with_levels(study: Study, columns: Iterable[str], start: int, stop: int) -> list[list[str]]:
-    """Return the cells of some columns over table rows `start` to `stop`, levels under their names of now."""
-    told = [[study.relabel.get(column, {}).get(cell, cell) for cell in study.table.column(column).text(start, stop)] for column in columns]
+def with_levels(study: Study, columns: Sequence[str], start: int, stop: int) -> list[list[str]]:
+    """Return the cells of some columns over table rows `start` to `stop`, levels under their names of now, anything else as written."""
+    told = [_told(study, column, start, stop) for column in columns]
     return [list(row) for row in zip(*told, strict=True)]
+
+
+def _told(study: Study, column: str, start: int, stop: int) -> list[str]:
+    read, names = study.table.column(column), study.relabel.get(column, {})
+    if column == study.response:
+        return read.text(start, stop)
+    return [names.get(level, level) for level in understood.level_cells(read, start, stop)]
 
 
 def stretches(table: Table, size: int) -> list[tuple[int, int]]:

@@ -26,10 +26,19 @@ def first_rows(study: Study, count: int) -> FirstRows:
     table = study.table
     all_read = table.rows * len(table.columns) <= MOST_CELLS
     levels = (study.row_factor, study.column_factor, study.block, study.unit)
-    shown = [_cells(c, count, c.name == study.response or (all_read and c.name not in levels)) for c in table.columns]
+    shown = [
+        (level_cells(c, 0, count), False) if c.name in levels else _cells(c, count, all_read or c.name == study.response)
+        for c in table.columns
+    ]
     lines = zip(*(cells for cells, _ in shown), strict=True)
     rows = tuple((int(row), cells) for row, cells in zip(table.file_rows[:count], lines, strict=True))
     return FirstRows(table.names, tuple(are_numbers for _, are_numbers in shown), rows)
+
+
+def level_cells(column: Column, start: int, stop: int) -> list[str]:
+    """Return the level of some rows of a column, which is there also where the file leaves it to the row above."""
+    levels = column.as_levels()
+    return [levels.labels[code] if code >= 0 else "" for code in levels.codes[start:stop]]
 
 
 def _cells(column: Column, count: int, is_read: bool) -> tuple[list[str], bool]:

@@ -37,6 +37,11 @@ def earlier(one: Earlier) -> str:
     return f"{one.name}{factors}, {_ago(one.when)}"
 
 
+def more_earlier(count: int) -> str:
+    """Return what is behind the studies that are offered at once."""
+    return f"{fixed(count, 0)} more"
+
+
 def _ago(when: float) -> str:
     ago = keeping.ago(when)
     for unit, singular in (("days", "day"), ("hours", "hour"), ("minutes", "minute")):

@@ -6,10 +6,11 @@ from analysis import counted, understood
 from analysis.study import Study
 from analysis.table import Decision, Table
 from app import bring_words, bringing, desk, keeping, lay_out_words, paper, samples, sheets, stage, words
+from app.keeping import Earlier
 
 FILES = ["csv", "tsv", "txt", "xlsx", "xls", "ods", "parquet", "crossgrain"]
 FIRST_ROWS = 8
-KEPT_SHOWN = 6  # earlier studies offered at once
+KEPT_SHOWN = 4  # earlier studies offered at once; the others are a click away
 
 
 def show() -> None:
@@ -41,17 +42,22 @@ def _earlier() -> None:
     found = [one for one in keeping.earlier() if now is None or one.place != now.place]
     if not found:
         return
-    st.html(paper.question(bring_words.EARLIER))
     with st.container(gap=None, key="earlier"):
+        st.html(paper.question(bring_words.EARLIER))
         for one in found[:KEPT_SHOWN]:
-            with st.container(horizontal=True, vertical_alignment="center", gap="small", key=f"earlier_{one.place}"):
-                st.html(paper.text(bring_words.earlier(one)), width="stretch")
-                st.button(
-                    bring_words.OPEN_AGAIN, key=f"earlier_open_{one.place}", type="tertiary", on_click=bringing.come_back, args=(one.place,)
-                )
-                st.button(
-                    bring_words.FORGET, key=f"earlier_forget_{one.place}", type="tertiary", on_click=keeping.forget, args=(one.place,)
-                )
+            _kept(one)
+        if found[KEPT_SHOWN:]:
+            with st.expander(bring_words.more_earlier(len(found) - KEPT_SHOWN), key="earlier_more"):
+                for one in found[KEPT_SHOWN:]:
+                    _kept(one)
+
+
+def _kept(one: Earlier) -> None:
+    """Offer one study, to be opened again or forgotten."""
+    with st.container(horizontal=True, vertical_alignment="center", gap="small", key=f"earlier_{one.place}"):
+        st.html(paper.text(bring_words.earlier(one)), width="stretch")
+        st.button(bring_words.OPEN_AGAIN, key=f"reopen_{one.place}", type="tertiary", on_click=bringing.come_back, args=(one.place,))
+        st.button(bring_words.FORGET, key=f"forget_{one.place}", type="tertiary", on_click=keeping.forget, args=(one.place,))
 
 
 def _what_was_read(study: Study) -> None:

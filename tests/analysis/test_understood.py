@@ -4,6 +4,7 @@ import pandas as pd
 import pytest
 
 import analysis
+from analysis import row_edits
 from analysis.reading.choices import Reading
 from analysis.study import Study
 from analysis.understood import MOST_CELLS, first_rows
@@ -37,3 +38,10 @@ def test_levels_stand_as_they_are_written() -> None:
     shown = first_rows(Study(analysis.read_table(TEXT.replace(b";1;", b";01;"), name="seeds.csv"), "seeds", "light", "feed"), 1)
     assert shown.numbers == (False, False, True)
     assert shown.rows[0][1][1] == "01"
+
+
+def test_a_level_left_to_the_row_above_is_shown() -> None:
+    text = b"light;feed;seeds\nsun;a;1.5\n;b;2.5\nshade;a;3.5\n;b;1.2\n"
+    study = Study(analysis.read_table(text, name="seeds.csv"), "seeds", "light", "feed")
+    assert [cells[0] for _, cells in first_rows(study, 4).rows] == ["sun", "sun", "shade", "shade"]
+    assert row_edits.with_levels(study, ["seeds", "light"], 1, 3) == [["2.5", "sun"], ["3.5", "shade"]]

@@ -143,10 +143,10 @@ def test_earlier_studies_are_offered_opened_and_forgotten() -> None:
     dashboard = opening.station("bring")
     page = opening.page(dashboard)
     assert "pots.csv, light by feed, just now" in page
-    dashboard.button(key=f"earlier_open_{place}").click().run()
+    dashboard.button(key=f"reopen_{place}").click().run()
     assert opening.study_of(dashboard).fingerprint == opening.study_of(first).fingerprint
     other = opening.station("bring")
-    other.button(key=f"earlier_forget_{place}").click().run()
+    other.button(key=f"forget_{place}").click().run()
     assert "pots.csv" not in opening.page(other)
     assert keeping.earlier() == ()
 
@@ -197,3 +197,14 @@ def test_two_windows_on_one_study_lose_nothing_to_each_other() -> None:
     assert place_of(first) != place
     assert keeping.kept(place).study.fingerprint == opening.study_of(second).fingerprint
     assert keeping.kept(place_of(first)).study.fingerprint == opening.study_of(first).fingerprint
+
+
+def test_every_study_that_is_kept_can_be_opened() -> None:
+    for k in range(6):
+        dropped(MESSY.replace("10,0", f"1{k},5").encode(), f"pots {k}.csv")
+    dashboard = opening.station("bring")
+    assert [expander.label for expander in dashboard.expander] == ["2 more"]
+    press_open = [button for button in dashboard.button if button.label == bring_words.OPEN_AGAIN]
+    assert len(press_open) == 6
+    press_open[-1].click().run()
+    assert opening.study_of(dashboard).table.name == "pots 0.csv"
