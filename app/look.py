@@ -1,7 +1,7 @@
 """How everything is drawn: the palette, markers and dashes of levels, and the four looks of a figure."""
 
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Any
 
 # Checked in the tests under simulated colour-vision deficiencies; marker and dash tell levels apart where hue cannot.
@@ -123,6 +123,14 @@ PRINT = Look(
     "print", text=11, small=10, line=1.4, marker=7, point=4, height=420, width=692, paper="#FFFFFF", rule="#E4E0D5", inks=DEEP_INKS,
     font='Arial, "Liberation Sans", Helvetica, sans-serif',
 )  # fmt: skip  # 692 px are 183 mm at 96 px to the inch
+
+
+AT_NIGHT = ("paper", "panel", "ink", "quiet", "rule", "accent", "hues", "inks", "shades")
+
+
+def at_night(look: Look) -> Look:
+    """Return a look in the colours of the dark theme."""
+    return replace(look, **{name: getattr(NIGHT, name) for name in AT_NIGHT})
 
 
 def shade(shades: tuple[str, ...], share: float) -> str:

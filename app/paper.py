@@ -1,6 +1,7 @@
 """How sentences and tables are set on the page: small pieces of HTML in which every name is inert text."""
 
 import html
+import re
 from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass
 from types import MappingProxyType
@@ -87,15 +88,31 @@ def empty(steps: Sequence[str]) -> str:
     return f"<ol class='road'>{told}</ol>"
 
 
-def story(boards: Iterable[tuple[str, str]]) -> str:
-    """Return the claims of a story in order, each with its line of evidence."""
-    told = "".join(f"<li><b>{safe(claim)}</b><span>{safe(evidence)}</span></li>" for claim, evidence in boards)
-    return f"<ol class='story'>{told}</ol>"
+def claim(sentence: str, size: str = "") -> str:
+    """Return the claim of a board that fills the window; a long one is set smaller."""
+    return f"<h1 class='claim {size}'>{safe(sentence)}</h1>"
 
 
-def claim(sentence: str) -> str:
-    """Return the claim of a board that fills the window."""
-    return f"<h1 class='claim'>{safe(sentence)}</h1>"
+def told(place: int, claim: str, evidence: str, dropped: bool = False) -> str:
+    """Return one board of the story as it stands in the list: its number, claim and evidence."""
+    number = "–" if dropped else str(place)
+    return f"<div class='told{' dropped' if dropped else ''}'><i>{number}</i><p><b>{safe(claim)}</b><span>{safe(evidence)}</span></p></div>"
+
+
+def speaker(head: str, claim: str, evidence: str, notes: str, after: Sequence[str]) -> str:
+    """Return what the speaker sees: the board's claim, its notes as they are broken into lines, and what comes next."""
+    later = "".join(f"<p class='after'>{safe(sentence)}</p>" for sentence in after)
+    shown = f"<p class='place'>{safe(head)}</p><h1>{safe(claim)}</h1><p class='shown'>{safe(evidence)}</p>"
+    told = f"{shown}<div class='notes'>{safe(notes)}</div>"
+    return f"<section class='speaker' tabindex='0'>{told}{later}</section>"
+
+
+NUMBER = re.compile(r"empty|–|(< )?[−\d][−\d\s.,]*( \([−\d\s.,]+ to [−\d\s.,]+\))?( ≠)?")
+
+
+def is_number(text: str) -> bool:
+    """Return whether a text reads as a number, with or without an interval."""
+    return bool(NUMBER.fullmatch(text))
 
 
 def evidence(line: str, place: str) -> str:

@@ -1,13 +1,13 @@
 """What is said beside a board: its line of evidence and the speaker notes with model, numbers, method and caveats."""
 
-from collections.abc import Iterable, Sequence
+from collections.abc import Iterable
 
 import pandas as pd
 
 from analysis import rounding
 from analysis.answers import Answer
 from analysis.findings import Findings
-from app import tabled, words
+from app import records, tabled, words
 
 CAUTION = "Where a result may bear on someone's health or safety, a qualified person reviews it first and local rules come first."
 COMPARISONS_TOLD = 60  # comparisons that the notes tell one by one
@@ -24,15 +24,20 @@ def design_line(findings: Findings) -> str:
     """Tell the size of the experiment in one line."""
     design = findings.design
     rows, columns = len(design["row_levels"]), len(design["column_levels"])
-    left_out = len(design["left_out"])
     parts = [
         f"{design['response']}: {len(findings.observations)} {words.units_word(findings)}",
         f"{rows} × {columns} combinations, {words.n_per_cell(findings)}",
         f"blocks: {design['block']}" if design["block"] else "",
         f"empty: {', '.join(words.cell_name(cell) for cell in design['empty_cells'])}" if design["empty_cells"] else "",
-        f"{left_out} {'row' if left_out == 1 else 'rows'} left out" if left_out else "",
+        left_out_line(findings) if design["left_out"] else "",
     ]
     return " · ".join(part for part in parts if part)
+
+
+def left_out_line(findings: Findings) -> str:
+    """Tell how many rows are left out."""
+    left_out = len(findings.design["left_out"])
+    return f"{words.counted(left_out, 'row')} left out" if left_out else "no row left out"
 
 
 def design_notes(findings: Findings) -> list[str]:
@@ -103,22 +108,24 @@ def caveats(findings: Findings) -> list[str]:
     return [*findings.doubts["sentence"], *findings.notes]
 
 
-def family_line(findings: Findings, families: Sequence[str]) -> str:
-    """Tell which families are shown, their size and how they are adjusted."""
-    frames = [findings.comparisons[name] for name in families]
-    if not any(frame is not None and len(frame) for frame in frames):
+def family_size(findings: Findings, family: str) -> str:
+    """Tell how many comparisons a family holds and how they are adjusted."""
+    if records.family(findings, family).empty:
         return tabled.NOTHING_TO_COMPARE
-    names = "; ".join(f"{words.family(name, findings.study.factors)} ({words.family_size(findings, name)})" for name in families)
-    return f"adjusted: {words.adjusted_by(findings)} · {names}"
+    return f"{words.family_size(findings, family)}, adjusted: {words.adjusted_by(findings)}"
 
 
-def family_notes(findings: Findings, families: Sequence[str], told: pd.DataFrame) -> list[str]:
-    """Tell the comparisons of the families in full, the largest first."""
+def family_notes(findings: Findings, told: pd.DataFrame) -> list[str]:
+    """Tell comparisons in full, the largest first."""
     if told.empty:
         return [tabled.NOTHING_TO_COMPARE]
-    place, _, head, *_ = told.columns
+    head = tabled.difference_head(findings)
+    place = [name for name in told.columns if name in ("factor", "within")]
     shown = told.head(COMPARISONS_TOLD)
-    lines = [f"{row[place]}: {row['compared']}: {head} {row[head]}, p {row['p adjusted']}, {row['reading']}" for _, row in shown.iterrows()]
+    lines = [
+        f"{''.join(f'{row[name]}: ' for name in place)}{row['compared']}: {head} {row[head]}, p {row['p adjusted']}, {row['reading']}"
+        for _, row in shown.iterrows()
+    ]
     rest = [f"{len(told) - len(shown)} more stand in the workbook."] if len(told) > len(shown) else []
     bounds = ["The intervals are Bonferroni's, since Holm has none of its own."] if findings.study.adjust == "holm" else []
-    return [family_line(findings, families), *bounds, *lines, *rest]
+    return [*bounds, *lines, *rest]

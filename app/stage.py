@@ -1,7 +1,8 @@
 """What all stations share: the open findings or the sentence that stands in their place, figures with caption and description."""
 
-from collections.abc import Callable
+from collections.abc import Callable, Mapping
 from dataclasses import dataclass
+from typing import Any
 
 import plotly.graph_objects as go
 import streamlit as st
@@ -78,8 +79,12 @@ def show(drawn: Picture, key: str) -> None:
     figure(drawn.figure, key, drawn.caption, drawn.alt)
 
 
-def figure(drawn: go.Figure, key: str, caption: str, alt: str, camera: bool = False) -> None:
-    """Show a figure with its description for screen readers and its caption beneath; with a camera it can be saved from where it stands."""
-    st.plotly_chart(drawn, key=key, theme=None, width="stretch", config=WITH_CAMERA if camera else PLAIN, alt=alt)
+def figure(drawn: go.Figure, key: str, caption: str, alt: str, camera: Mapping[str, Any] | None = None) -> None:
+    """Show a figure with its description for screen readers and its caption beneath.
+
+    With a camera, told its format, size and resolution, the figure can be saved from where it stands in any browser.
+    """
+    config = PLAIN if camera is None else {**WITH_CAMERA, "toImageButtonOptions": dict(camera)}
+    st.plotly_chart(drawn, key=key, theme=None, width="stretch" if camera is None else "content", config=config, alt=alt)
     if caption:
         st.html(paper.caption(caption))

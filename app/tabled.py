@@ -41,6 +41,15 @@ def numbers(findings: Findings) -> str:
     return f"{words.n_per_cell(findings)}, n = {len(findings.observations)} in all"
 
 
+def aloud(table: pd.DataFrame) -> str:
+    """Read a table out, one line after another."""
+    heads = [str(name) for name in table.columns]
+    return "; ".join(
+        ", ".join(f"{head} {value}" for head, value in zip(heads, row, strict=True) if str(value))
+        for row in table.itertuples(index=False, name=None)
+    )
+
+
 def read_cells(findings: Findings) -> Iterator[str]:
     """Read out the estimate of every cell with its interval, one line each."""
     for cell in findings.cells.itertuples():
@@ -82,19 +91,22 @@ def by_size(findings: Findings, families: Sequence[str]) -> pd.DataFrame:
     found = [(name, findings.comparisons[name]) for name in families]
     frames = [frame.assign(family=name) for name, frame in found if frame is not None]
     together = pd.concat(frames, ignore_index=True) if frames else pd.DataFrame(columns=["difference"])
-    known = together[together["difference"].notna()]
-    order = known["difference"].abs().sort_values(ascending=False, kind="stable").index
-    return known.loc[order]
+    return largest_first(together)
 
 
 def comparisons(findings: Findings, families: Sequence[str]) -> pd.DataFrame:
-    """Return every comparison of some families as told, the largest differences first."""
+    """Return every comparison of some families as told, the largest differences first, with the slice or factor that it stands in."""
     frame = by_size(findings, families)
-    sides = len(findings.study.factors) if families and families[0] in findings.study.factors else 0
-    place = "factor" if sides else "within"
+    averaged = bool(families) and families[0] in findings.study.factors
+    told = compared(findings, frame)
+    told.insert(0, "factor" if averaged else "within", [c.family if averaged else c.within for c in frame.itertuples()])
+    return told
+
+
+def compared(findings: Findings, frame: pd.DataFrame) -> pd.DataFrame:
+    """Return lines of a family as told: what is compared, the difference or ratio with its interval, p, and the reading."""
     return pd.DataFrame(
         {
-            place: [c.family if sides else c.within for c in frame.itertuples()],
             "compared": [pair(c.left, c.right, findings.observed.scale.tells_ratios) for c in frame.itertuples()],
             difference_head(findings): [size(c) for c in frame.itertuples()],
             "p adjusted": [rounding.p_number(p) for p in frame.get("p_adjusted", ())],
@@ -127,10 +139,20 @@ def size(comparison: Any) -> str:
     return words.with_interval(c.difference, c.lower_adjusted, c.upper_adjusted, c.se)
 
 
+def largest_first(frame: pd.DataFrame) -> pd.DataFrame:
+    """Return the lines of a family that can be estimated, the largest differences first."""
+    known = frame[frame["difference"].notna()]
+    return known.loc[known["difference"].abs().sort_values(ascending=False, kind="stable").index]
+
+
 def comparisons_alt(findings: Findings, told: pd.DataFrame) -> str:
     """Read out what the table of comparisons holds and its three largest differences."""
     if told.empty:
         return f"No comparisons on {factors_with_levels(findings)}; {numbers(findings)}. {NOTHING_TO_COMPARE}"
-    place, _, head, *_ = told.columns
-    largest = "; ".join(f"{row[place]}, {row['compared']}: {row[head]}, {row['reading']}" for _, row in told.head(3).iterrows())
-    return f"Table of {len(told)} comparisons on {factors_with_levels(findings)}; {numbers(findings)}. Largest {head}: {largest}."
+    head = difference_head(findings)
+    place = [str(name) for name in told.columns[: told.columns.get_loc("compared")]]
+    lines = (
+        ", ".join([*(str(row[name]) for name in place), str(row["compared"])]) + f": {row[head]}, {row['reading']}"
+        for _, row in told.head(3).iterrows()
+    )
+    return f"Table of {len(told)} comparisons on {factors_with_levels(findings)}; {numbers(findings)}. Largest {head}: {'; '.join(lines)}."

@@ -1,19 +1,20 @@
 """What can be taken away from a study: each file's name, what it holds, and how it is built when it is asked for."""
 
-import io
 import re
-import zipfile
-from collections.abc import Callable
-from dataclasses import dataclass
+from collections.abc import Callable, Sequence
+from dataclasses import dataclass, field
 
+from analysis import log
 from analysis.findings import Findings
-from app import boards
-from app.exports import csv_files, deck, images, script, sheets, workbook
-from app.figures import grid, interaction
-from app.look import PRINT
+from app import report
+from app.board import Board
+from app.exports import csv_files, deck, figure_files, report_page, report_text, script, sheets, workbook
+from app.exports.figure_files import Wanted
 
 DECK = "application/vnd.openxmlformats-officedocument.presentationml.presentation"
+DOCUMENT = "application/vnd.openxmlformats-officedocument.wordprocessingml.document"
 WORKBOOK = "application/vnd.openxmlformats-officedocument.spreadsheetml.sheet"
+ZIP = "application/zip"
 
 
 @dataclass(frozen=True)
@@ -28,33 +29,86 @@ class Parcel:
     make: Callable[[], bytes]
 
 
-def parcels(findings: Findings) -> tuple[Parcel, ...]:
-    """Return the files that a study can be taken away as."""
+@dataclass(frozen=True)
+class Manner:
+    """How the files are wanted."""
+
+    figures: Wanted = field(default_factory=Wanted)
+    dark: bool = False
+    template: bytes | None = None  # a presentation of the user's own to write the slides on
+
+
+def parcels(
+    findings: Findings, told: Sequence[Board], decisions: Sequence[log.Entry] = (), manner: Manner | None = None
+) -> tuple[Parcel, ...]:
+    """Return the files that a study can be taken away as: its story, its numbers, and the way to compute them again."""
     name = re.sub(r"[^\w-]+", "-", f"{findings.study.response}").strip("-").lower() or "crossgrain"
+    return (
+        *_story(findings, told, name, manner or Manner()),
+        *_report(findings, told, decisions, name),
+        *_numbers(findings, decisions, name),
+    )
+
+
+def _story(findings: Findings, told: Sequence[Board], name: str, manner: Manner) -> tuple[Parcel, ...]:
     return (
         Parcel(
             "save_deck",
             "Save the slides",
-            "Four slides with native charts and tables: the question, the interaction, the answers, the comparisons; notes under each.",
+            "A slide for each board of the story, with charts and tables that stay editable, notes under each.",
             f"{name}.pptx",
             DECK,
-            lambda: deck.build(boards.story(findings), findings),
+            lambda: deck.build(told, findings, manner.dark, manner.template),
         ),
+        Parcel(
+            "save_figures",
+            "Save the figures",
+            "Every figure of the story and the grid as PNG, TIFF, SVG and PDF, with captions, in the width and type chosen.",
+            f"{name}-figures.zip",
+            ZIP,
+            lambda: figure_files.build(told, findings, manner.figures),
+        ),
+    )
+
+
+def _report(findings: Findings, told: Sequence[Board], decisions: Sequence[log.Entry], name: str) -> tuple[Parcel, ...]:
+    return (
+        Parcel(
+            "save_report",
+            "Save the report",
+            "Methods and results as a document that covers a reporting list item by item, with marked blanks for what only you know.",
+            f"{name}-report.docx",
+            DOCUMENT,
+            lambda: report_text.build(report.title(findings), report.report(findings, told, decisions)),
+        ),
+        Parcel(
+            "save_report_page",
+            "Save it as a page",
+            "The same report as one page for any browser, with figures that can be pointed at, without a network.",
+            f"{name}-report.html",
+            "text/html",
+            lambda: report_page.build(report.title(findings), report.report(findings, told, decisions)),
+        ),
+    )
+
+
+def _numbers(findings: Findings, decisions: Sequence[log.Entry], name: str) -> tuple[Parcel, ...]:
+    return (
         Parcel(
             "save_workbook",
             "Save the workbook",
-            "Every table in full precision: cells, margins, analysis of variance, comparisons, rows left out.",
+            "Every table in full precision: data with the rows set aside, cells, analysis of variance, means, comparisons, checks, log.",
             f"{name}.xlsx",
             WORKBOOK,
-            lambda: workbook.build(findings),
+            lambda: workbook.build(findings, decisions),
         ),
         Parcel(
             "save_tables",
             "Save the tables",
             "The same tables as plain text, one .csv file each.",
             f"{name}-tables.zip",
-            "application/zip",
-            lambda: csv_files.archive(sheets.all_sheets(findings)),
+            ZIP,
+            lambda: csv_files.archive(sheets.all_sheets(findings, decisions)),
         ),
         Parcel(
             "save_script",
@@ -64,28 +118,4 @@ def parcels(findings: Findings) -> tuple[Parcel, ...]:
             "text/x-python",
             lambda: script.build(findings, f"{name}-recompute.py"),
         ),
-        Parcel(
-            "save_figures",
-            "Save the figures",
-            "The interaction figure and the grid for print, 183 mm wide: PNG at 300 dots per inch and SVG, with captions.",
-            f"{name}-figures.zip",
-            "application/zip",
-            lambda: figures(findings),
-        ),
     )
-
-
-def figures(findings: Findings) -> bytes:
-    """Return the figures as PNG and SVG, with their captions, in one archive; raises NoBrowser."""
-    drawn = {
-        "interaction": (interaction.interaction(findings, PRINT), interaction.interaction_caption(findings)),
-        "grid": (grid.grid(findings, PRINT), grid.grid_caption(findings)),
-    }
-    packed = io.BytesIO()
-    with zipfile.ZipFile(packed, "w", zipfile.ZIP_DEFLATED) as archive:
-        pictures = images.pngs_and_svgs([figure for figure, _ in drawn.values()])
-        for (name, (_, caption)), (png, svg) in zip(drawn.items(), pictures, strict=True):
-            archive.writestr(f"{name}.png", png)
-            archive.writestr(f"{name}.svg", svg)
-            archive.writestr(f"{name}.txt", caption + "\n")
-    return packed.getvalue()

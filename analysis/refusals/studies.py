@@ -208,6 +208,14 @@ class NoBrowser(Refusal):
         )
 
 
+class TemplateUnusable(Refusal):
+    """A presentation of the user's own that slides cannot be written on."""
+
+    def __init__(self, why: str) -> None:
+        self.why = why
+        super().__init__(f"The template cannot be used because {why}: choose another .pptx file, or take the slides without a template.")
+
+
 class ReasonMissing(Refusal):
     """A row set aside without a reason."""
 

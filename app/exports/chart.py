@@ -12,7 +12,7 @@ from pptx.util import Pt
 
 from analysis import rounding
 from app.exports import fit, series
-from app.exports.master import BODY, FACE, SMALLEST, Inks
+from app.exports.master import FACE, SMALLEST, Box, Inks
 from app.exports.plot import START, Plot
 
 _CHART = "http://schemas.openxmlformats.org/drawingml/2006/chart"
@@ -34,10 +34,10 @@ def add(placeholder: ChartPlaceholder, plot: Plot, inks: Inks) -> PlaceholderGra
 
 def _place_plot(chart: Chart, plot: Plot) -> None:
     """Keep the sides of the chart free for names and numbers."""
-    area = chart._chartSpace.chart.plotArea
+    area, wide, tall = chart._chartSpace.chart.plotArea, plot.body.wide, plot.body.tall
     for layout in area.findall(qn("c:layout")):
         area.remove(layout)
-    area.insert(0, _layout(plot.left / BODY.wide, plot.top / BODY.tall, plot.wide / BODY.wide, plot.tall / BODY.tall))
+    area.insert(0, _layout(plot.left / wide, plot.top / tall, plot.wide / wide, plot.tall / tall))
 
 
 def _layout(x: float, y: float, wide: float | None = None, tall: float | None = None) -> etree._Element:
@@ -61,16 +61,21 @@ def _draw_axes(chart: Chart, plot: Plot, inks: Inks) -> None:
         axis.format.line.fill.background()
     _cross(across, plot.axis.low)
     _cross(up, START)
-    response = fit.shorten(plot.response, SMALLEST, BODY.tall - plot.top)
+    response = fit.shorten(plot.response, SMALLEST, plot.body.tall - plot.top)
     from_top = plot.top + (plot.tall - min(fit.width(response, SMALLEST), plot.tall)) / 2
-    _title(up, response, inks, 0.0, from_top)
+    _title(up, response, inks, 0.0, from_top, plot.body)
     factor = fit.shorten(plot.column_factor, SMALLEST, plot.wide)
     from_left = plot.left + (plot.wide - fit.width(factor, SMALLEST)) / 2
-    _title(across, factor, inks, from_left, BODY.tall - fit.height(1, SMALLEST) - 0.05)
+    _title(across, factor, inks, from_left, plot.body.tall - fit.height(1, SMALLEST) - 0.05, plot.body)
 
 
 def _draw_scale(up: ValueAxis, plot: Plot, inks: Inks) -> None:
-    up.minimum_scale, up.maximum_scale, up.major_unit = plot.axis.low, plot.axis.high, plot.axis.step
+    up.minimum_scale, up.maximum_scale = plot.axis.low, plot.axis.high
+    if plot.axis.is_log:  # its numbers and rules are drawn by a series, since the program would name powers of ten alone
+        up._element.find(qn("c:scaling")).insert(0, parse_xml(f'<c:logBase xmlns:c="{_CHART}" val="10"/>'))
+        up.tick_label_position, up.has_major_gridlines = XL_TICK_LABEL_POSITION.NONE, False
+        return
+    up.major_unit = plot.axis.step
     up.has_major_gridlines = True
     up.major_gridlines.format.line.color.rgb = RGBColor.from_string(inks.rule)
     up.major_gridlines.format.line.width = Pt(1)
@@ -97,7 +102,7 @@ def _cross(axis: ValueAxis, at: float) -> None:
     element.find(qn("c:crossAx")).addnext(parse_xml(f'<c:crossesAt xmlns:c="{_CHART}" val="{at!r}"/>'))
 
 
-def _title(axis: ValueAxis, words: str, inks: Inks, from_left: float, from_top: float) -> None:
+def _title(axis: ValueAxis, words: str, inks: Inks, from_left: float, from_top: float, body: Box) -> None:
     """Write the title of an axis at a place of its own, in inches from the corner of the chart."""
     frame = axis.axis_title.text_frame
     frame.text = words
@@ -105,4 +110,4 @@ def _title(axis: ValueAxis, words: str, inks: Inks, from_left: float, from_top: 
     title = axis._element.find(qn("c:title"))
     for layout in title.findall(qn("c:layout")):
         title.remove(layout)
-    title.find(qn("c:tx")).addnext(_layout(max(0.0, from_left) / BODY.wide, max(0.0, from_top) / BODY.tall))
+    title.find(qn("c:tx")).addnext(_layout(max(0.0, from_left) / body.wide, max(0.0, from_top) / body.tall))

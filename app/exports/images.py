@@ -1,11 +1,13 @@
-"""Pictures of figures as files: PNG and SVG, drawn by an installed browser without touching the network."""
+"""Pictures of figures as files: PNG, TIFF, SVG and PDF, drawn by an installed browser without touching the network."""
 
 import asyncio
 import io
+import json
 import os
 from collections.abc import Sequence
 from concurrent.futures import ThreadPoolExecutor
 from dataclasses import dataclass
+from functools import lru_cache
 from pathlib import Path
 
 import kaleido
@@ -18,6 +20,9 @@ from analysis.refusals import NoBrowser
 WIDE, TALL = 1152, 648  # px, where the figure names no size of its own
 NOWHERE = "http://127.0.0.1:9"  # the discard port of this machine: whatever the browser asks of the network ends here
 PX_TO_THE_INCH = 96  # as browsers count them
+KEPT = 16  # sets of files that are kept, so that the same slides are built without the browser the second time
+
+Asked = tuple[str, tuple[tuple[str, str | float], ...]]
 
 
 @dataclass(frozen=True)
@@ -29,10 +34,11 @@ class Drawing:
     scale: float = 1.0
 
     @property
-    def options(self) -> dict[str, str | float]:
-        """Format and size as the renderer wants them."""
+    def asked(self) -> Asked:
+        """The figure as text, and format and size as the renderer wants them."""
         layout = self.figure.layout
-        return {"format": self.kind, "scale": self.scale, "width": layout.width or WIDE, "height": layout.height or TALL}
+        size = (("width", layout.width or WIDE), ("height", layout.height or TALL))
+        return str(self.figure.to_json()), (("format", self.kind), ("scale", self.scale), *size)
 
 
 def browser() -> str:
@@ -61,21 +67,49 @@ def pngs_and_svgs(figures: Sequence[go.Figure], dpi: int = 300) -> tuple[tuple[b
     return tuple((_tagged(png_file, dpi), svg_file) for png_file, svg_file in zip(files[::2], files[1::2], strict=True))
 
 
-def _tagged(png_file: bytes, dpi: int) -> bytes:
+def in_every_format(figures: Sequence[go.Figure], dpi: int, transparent: bool = False) -> tuple[dict[str, bytes], ...]:
+    """Return each figure as PNG, TIFF, SVG and PDF by the endings of these formats, all drawn by one start of the browser.
+
+    PNG and TIFF name their resolution; the TIFF is flat, without transparency, and packed by LZW. Raises NoBrowser.
+    """
+    kinds = (("png", dpi / PX_TO_THE_INCH), ("svg", 1.0), ("pdf", 1.0))
+    files = _drawn([Drawing(figure, kind, scale) for figure in figures for kind, scale in kinds])
+    return tuple(
+        {"png": _tagged(png_file, dpi, transparent), "tiff": _flat(png_file, dpi), "svg": svg_file, "pdf": pdf_file}
+        for png_file, svg_file, pdf_file in zip(files[::3], files[1::3], files[2::3], strict=True)
+    )
+
+
+def _tagged(png_file: bytes, dpi: int, transparent: bool = False) -> bytes:
     """Return a PNG that says how large it is meant to be: the renderer does not write its resolution."""
     tagged = io.BytesIO()
-    Image.open(io.BytesIO(png_file)).convert("RGB").save(tagged, "PNG", dpi=(dpi, dpi), optimize=True)
+    picture = Image.open(io.BytesIO(png_file))
+    (picture if transparent else picture.convert("RGB")).save(tagged, "PNG", dpi=(dpi, dpi))
     return tagged.getvalue()
 
 
+def _flat(png_file: bytes, dpi: int) -> bytes:
+    """Return a picture as TIFF in one layer on white."""
+    picture = Image.open(io.BytesIO(png_file)).convert("RGBA")
+    ground = Image.new("RGBA", picture.size, "white")
+    flat = io.BytesIO()
+    Image.alpha_composite(ground, picture).convert("RGB").save(flat, "TIFF", compression="tiff_lzw", dpi=(dpi, dpi))
+    return flat.getvalue()
+
+
 def _drawn(drawings: Sequence[Drawing]) -> list[bytes]:
-    """Draw figures in a thread of its own, since the caller's may already run a loop of events."""
-    path = browser()
+    """Draw figures, each once: what was drawn before is at hand."""
+    return list(_files(tuple(drawing.asked for drawing in drawings), browser()))
+
+
+@lru_cache(maxsize=KEPT)
+def _files(asked: tuple[Asked, ...], path: str) -> tuple[bytes, ...]:
+    """Draw in a thread of its own, since the caller's may already run a loop of events."""
     with ThreadPoolExecutor(1) as thread:
-        return thread.submit(asyncio.run, _draw(drawings, path)).result()
+        return thread.submit(asyncio.run, _draw(asked, path)).result()
 
 
-async def _draw(drawings: Sequence[Drawing], path: str) -> list[bytes]:
+async def _draw(asked: Sequence[Asked], path: str) -> tuple[bytes, ...]:
     # Neither formulas nor fonts come from elsewhere: no MathJax, and a proxy that leads nowhere.
     async with kaleido.Kaleido(path=path, mathjax=False, proxy_server=NOWHERE) as renderer:
-        return [await renderer.calc_fig(drawing.figure, drawing.options) for drawing in drawings]
+        return tuple([await renderer.calc_fig(json.loads(figure), dict(options)) for figure, options in asked])

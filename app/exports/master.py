@@ -7,6 +7,7 @@ from typing import Any
 
 from lxml import etree
 from pptx import Presentation
+from pptx.enum.shapes import PP_PLACEHOLDER
 from pptx.oxml import parse_xml
 from pptx.oxml.ns import qn
 from pptx.presentation import Presentation as Deck
@@ -50,7 +51,17 @@ CLAIM = Box(0.85, 0.45, 11.88, 1.2)
 BODY = Box(0.6, 1.85, 12.13, 4.35)
 EVIDENCE = Box(0.6, 6.3, 11.3, 0.8)
 NUMBER = Box(12.0, 6.85, 0.73, 0.4)
+CONTENTS = {"tbl": "table", "chart": "chart", "pic": "picture"}  # kinds of placeholders, as the file names them
 CONTENT, WORDS = 10, 11  # numbers of the placeholders for the table or chart, and for the evidence
+
+
+@dataclass(frozen=True)
+class Places:
+    """Where claim, content and evidence stand on a slide."""
+
+    claim: Box = CLAIM
+    body: Box = BODY
+    evidence: Box = EVIDENCE
 
 
 @dataclass(frozen=True)
@@ -109,7 +120,7 @@ def _text(words: str) -> str:
 
 
 def _furnish(layout: SlideLayout, name: str, content: str) -> None:
-    """Make a layout out of a claim, a table or chart, a line of evidence and a number."""
+    """Make a layout out of a claim, a table, chart or picture, a line of evidence and a number."""
     _clear(layout.shapes._spTree)
     layout.element.attrib.pop("type", None)
     layout.element.find(qn("p:cSld")).set("name", name)
@@ -137,19 +148,19 @@ def _furnish_master(deck: Deck) -> None:
     tree.append(_placeholder(4, "Slide number", 'type="sldNum" sz="quarter" idx="4"', NUMBER, _NUMBER, _FIELD))
 
 
-def empty_deck() -> tuple[Deck, SlideLayout, SlideLayout]:
-    """Return a presentation without slides, its layout for tables and its layout for charts."""
+def empty_deck() -> tuple[Deck, dict[str, SlideLayout]]:
+    """Return a presentation without slides, and its layouts by the placeholder that they hold: tbl, chart, pic."""
     deck = Presentation()
     deck.slide_width, deck.slide_height = Inches(SLIDE.wide), Inches(SLIDE.tall)
-    for_table, for_chart, *others = deck.slide_layouts
-    for layout in others:
+    layouts = dict(zip(CONTENTS, deck.slide_layouts, strict=False))
+    for layout in list(deck.slide_layouts)[len(layouts) :]:
         deck.slide_layouts.remove(layout)
     _drop(deck, deck.part, "/printerSettings")
     _drop(deck, deck.part.package, "/thumbnail")
     _furnish_master(deck)
-    _furnish(for_table, "Claim and table", "tbl")
-    _furnish(for_chart, "Claim and chart", "chart")
-    return deck, for_table, for_chart
+    for content, layout in layouts.items():
+        _furnish(layout, f"Claim and {CONTENTS[content]}", content)
+    return deck, layouts
 
 
 def _drop(deck: Deck, owner: Any, kind: str) -> None:
@@ -159,10 +170,14 @@ def _drop(deck: Deck, owner: Any, kind: str) -> None:
 
 
 def number(slide: Slide, layout: SlideLayout) -> None:
-    """Put the layout's slide number on a slide; new slides come without."""
-    shape = next(shape for shape in layout.placeholders if shape.placeholder_format.idx == 12)
+    """Put the layout's slide number on a slide, where it has one; new slides come without."""
+    shape = next((shape for shape in layout.placeholders if shape.placeholder_format.type == PP_PLACEHOLDER.SLIDE_NUMBER), None)
+    if shape is None:
+        return
     copied = parse_xml(etree.tostring(shape.element))
     copied.find(qn("p:nvSpPr")).find(qn("p:cNvPr")).set("id", str(max(shape.shape_id for shape in slide.shapes) + 1))
+    for run in copied.iter(qn("a:rPr")):
+        run.set("sz", str(SMALLEST * 100))
     slide.shapes._spTree.append(copied)
 
 
@@ -184,12 +199,18 @@ def _theme(old: bytes, inks: Inks) -> bytes:
     return re.sub(r'name="Office( Theme)?"', 'name="Crossgrain"', theme).encode("utf-8")
 
 
-def saved(deck: Deck, title: str, inks: Inks) -> bytes:
-    """Return the deck as a file, in our colours, named and undated."""
+def named(deck: Deck, title: str) -> bytes:
+    """Return the deck as a file with its title and nobody's name."""
     properties = deck.core_properties
     properties.title, properties.author, properties.comments, properties.last_modified_by = title, "", "", "Crossgrain"
     stream = io.BytesIO()
     deck.save(stream)
-    themes = [f"ppt/theme/theme{k}.xml" for k in (1, 2)]  # the slides' and the notes'
-    replaced = {name: _theme(zips.part(stream.getvalue(), name), inks) for name in themes}
-    return zips.settled(stream.getvalue(), {**replaced, "docProps/app.xml": _MADE_BY})
+    return stream.getvalue()
+
+
+def saved(deck: Deck, title: str, inks: Inks, for_notes: Inks) -> bytes:
+    """Return the deck as a file, in our colours, named and undated; notes are printed, so their page has colours of its own."""
+    file = named(deck, title)
+    themes = {"ppt/theme/theme1.xml": inks, "ppt/theme/theme2.xml": for_notes}
+    replaced = {name: _theme(zips.part(file, name), colours) for name, colours in themes.items()}
+    return zips.settled(file, {**replaced, "docProps/app.xml": _MADE_BY})

@@ -6,15 +6,15 @@ from dataclasses import dataclass
 from functools import cached_property
 
 import numpy as np
-import pandas as pd
 
 from analysis.findings import Findings
-from app import words
+from analysis.rounding import shortest
+from app import original
 from app.exports import fit
-from app.exports.master import BODY, SMALLEST
-from app.figures import placing
-from app.figures.scene import Scene
-from app.look import SLIDE
+from app.exports.master import BODY, SMALLEST, Box
+from app.figures import lines, placing
+from app.figures.scene import View
+from app.look import SLIDE, Look
 
 POINTS_SHOWN = 20  # up to so many observations in each cell are drawn one by one
 START = -0.5  # where the axis of the places begins; the levels stand at 0, 1, 2 …
@@ -38,7 +38,7 @@ class Line:
     marker: str
     dash: str
     places: tuple[float, ...]  # on an axis where the levels of the other factor stand at 0, 1, 2 …
-    estimates: tuple[float | None, ...]  # analysed scale; None where the model gives none
+    estimates: tuple[float | None, ...]  # in the units told; None where the model gives none
     below: tuple[float | None, ...]  # from the estimate down to the end of its interval
     above: tuple[float | None, ...]
     point_places: tuple[float, ...]
@@ -54,11 +54,31 @@ class Axis:
     high: float
     step: float
     decimals: int
+    named: tuple[float, ...] = ()  # the values named where the scale is logarithmic, which a slide program does not choose well itself
+
+    @property
+    def is_log(self) -> bool:
+        """Whether equal steps are equal ratios."""
+        return bool(self.named)
+
+    @property
+    def names(self) -> tuple[str, ...]:
+        """How the values named are written."""
+        return tuple(shortest(value) for value in self.named)
 
     @property
     def wide(self) -> float:
         """Inches that the widest number takes."""
-        return max(fit.width(f"{end:,.{self.decimals}f}", SMALLEST) for end in (self.low, self.high))
+        ends = (f"{end:,.{self.decimals}f}" for end in (self.low, self.high))
+        return max(fit.width(text, SMALLEST) for text in self.names or ends)
+
+    def place(self, value: float) -> float:
+        """Return where a value stands along the scale, evenly from place to place."""
+        return math.log10(value) if self.is_log else value
+
+    def value(self, place: float) -> float:
+        """Return the value at a place."""
+        return 10.0**place if self.is_log else place
 
 
 @dataclass(frozen=True)
@@ -80,16 +100,17 @@ class Plot:
     top: float
     bottom: float
     turned: bool  # whether the factors changed sides, so that there are few lines
+    body: Box  # the place on the slide
 
     @property
     def wide(self) -> float:
         """Width of the plot itself."""
-        return BODY.wide - self.left - self.right
+        return self.body.wide - self.left - self.right
 
     @property
     def tall(self) -> float:
         """Height of the plot itself."""
-        return BODY.tall - self.top - self.bottom
+        return self.body.tall - self.top - self.bottom
 
     @property
     def slot(self) -> float:
@@ -103,22 +124,18 @@ class Plot:
         return tuple((short, whole) for short, whole in pairs if short and short != " ".join(fit.spaced(whole)))
 
 
-class Turned(Scene):
-    """The same figure with the factors on the other sides: levels of the column factor are lines."""
+class Even(View):
+    """The scene with its levels at even places, since their names stand below them on a slide."""
 
     @cached_property
-    def rows(self) -> tuple[str, ...]:
-        """Levels drawn as lines."""
-        return tuple(self.findings.design["column_levels"])
+    def offsets(self) -> placing.Positions:
+        """How far each line stands from the place of its level."""
+        return placing.dodge(len(self.rows))
 
-    @cached_property
-    def columns(self) -> tuple[str, ...]:
-        """Levels along the axis."""
-        return tuple(self.findings.design["row_levels"])
-
-    def line_of(self, level: str) -> pd.DataFrame:
-        """Return the means of one line in the order of the axis."""
-        return self.means[self.means["column"] == level].set_index("row").reindex(list(self.columns)).reset_index()
+    @property
+    def label_place(self) -> float:
+        """Where the names of the lines begin."""
+        return len(self.columns) - 1 + len(self.rows) / 2 * placing.step(len(self.rows)) + 0.05
 
 
 def axis_for(low: float, high: float) -> Axis:
@@ -130,36 +147,43 @@ def axis_for(low: float, high: float) -> Axis:
     return Axis(math.floor(low / step + 1e-9) * step, math.ceil(high / step - 1e-9) * step, step, decimals)
 
 
-def plan(findings: Findings) -> Plot:
-    """Return where everything of the interaction figure stands on a slide.
+def log_axis(low: float, high: float) -> Axis:
+    """Return a logarithmic scale between two powers of ten, with round values to name."""
+    ticks = lines.round_ticks((low, high))
+    return Axis(10.0**low, 10.0**high, 1.0, 0, tuple(ticks))
+
+
+def plan(findings: Findings, look: Look = SLIDE, body: Box = BODY) -> Plot:
+    """Return where everything of the interaction figure stands on a slide, in the units that means are told in.
 
     Rows are lines as everywhere else, unless there are more of them than hues and fewer columns: then the factors change sides.
     """
-    scene = Scene(findings)
-    turned = len(scene.rows) > len(SLIDE.hues) and len(scene.columns) < len(scene.rows)
-    scene = Turned(findings) if turned else scene
-    factors = (findings.design["row_factor"], findings.design["column_factor"])
-    row_factor, column_factor = factors[::-1] if turned else factors
-    axis, names = axis_for(*scene.reach), _line_names(scene)
+    rows, columns = (len(findings.design[f"{side}_levels"]) for side in ("row", "column"))
+    scene = Even(findings, turned=rows > len(look.hues) and columns < rows)
+    row_factor, column_factor = (findings.design[f"{side}_factor"] for side in (scene.line, scene.along))
+    axis = log_axis(*scene.reach) if scene.is_log else axis_for(*scene.reach)
+    names = _line_names(scene, body)
     heading = fit.shorten(row_factor if names else f"{row_factor}: {len(scene.rows)} levels", SMALLEST, _NAMES_WIDE)
     left = _ROW + axis.wide + 2 * _AIR
     right = max(fit.width(text, SMALLEST) for text in (heading, *"\n".join(names).split("\n"))) * fit.BOLD + 2 * _AIR
-    slot = _slot(BODY.wide - left - right, scene.label_place)
+    slot = _slot(body.wide - left - right, scene.label_place)
     levels = fit.names(scene.columns, SMALLEST, slot, _NAME_LINES)
     bottom = (max(len(fit.wrap(name, SMALLEST, slot)) for name in levels) + 1) * _ROW + _AIR
-    *heights, heading_height = _heights(scene, names, axis, BODY.tall - _AIR - bottom)
-    lines = tuple(_line(scene, k, names[k] if names else "", heights[k] if names else 0.0) for k in range(len(scene.rows)))
-    names_of = (row_factor, column_factor, words.response_label(findings), heading)
-    return Plot(*names_of, scene.columns, levels, lines, axis, scene.label_place, heading_height, left, right, _AIR, bottom, turned)
+    *heights, heading_height = _heights(scene, names, axis, body.tall - _AIR - bottom)
+    drawn = tuple(_line(scene, look, k, names[k] if names else "", heights[k] if names else 0.0) for k in range(len(scene.rows)))
+    return Plot(
+        row_factor, column_factor, original.label(findings), heading, scene.columns, levels, drawn, axis, scene.label_place, heading_height,
+        left, right, _AIR, bottom, scene.turned, body,
+    )  # fmt: skip
 
 
 def _slot(wide: float, end: float) -> float:
     return wide / (end - START) * 0.94
 
 
-def _line_names(scene: Scene) -> tuple[str, ...]:
+def _line_names(scene: View, body: Box) -> tuple[str, ...]:
     """Return the names of the lines, broken where they take two lines of text, or none where they would not stand one below another."""
-    room = fit.lines_in(BODY.tall - 3 * _ROW - 2 * _AIR, SMALLEST) - 1  # the heading takes a line, the names along the axis up to three
+    room = fit.lines_in(body.tall - 3 * _ROW - 2 * _AIR, SMALLEST) - 1  # the heading takes a line, the names along the axis up to three
     if len(scene.rows) > room:
         return ()
     wide = _NAMES_WIDE / fit.BOLD
@@ -167,28 +191,29 @@ def _line_names(scene: Scene) -> tuple[str, ...]:
     return tuple("\n".join(fit.wrap(name, SMALLEST, wide)) for name in short)
 
 
-def _heights(scene: Scene, names: Sequence[str], axis: Axis, tall: float) -> tuple[float, ...]:
+def _heights(scene: View, names: Sequence[str], axis: Axis, tall: float) -> tuple[float, ...]:
     """Return where the names of the lines stand, and last the heading above them.
 
     Each stands beside the end of its line, moved as little as keeps the texts apart and inside the plot.
     """
-    gap = _ROW * (axis.high - axis.low) / tall
+    low, high = axis.place(axis.low), axis.place(axis.high)
+    gap = _ROW * (high - low) / tall
     ends = _ends(scene)[: len(names)]
-    placed = placing.apart(np.array([*ends, axis.high]), np.array([*(name.count("\n") + 1 for name in names), 1]) * gap)
-    over, under = max(0.0, float(placed.max()) - axis.high), max(0.0, axis.low + gap / 2 - float(placed.min()))
-    return tuple((placed - over + under).tolist())
+    placed = placing.apart(np.array([*ends, high]), np.array([*(name.count("\n") + 1 for name in names), 1]) * gap)
+    over, under = max(0.0, float(placed.max()) - high), max(0.0, low + gap / 2 - float(placed.min()))
+    return tuple(axis.value(place) for place in (placed - over + under).tolist())
 
 
-def _ends(scene: Scene) -> list[float]:
-    """Return the last estimate of each line, the middle of the figure where a line has none."""
+def _ends(scene: View) -> list[float]:
+    """Return the place of the last estimate of each line, the middle of the figure where a line has none."""
     low, high = scene.reach
     last = (scene.line_of(level)["estimate"].dropna() for level in scene.rows)
-    return [float(estimates.iloc[-1]) if len(estimates) else (low + high) / 2 for estimates in last]
+    return [float(scene.places(estimates.to_numpy(float))[-1]) if len(estimates) else (low + high) / 2 for estimates in last]
 
 
-def _line(scene: Scene, number: int, name: str, name_height: float) -> Line:
+def _line(scene: View, look: Look, number: int, name: str, name_height: float) -> Line:
     """Return one line of the figure."""
-    level, style, means = scene.rows[number], SLIDE.style_of(number), scene.line_of(scene.rows[number])
+    level, style, means = scene.rows[number], look.style_of(number), scene.line_of(scene.rows[number])
     point_places, points = _points(scene, level)
     return Line(
         level=level,
@@ -211,7 +236,7 @@ def _numbers(values: Iterable[float]) -> tuple[float | None, ...]:
     return tuple(float(value) if math.isfinite(value) else None for value in values)
 
 
-def _points(scene: Scene, level: str) -> tuple[list[float], list[float]]:
+def _points(scene: View, level: str) -> tuple[list[float], list[float]]:
     """Return places and values of the observations of one line, none where cells hold too many.
 
     They stand left of their mean: not every slide program draws means over points.
@@ -220,11 +245,10 @@ def _points(scene: Scene, level: str) -> tuple[list[float], list[float]]:
     values: list[float] = []
     if scene.findings.cells["n"].max() > POINTS_SHOWN:
         return places, values
-    line, along = ("column", "row") if isinstance(scene, Turned) else ("row", "column")
-    seen = scene.findings.observations
+    seen = scene.observations
     offset, step = scene.offsets[scene.rows.index(level)], placing.step(len(scene.rows))
     for place, other in enumerate(scene.columns):
-        cell = seen.loc[(seen[line] == level) & (seen[along] == other), "value"]
+        cell = seen.loc[(seen[scene.line] == level) & (seen[scene.along] == other), "value"]
         places += (place + offset - 0.38 * step + placing.spread(len(cell), 0.14 * step)).tolist()
         values += cell.tolist()
     return places, values

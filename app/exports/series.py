@@ -21,7 +21,7 @@ from pptx.util import Pt
 
 from app.exports import fit, zips
 from app.exports.master import FACE, SMALLEST, Inks
-from app.exports.plot import Line, Plot
+from app.exports.plot import START, Line, Plot
 
 # The slide program knows fewer markers and dashes than a browser; each level still differs from every other.
 MARKERS = {
@@ -80,6 +80,11 @@ def strands(plot: Plot, inks: Inks) -> list[Strand]:
             f"places of {plot.column_factor}", range(len(plot.names)), [plot.axis.low] * len(plot.names), partial(_write_levels, plot, inks)
         ),
         Strand(f"places of {plot.row_factor}", [plot.end] * len(heights), heights, partial(_write_lines, plot, inks)),
+        *(
+            [Strand("scale", [START] * len(plot.axis.named), plot.axis.named, partial(_write_scale, plot, inks))]
+            if plot.axis.is_log
+            else []
+        ),
     ]
     return sorted(found, key=lambda strand: -len(strand.places))
 
@@ -201,6 +206,19 @@ def _write_lines(plot: Plot, inks: Inks, series: XySeries) -> None:
     for number, line in enumerate(named):
         _label(series, number, line.name, XL_LABEL_POSITION.RIGHT, line.ink, bold=True)
     _label(series, len(named), plot.heading, XL_LABEL_POSITION.RIGHT, inks.quiet)
+
+
+def _write_scale(plot: Plot, inks: Inks, series: XySeries) -> None:
+    """Write the numbers of a logarithmic scale at its left edge, each with a rule across the figure."""
+    _unmark(series)
+    for number, name in enumerate(plot.axis.names):
+        _label(series, number, name, XL_LABEL_POSITION.LEFT, inks.ink)
+    rule = (
+        f'<c:errBars xmlns:c="{_CHART}" xmlns:a="{_DRAWING}"><c:errDir val="x"/><c:errBarType val="plus"/><c:errValType val="fixedVal"/>'
+        f'<c:noEndCap val="1"/><c:val val="{plot.end - START!r}"/><c:spPr><a:ln w="{Pt(1)}"><a:solidFill><a:srgbClr val="{inks.rule}"/>'
+        "</a:solidFill></a:ln></c:spPr></c:errBars>"
+    )
+    series._element.find(qn("c:xVal")).addprevious(parse_xml(rule))
 
 
 def _unmark(series: XySeries) -> None:

@@ -1,13 +1,13 @@
 """How a table of text is set on a slide: its type, its widths, what is shortened and how many rows there is room for."""
 
-import re
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass, replace
 
 import pandas as pd
 
+from app import paper
 from app.exports import fit
-from app.exports.master import BODY, SMALLEST
+from app.exports.master import BODY, SMALLEST, Box
 
 PAD_SIDE, PAD_END = 0.12, 0.06  # inches between a text and the edges of its cell
 MOST_ROWS = 20  # more never fit a slide; the rest of a long table is not measured
@@ -15,7 +15,6 @@ HEAD_LINES, MOST_LINES, EVERY_LINE = 4, 3, 9  # of one cell: in the head, where 
 WIDEST_FIELD, TALLEST_FIELD = 2.6, 0.9  # inches of a field in a table of counts
 ONE_LINE_ABOVE = 20  # points; larger type is not worth a wrapped line
 NARROWEST = 0.95  # inches of a column; more columns than fit are left away
-_NUMBER = re.compile(r"empty|–|(< )?[−\d][−\d\s.,]*( \([−\d\s.,]+ to [−\d\s.,]+\))?")
 
 Row = tuple[str, ...]
 
@@ -29,6 +28,7 @@ class Dress:
     tiles: bool = False  # a field for each cell, spread over the slide, numbers in the middle
     every_row: bool = False  # long cells lose words before the table loses rows
     kept: str = "the first {}"  # what the rows at the top are, where not all fit
+    body: Box = BODY  # the place on the slide
 
     def growth(self, column: int) -> float:
         """Return how much wider than plain type a column is set."""
@@ -80,7 +80,7 @@ class Measure:
         free = self.dress.every_row or self.dress.tiles or self.points <= ONE_LINE_ABOVE
         lines = EVERY_LINE if free else 1
         fits = all(fit.fits(text, self.points, self.room(k), lines) for row in rows for k, text in enumerate(row))
-        return fits and self.tall(rows) <= BODY.tall
+        return fits and self.tall(rows) <= self.dress.body.tall
 
 
 def fitted(table: pd.DataFrame, dress: Dress) -> Fitted:
@@ -89,7 +89,7 @@ def fitted(table: pd.DataFrame, dress: Dress) -> Fitted:
     Rule: where rows may go, the first ones stay ("the 8 largest of 42"); where they may not, long cells are shortened instead. Columns
     that would get too narrow to read go from the right.
     """
-    columns = min(len(table.columns), int(BODY.wide // NARROWEST))
+    columns = min(len(table.columns), int(dress.body.wide // NARROWEST))
     kept = table if dress.every_row else table.head(MOST_ROWS)
     everything: list[tuple[object, ...]] = [tuple(table.columns), *kept.itertuples(index=False, name=None)]
     texts = [tuple(map(str, row[:columns])) for row in everything]
@@ -99,18 +99,18 @@ def fitted(table: pd.DataFrame, dress: Dress) -> Fitted:
         if columns == len(table.columns) and rows == texts and len(kept) == len(table) and measure.holds(rows):
             break
     found = _cut(rows, texts, measure, table)
-    return _spread(found) if dress.tiles else found
+    return _spread(found, dress.body) if dress.tiles else found
 
 
 def is_numeric(column: Iterable[str]) -> bool:
     """Return whether a column reads as numbers, with or without intervals."""
-    return all(_NUMBER.fullmatch(text) for text in column)
+    return all(map(paper.is_number, column))
 
 
 def _cut(rows: Sequence[Row], texts: Sequence[Row], measure: Measure, table: pd.DataFrame) -> Fitted:
     """Return as many rows as the body holds, with the rule where some are left away."""
     shown = len(rows)
-    while shown > 2 and not measure.dress.every_row and measure.tall(rows[:shown]) > BODY.tall:
+    while shown > 2 and not measure.dress.every_row and measure.tall(rows[:shown]) > measure.dress.body.tall:
         shown -= 1
     columns = len(rows[0])
     rules = (
@@ -129,7 +129,7 @@ def _short(texts: Sequence[Row], measure: Measure) -> list[Row]:
     head, *rows = texts
     most = EVERY_LINE if measure.dress.every_row else MOST_LINES
     short = [measure.short(head, HEAD_LINES), *(measure.short(row, most) for row in rows)]
-    while measure.dress.every_row and most > 1 and measure.tall(short) > BODY.tall:
+    while measure.dress.every_row and most > 1 and measure.tall(short) > measure.dress.body.tall:
         most -= 1
         short = [short[0], *(measure.short(row, most) for row in rows)]
     return _kept_apart(short, texts, measure, most) if measure.dress.tiles else short
@@ -152,13 +152,13 @@ def _widths(texts: Sequence[Row], points: int, dress: Dress) -> tuple[float, ...
     needs = [_needs(column, points, dress.growth(k)) for k, column in enumerate(columns)]
     if dress.tiles:
         return _tile_widths(columns, needs, points, dress)
-    if sum(needs) <= BODY.wide:
+    if sum(needs) <= dress.body.wide:
         return tuple(needs)
-    least = [min(need, _least(column, points, dress.growth(k))) for k, (need, column) in enumerate(zip(needs, columns, strict=True))]
+    least = [min(need, _least(column, points, dress, k)) for k, (need, column) in enumerate(zip(needs, columns, strict=True))]
     over = [need - low for need, low in zip(needs, least, strict=True)]
-    room = max(0.0, BODY.wide - sum(least))
+    room = max(0.0, dress.body.wide - sum(least))
     widths = [low + room * more / max(sum(over), 1e-9) for low, more in zip(least, over, strict=True)]
-    return tuple(width * min(1.0, BODY.wide / sum(widths)) for width in widths)
+    return tuple(width * min(1.0, dress.body.wide / sum(widths)) for width in widths)
 
 
 def _needs(column: Sequence[str], points: int, growth: float) -> float:
@@ -166,26 +166,26 @@ def _needs(column: Sequence[str], points: int, growth: float) -> float:
     return max((fit.width(text, points) for text in column), default=0.0) * growth + 2 * PAD_SIDE
 
 
-def _least(column: Sequence[str], points: int, growth: float) -> float:
+def _least(column: Sequence[str], points: int, dress: Dress, place: int) -> float:
     """Return the width at which no number of a column is wrapped and no word broken; words get a quarter of the room at most."""
     head, *rest = column
     if rest and is_numeric(rest):
-        return _needs([*rest, *fit.spaced(head)], points, growth)
-    return min(_needs([word for text in column for word in fit.spaced(text)], points, growth), BODY.wide / 4)
+        return _needs([*rest, *fit.spaced(head)], points, dress.growth(place))
+    return min(_needs([word for text in column for word in fit.spaced(text)], points, dress.growth(place)), dress.body.wide / 4)
 
 
 def _tile_widths(columns: Sequence[Row], needs: Sequence[float], points: int, dress: Dress) -> tuple[float, ...]:
     """Return the widths of a table of counts: its names down the side get up to a third, the fields share the rest alike."""
     corner, *names = columns[0]
-    side = min(_needs([*names, *fit.spaced(corner)], points, dress.growth(0)), BODY.wide / 3)
+    side = min(_needs([*names, *fit.spaced(corner)], points, dress.growth(0)), dress.body.wide / 3)
     fields = len(columns) - 1
-    return (side, *[min(max(needs[1:]), (BODY.wide - side) / fields)] * fields)
+    return (side, *[min(max(needs[1:]), (dress.body.wide - side) / fields)] * fields)
 
 
-def _spread(content: Fitted) -> Fitted:
+def _spread(content: Fitted, body: Box) -> Fitted:
     """Return a table of counts grown towards the edges of the body, its fields of one size."""
     head, *fields = content.widths
-    field = max(*fields, min(WIDEST_FIELD, (BODY.wide - head) / len(fields)))
-    room = BODY.tall / sum(content.heights)
+    field = max(*fields, min(WIDEST_FIELD, (body.wide - head) / len(fields)))
+    room = body.tall / sum(content.heights)
     heights = tuple(max(height, min(TALLEST_FIELD, height * room)) for height in content.heights[1:])
     return replace(content, widths=(head, *[field] * len(fields)), heights=(content.heights[0], *heights))

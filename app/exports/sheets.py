@@ -6,6 +6,7 @@ import numpy as np
 import pandas as pd
 
 from analysis.findings import Findings
+from analysis.log import Entry
 from analysis.table import Table
 from app import speaker, tabled, words
 
@@ -20,7 +21,7 @@ TYPES: Mapping[str, str] = {
 }
 
 
-def all_sheets(findings: Findings) -> dict[str, pd.DataFrame]:
+def all_sheets(findings: Findings, decisions: Sequence[Entry] = ()) -> dict[str, pd.DataFrame]:
     """Return every sheet but the first by name, in their order; a sheet without content is not there."""
     sheets = {
         DATA: data(findings),
@@ -32,6 +33,9 @@ def all_sheets(findings: Findings) -> dict[str, pd.DataFrame]:
         "interaction contrasts": contrasts(findings),
         "checks": checks(findings),
         "influence": influence(findings),
+        "other analyses": findings.holds,
+        "doubts": doubts(findings),
+        "log": decided(decisions),
     }
     return {name: frame for name, frame in sheets.items() if frame is not None and len(frame)}
 
@@ -156,6 +160,18 @@ def influence(findings: Findings) -> pd.DataFrame | None:
     """Return residual, leverage and influence of every observation."""
     found = findings.checks.get("influence")
     return None if found is None else found.rename(columns={"row": "row of the file"})
+
+
+def doubts(findings: Findings) -> pd.DataFrame:
+    """Return the open doubts, the rows of the file that each is about in one cell."""
+    found = findings.doubts
+    return found.assign(rows=[", ".join(map(str, rows)) for rows in found["rows"]])
+
+
+def decided(decisions: Sequence[Entry]) -> pd.DataFrame:
+    """Return every decision in order, with its reason."""
+    told = [(place, entry.sentence, entry.reason) for place, entry in enumerate(decisions, start=1)]
+    return pd.DataFrame(told, columns=["step", "decision", "reason"])
 
 
 def read_me(findings: Findings, others: Mapping[str, pd.DataFrame]) -> list[tuple[str, object]]:

@@ -16,7 +16,7 @@ from openpyxl.workbook.workbook import Workbook
 from openpyxl.worksheet.properties import PageSetupProperties
 from openpyxl.worksheet.worksheet import Worksheet
 
-from analysis import rounding
+from analysis import log, rounding
 from analysis.findings import Findings
 from app import words
 from app.exports import fit, sheets, zips
@@ -36,10 +36,10 @@ _SQUARES = frozenset({"ss", "ms"})
 _RATIO = re.compile("leverage|student|cook|lambda|original units")
 
 
-def build(findings: Findings) -> bytes:
+def build(findings: Findings, decisions: Sequence[log.Entry] = ()) -> bytes:
     """Return the workbook as an .xlsx file, the same bytes for the same findings."""
     book = Workbook()
-    others = sheets.all_sheets(findings)
+    others = sheets.all_sheets(findings, decisions)
     _write_first(book.active, sheets.read_me(findings, others))
     formats = _formats(findings)
     for name, frame in others.items():

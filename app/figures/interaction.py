@@ -17,7 +17,7 @@ def interaction(findings: Findings, look: Look, turned: bool = False) -> go.Figu
     Levels of the row factor are lines, or those of the column factor where it is turned.
     """
     scene = View(findings, turned)
-    labels = [lettering.wrapped(level, 18, 2) for level in scene.rows]
+    labels = lettering.kept_apart(scene.rows, 18)
     seen = [lines.points(scene, look, index, level) for index, level in enumerate(scene.rows)]
     means = [_line(scene, look, index, level) for index, level in enumerate(scene.rows)]
     return go.Figure([*seen, *means], lines.ground(scene, look, labels))

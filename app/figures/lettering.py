@@ -2,6 +2,7 @@
 
 import html
 import textwrap
+from collections.abc import Sequence
 
 LETTER = 0.54  # mean width of a letter, as a share of its height (measured on the bundled sans-serif)
 
@@ -15,6 +16,15 @@ def wrapped(name: object, width: int, lines: int = 3) -> str:
     """Return a name broken into lines of at most `width` letters, cut with an ellipsis after `lines` lines."""
     broken = textwrap.wrap(str(name), width=max(width, 4), max_lines=lines, placeholder=" …", break_on_hyphens=False)
     return "<br>".join(plain(line) for line in broken)
+
+
+def kept_apart(names: Sequence[str], width: int) -> list[str]:
+    """Return names broken into two lines, or into as many more as it takes for different names to read differently."""
+    for lines in (2, 3, 4):
+        labels = [wrapped(name, width, lines) for name in names]
+        if len(set(labels)) == len(set(names)):
+            break
+    return labels
 
 
 def widest(labels: list[str], size: float) -> float:

@@ -14,13 +14,14 @@ from app.look import Look
 ON_LOG_AXIS = " In original units on a logarithmic axis: equal steps are equal ratios."
 ON_OTHER_SCALE = " In original units; analysed on another scale, so that intervals reach farther to one side."
 MOST_TICKS = 11
+LETTERS = 90  # side by side along the axis on a desk, in its type
 MANY_POINTS = 3_000  # beyond this the browser paints points as one picture instead of one element each
 
 
 def ground(scene: View, look: Look, labels: list[str]) -> dict[str, Any]:
     """Return axes, names at the ends of lines, and the room that they need at the right."""
     places, design = scene.axis.places, scene.findings.design
-    letters = max(6, int(90 / len(places)))
+    letters = max(6, int(letters_along(look, lettering.widest(labels, look.text)) / len(places)))
     leads, names = names_of_lines(scene, look, labels)
     return look.layout(
         xaxis={
@@ -28,26 +29,32 @@ def ground(scene: View, look: Look, labels: list[str]) -> dict[str, Any]:
             "ticktext": [lettering.wrapped(level, letters) for level in scene.columns],
             "range": [-0.5, scene.label_place],
             "showgrid": False,
+            "tickangle": 0,
             "title": {"text": lettering.plain(words.factor_in_units(scene.findings, design[f"{scene.along}_factor"]))},
         },
-        yaxis=response_axis(scene, scene.reach),
+        yaxis=response_axis(scene, scene.reach, int(1.3 * look.height / look.text)),
         margin={"r": lettering.widest(labels, look.text) + 10},
         shapes=leads,
         annotations=names,
     )
 
 
-def response_axis(scene: View, reach: tuple[float, float]) -> dict[str, Any]:
-    """Return the axis of the response over a reach, in powers of ten where it is logarithmic."""
+def letters_along(look: Look, beside: float) -> float:
+    """Return how many letters stand side by side along the axis; beside is the width in px that the names of the lines take."""
+    return LETTERS * 14 / look.text if look.width is None else (look.width - beside - 5 * look.text) / (0.55 * look.text)
+
+
+def response_axis(scene: View, reach: tuple[float, float], letters: int = LETTERS) -> dict[str, Any]:
+    """Return the axis of the response over a reach, in powers of ten where it is logarithmic; its title breaks after so many letters."""
     return {
         "range": reach,
-        "title": {"text": lettering.plain(original.label(scene.findings))},
-        **({"type": "log", **_round_ticks(reach)} if scene.is_log else {"nticks": 10}),
+        "title": {"text": lettering.wrapped(original.label(scene.findings), letters, 2)},
+        **({"type": "log", "tickvals": round_ticks(reach)} if scene.is_log else {"nticks": 10}),
         "showline": False,
     }
 
 
-def _round_ticks(reach: tuple[float, float]) -> dict[str, list[float]]:
+def round_ticks(reach: tuple[float, float]) -> list[float]:
     """Return round values between two powers of ten, the fewer of each decade the more decades there are."""
     low, high = reach
     for firsts in ((1, 1.2, 1.4, 1.6, 1.8, 2, 2.5, 3, 3.5, 4, 5, 6, 7, 8, 9), (1, 1.5, 2, 3, 4, 5, 7), (1, 2, 5), (1,)):
@@ -55,7 +62,7 @@ def _round_ticks(reach: tuple[float, float]) -> dict[str, list[float]]:
         shown = [value for value in values if low <= np.log10(value) <= high]
         if len(shown) <= MOST_TICKS:
             break
-    return {"tickvals": shown}
+    return shown
 
 
 def points(scene: View, look: Look, index: int, level: str) -> dict[str, Any]:

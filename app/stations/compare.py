@@ -1,5 +1,8 @@
 """Compare: which levels or combinations differ, by how much; the grid is pointed at, or the question is chosen in words."""
 
+from collections.abc import Mapping
+from typing import Any
+
 import numpy as np
 import pandas as pd
 import streamlit as st
@@ -8,7 +11,9 @@ from analysis import level_edits
 from analysis.adjustments import ADJUSTMENTS
 from analysis.findings import Findings
 from analysis.refusals import Refusal
-from app import asked_words, asking, desk, paper, pictures, sheets, stage, words
+from analysis.story import Kept
+from analysis.study import Study
+from app import asked_words, asking, desk, factor_boards, paper, pictures, sheets, stage, tell_words, words
 from app.asking import Asked
 from app.figures import differences, grid, pointing
 from app.stage import Picture
@@ -116,6 +121,7 @@ def _answer(findings: Findings, asked: Asked) -> None:
         before = desk.findings_before("adjust")
         changed = asked_words.changed(findings, before, asked) if before is not None else ""
         st.html(heading + paper.answer(*asked_words.answer(findings, asked, frame)) + (paper.caption(changed) if changed else ""))
+        _keep(findings, asked)
         stage.show(_differences(findings, asked, frame), "differences")
         with st.container(key="compare_table"):
             st.html(paper.table(sheets.comparisons(findings, asked.family, frame)) + paper.caption(asked_words.explained(findings, frame)))
@@ -133,8 +139,23 @@ def _differences(findings: Findings, asked: Asked, frame: pd.DataFrame) -> Pictu
     )  # fmt: skip
 
 
+def _keep(findings: Findings, asked: Asked) -> None:
+    """Offer to keep the open question for the story, or to take it out again."""
+    one = factor_boards.keepable(findings, asked)
+    study = desk.study()
+    is_kept = study is not None and one in study.story.kept
+    label = tell_words.KEPT if is_kept else tell_words.KEEP
+    icon = ":material/bookmark_added:" if is_kept else ":material/bookmark:"
+    st.button(label, key="keep_comparison", icon=icon, type="tertiary", on_click=desk.edit, args=(_keeping, one))
+
+
+def _keeping(study: Study, one: Kept) -> Mapping[str, Any]:
+    return {"story": study.story.keeping(one)}
+
+
 def _trend(findings: Findings, asked: Asked) -> None:
     st.html(paper.heading(asked_words.question(findings, asked, None)) + paper.answer(*asked_words.trend_answer(findings, asked)))
+    _keep(findings, asked)
     stage.show(pictures.along(findings, asked.family.removeprefix(asking.TREND)), "trend")
     with st.container(key="compare_table"):
         st.html(paper.table(asked_words.trend(findings, asked)))

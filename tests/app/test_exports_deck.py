@@ -6,6 +6,7 @@ import zipfile
 from functools import cache
 
 import openpyxl
+import pandas as pd
 import pptx
 import pytest
 from pptx.enum.dml import MSO_LINE
@@ -14,8 +15,10 @@ from pptx.presentation import Presentation
 from pptx.slide import Slide
 
 from analysis import rounding
-from app import boards, speaker, words
-from app.exports import deck, master, series
+from analysis.refusals import TemplateUnusable
+from analysis.story import Story
+from app import boards, factor_boards, look, speaker, words
+from app.exports import deck, images, master, series
 from app.look import SLIDE
 from tests.app import designs
 
@@ -32,8 +35,18 @@ def slides_of(name: str) -> Presentation:
     return pptx.Presentation(io.BytesIO(file_of(name)))
 
 
+def slide_of(name: str, kind: str) -> Slide:
+    """Return the first slide of a kind of board."""
+    told = boards.story(designs.design(name))
+    return slides_of(name).slides[next(place for place, board in enumerate(told) if board.kind == kind)]
+
+
 def chart_of(name: str):
-    return next(shape.chart for shape in slides_of(name).slides[1].shapes if shape.has_chart)
+    return next(shape.chart for shape in slide_of(name, "interaction").shapes if shape.has_chart)
+
+
+def is_graphic(shape) -> bool:
+    return shape.has_table or shape.has_chart or hasattr(shape, "image")
 
 
 def table_of(slide: Slide) -> list[list[str]]:
@@ -42,10 +55,10 @@ def table_of(slide: Slide) -> list[list[str]]:
 
 
 @every_design
-def test_four_slides_each_with_its_claim_as_title(name: str) -> None:
+def test_each_board_is_a_slide_with_its_claim_as_title(name: str) -> None:
     told = boards.story(designs.design(name))
     titles = [slide.shapes.title.text for slide in slides_of(name).slides]
-    assert len(titles) == 4
+    assert len(titles) == len(told)
     assert all(title.strip() for title in titles)
     for title, board in zip(titles, told, strict=True):
         assert board.claim == title or board.claim.startswith(title.removesuffix("…"))
@@ -88,8 +101,8 @@ def test_no_text_is_smaller_than_eighteen_points(name: str) -> None:
 @every_design
 def test_graphics_say_both_factors_and_n(name: str) -> None:
     found = designs.design(name).design
-    graphics = [shape for slide in slides_of(name).slides for shape in slide.shapes if shape.has_table or shape.has_chart]
-    assert len(graphics) >= 3
+    graphics = [shape for slide in slides_of(name).slides for shape in slide.shapes if is_graphic(shape)]
+    assert len(graphics) == len(slides_of(name).slides)
     for shape in graphics:
         text = shape.element.xpath(".//p:cNvPr")[0].get("descr")
         assert found["row_factor"] in text
@@ -119,7 +132,7 @@ def test_every_slide_has_its_number(name: str) -> None:
 def test_no_slide_holds_an_empty_place(name: str) -> None:
     for slide in slides_of(name).slides:
         for shape in slide.placeholders:
-            assert shape.has_table or shape.has_chart or shape.text_frame.text.strip(), shape.name
+            assert is_graphic(shape) or shape.text_frame.text.strip(), shape.name
 
 
 @pytest.mark.parametrize("name", ["3 by 4", "6 by 8", "an empty cell", "one value a cell"])
@@ -162,7 +175,7 @@ def test_no_series_stands_before_a_longer_one(name: str) -> None:
 def test_many_rows_change_sides_with_few_columns() -> None:
     drawn = {one.name for one in chart_of("20 by 3").plots[0].series}
     assert {"low", "mid", "high"} <= drawn
-    text = next(shape for shape in slides_of("20 by 3").slides[1].shapes if shape.has_chart).element.xpath(".//p:cNvPr")[0].get("descr")
+    text = next(shape for shape in slide_of("20 by 3", "interaction").shapes if shape.has_chart).element.xpath(".//p:cNvPr")[0].get("descr")
     assert text.endswith("Here the levels of line run along the axis, and each level of dose is a line.")
 
 
@@ -191,41 +204,43 @@ def test_the_grid_holds_every_count(name: str) -> None:
 
 
 @every_design
-def test_the_answers_stand_on_their_slide(name: str) -> None:
+def test_the_answers_stand_on_their_slides(name: str) -> None:
     found = designs.design(name)
-    rows = table_of(slides_of(name).slides[2])[1:]
-    for (question, sentence, test), answer in zip(rows, found.answers, strict=True):
-        if "…" not in question + sentence:
-            assert (question, sentence) == (answer.question, answer.sentence)
+    told = "\n".join(slide.shapes.title.text + slide.notes_slide.notes_text_frame.text for slide in slides_of(name).slides)
+    for answer in found.answers:
+        assert answer.sentence in told or factor_boards.depends(found)
         if answer.p is not None:
-            assert test.replace("\u00a0", " ").endswith(rounding.p_value(answer.p))
+            assert rounding.p_value(answer.p) in told
 
 
 def test_comparisons_are_the_engines_rounded_by_the_one_rule() -> None:
     findings = designs.design("3 by 4")
-    assert boards.families_told(findings) == ("feed within light",)
-    head, *rows = table_of(slides_of("3 by 4").slides[3])
-    assert head[:2] == ["within", "compared"]
-    family = findings.comparisons["feed within light"].set_index(["within", "left", "right"])
-    sizes = []
-    for within, compared, told, p, reading in rows:
-        entry = family.loc[(within, *compared.split(f" {rounding.MINUS} "))]
-        assert told == words.with_interval(entry["difference"], entry["lower_adjusted"], entry["upper_adjusted"], entry["se"])
-        assert p == rounding.p_number(entry["p_adjusted"])
-        assert reading == words.VERDICTS[entry["verdict"]]
-        sizes.append(abs(entry["difference"]))
-    assert sizes == sorted(sizes, reverse=True)
-    assert sizes[0] == family["difference"].abs().max()
+    within = [board.key.rpartition(" / ")[2] for board in boards.story(findings) if board.key.startswith("slice")]
+    assert within == list(designs.LIGHT)
+    for slide, level in zip(list(slides_of("3 by 4").slides)[3:6], within, strict=True):
+        head, *rows = table_of(slide)
+        assert head[0] == "compared"
+        family = findings.comparisons["feed within light"].set_index(["within", "left", "right"])
+        sizes = []
+        for compared, told, p, reading in rows:
+            entry = family.loc[(level, *compared.split(f" {rounding.MINUS} "))]
+            assert told == words.with_interval(entry["difference"], entry["lower_adjusted"], entry["upper_adjusted"], entry["se"])
+            assert p == rounding.p_number(entry["p_adjusted"])
+            assert reading == words.VERDICTS[entry["verdict"]]
+            sizes.append(abs(entry["difference"]))
+        assert sizes == sorted(sizes, reverse=True)
+        assert len(sizes) == 6
 
 
 def test_a_table_that_is_cut_says_by_which_rule() -> None:
-    rows = table_of(slides_of("6 by 8").slides[3])[1:]
-    evidence = next(shape.text for shape in slides_of("6 by 8").slides[3].placeholders if shape.placeholder_format.idx == master.WORDS)
-    assert evidence.startswith(f"Shown: the {len(rows)} largest of 168 rows; the workbook holds all")
+    slide = slide_of("6 by 8", "compared")
+    rows = table_of(slide)[1:]
+    evidence = next(shape.text for shape in slide.placeholders if shape.placeholder_format.idx == master.WORDS)
+    assert evidence.startswith(f"Shown: the {len(rows)} largest of 28 rows; the workbook holds all")
 
 
 def test_names_that_are_shortened_stay_apart_and_are_told_in_the_notes() -> None:
-    slide = slides_of("long names").slides[1]
+    slide = slide_of("long names", "interaction")
     labels = [" ".join(text.text for text in label.iter(qn("a:t"))) for label in chart_of("long names")._chartSpace.iter(qn("c:dLbl"))]
     assert any(label.startswith("Treated") and label.endswith("full strength") for label in labels)
     assert any(label.startswith("Treated") and label.endswith("half strength") for label in labels)
@@ -233,16 +248,103 @@ def test_names_that_are_shortened_stay_apart_and_are_told_in_the_notes() -> None
     assert re.search(r"On the slide “[^”]*…[^”]*full strength” stands for “Treated with compound alpha at full strength”", notes)
 
 
-def test_without_an_interaction_the_comparisons_are_on_average() -> None:
-    findings = designs.design("undecided")
-    assert findings.answers[0].verdict == "undecided"
-    assert set(boards.families_told(findings)) == {"light", "feed"}
-
-
 def test_ratios_are_told_as_ratios() -> None:
-    head, first, *_ = table_of(slides_of("logarithm").slides[3])
-    assert head[2].startswith("ratio")
-    assert "÷" in first[1]
+    head, first, *_ = table_of(slide_of("logarithm", "compared"))
+    assert head[1].startswith("ratio")
+    assert "÷" in first[0]
+
+
+def test_a_log_scale_is_drawn_in_original_units() -> None:
+    found, drawn = designs.design("logarithm"), chart_of("logarithm")
+    told = pd.DataFrame(found.cells["told"].tolist())["estimate"]
+    lines = {one.name: list(one.values) for one in drawn.plots[0].series}
+    for level in designs.LIGHT:
+        assert lines[level] == pytest.approx(told[(found.cells["row"] == level).to_numpy()].tolist(), rel=1e-12)
+    assert drawn.value_axis._element.find(f"{qn('c:scaling')}/{qn('c:logBase')}").get("val") == "10"
+    assert drawn.value_axis.axis_title.text_frame.text == "yield"
+
+
+@pytest.mark.browser
+def test_raw_data_are_a_sharp_picture() -> None:
+    picture = next(shape for shape in slide_of("3 by 4", "raw").shapes if hasattr(shape, "image"))
+    assert picture.image.size[0] / picture.width.inches >= 200
+    assert picture.image.size[1] / picture.height.inches >= 200
+    assert (picture.crop_left, picture.crop_right, picture.crop_top, picture.crop_bottom) == (0, 0, 0, 0)
+    assert "In numbers: light Full sun, feed No feed, n 6" in slide_of("3 by 4", "raw").notes_slide.notes_text_frame.text
+
+
+def test_without_a_browser_the_slides_are_built_with_their_own_charts_and_tables(monkeypatch: pytest.MonkeyPatch) -> None:
+    monkeypatch.setattr(images.Chromium, "find_browser", lambda **_: None)
+    monkeypatch.delenv("BROWSER_PATH", raising=False)
+    found = designs.design("3 by 4")
+    show = pptx.Presentation(io.BytesIO(deck.build(boards.story(found), found)))
+    head, *rows = table_of(show.slides[1])
+    assert head[:3] == ["light", "feed", "n"]
+    assert [row[2] for row in rows] == ["6"] * len(rows)
+    assert any(shape.has_chart for shape in show.slides[2].shapes)
+
+
+def test_the_dark_deck_is_the_same_on_dark_paper() -> None:
+    found = designs.design("3 by 4")
+    dark = deck.build(boards.story(found), found, dark=True)
+    with zipfile.ZipFile(io.BytesIO(dark)) as parts:
+        slides, notes = (parts.read(f"ppt/theme/theme{k}.xml").decode() for k in (1, 2))
+    assert f'<a:lt1><a:srgbClr val="{look.NIGHT.paper[1:]}"/></a:lt1>' in slides
+    assert f'<a:lt1><a:srgbClr val="{look.DESK.paper[1:]}"/></a:lt1>' in notes, "notes are printed"
+    show = pptx.Presentation(io.BytesIO(dark))
+    assert [slide.shapes.title.text for slide in show.slides] == [slide.shapes.title.text for slide in slides_of("3 by 4").slides]
+    lines = [one for one in show.slides[2].shapes[1].chart.plots[0].series if one.name in designs.LIGHT]
+    assert [f"#{one.format.line.color.rgb}" for one in lines] == list(look.NIGHT.hues[:3])
+
+
+def own_template(wide: float, tall: float) -> bytes:
+    """Return a presentation such as users have: a slide in it, and its own colours."""
+    show = pptx.Presentation()
+    show.slide_width, show.slide_height = pptx.util.Inches(wide), pptx.util.Inches(tall)
+    show.slides.add_slide(show.slide_layouts[1]).shapes.title.text = "An old slide"
+    file = io.BytesIO()
+    show.save(file)
+    return file.getvalue()
+
+
+def test_the_slides_stand_in_the_users_own_template() -> None:
+    found = designs.design("logarithm")
+    show = pptx.Presentation(io.BytesIO(deck.build(boards.story(found), found, template=own_template(10, 7.5))))
+    told = boards.story(found)
+    assert [slide.shapes.title.text for slide in show.slides] == [board.claim for board in told]
+    for slide in show.slides:
+        assert slide.slide_layout.name == "Title Only"
+        assert len([shape for shape in slide.shapes if is_graphic(shape)]) == 1
+        for shape in slide.shapes:
+            assert shape.left >= 0
+            assert shape.left + shape.width <= show.slide_width
+            assert shape.top + shape.height <= show.slide_height
+        for text in slide.shapes._spTree.iter(qn("a:rPr")):
+            assert text.get("sz") is None or int(text.get("sz")) >= 1800
+
+
+@pytest.mark.parametrize(
+    ("template", "why"),
+    [(b"no presentation", "it is not a presentation"), (own_template(10, 3), "below the title of its plainest layout there is no room")],
+)
+def test_a_template_that_cannot_be_used_is_refused(template: bytes, why: str) -> None:
+    found = designs.design("3 by 4")
+    with pytest.raises(TemplateUnusable, match=why):
+        deck.build(boards.story(found), found, template=template)
+
+
+def test_own_words_keep_the_evidence_and_are_marked() -> None:
+    found = designs.design("3 by 4")
+    changes = Story().saying("interaction", "Feed pays in the sun.").noting("interaction", "Ask for the cost.").dropping("raw data")
+    show = pptx.Presentation(io.BytesIO(deck.build(boards.story(found, changes), found)))
+    slide = show.slides[1]
+    assert slide.shapes.title.text == "Feed pays in the sun."
+    evidence = next(shape.text for shape in slide.placeholders if shape.placeholder_format.idx == master.WORDS)
+    assert "F(6, 60) = 7.78" in evidence
+    assert evidence.endswith("claim in the user’s own words")
+    notes = slide.notes_slide.notes_text_frame.text
+    assert found.answers[0].sentence in notes
+    assert "Ask for the cost." in notes
 
 
 @pytest.mark.parametrize("name", ["3 by 4", "long names"])

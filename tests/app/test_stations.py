@@ -21,7 +21,7 @@ KEYS = {
     "answer": ("answers", "grid", "interaction", "cell_means", "choice_model", "choice_scale", "choice_confidence", "choice_matters"),
     "compare": ("compare_table", "choice_adjust", "grid"),
     "doubt": ("by_cell", "along_fitted", "against_bell"),
-    "tell": ("tell_start", "save_deck", "save_workbook", "save_tables", "save_script", "save_figures", "save_study"),
+    "tell": ("tell_start", "save_deck", "save_workbook", "save_tables", "save_script", "save_figures", "save_report", "save_study"),
 }
 NAMES = [station.name for station in STATIONS]
 SAMPLES = ["basil_light_feed.csv", "coating_primer_cure.csv", "yeast_sugar.xlsx"]
