@@ -35,6 +35,11 @@ class Delimited:
     declared: int = 0  # lines at the start that only name the separator
 
     @cached_property
+    def lines(self) -> int:
+        """How many line ends there are."""
+        return self.data.count(b"\n")
+
+    @cached_property
     def head(self) -> Sequence[Record]:
         """The first records, those that only name the separator taken as blank."""
         records = islice(self._records(self._start_text()), HEAD)
@@ -104,7 +109,7 @@ class Delimited:
         marks = self.data.count(b'"', offset)
         if marks % 2 or (marks and self._spaced_quotes):
             return None
-        lines = self.data.count(b"\n", offset) + (not self.data.endswith(b"\n"))
+        lines = self.lines - start + (not self.data.endswith(b"\n"))
         columns = _parsed(self.data, offset, self.delimiter, width)
         if columns is not None and len(columns[0]) == lines:
             return columns, np.arange(start + 1, start + 1 + lines, dtype=np.int64)

@@ -92,15 +92,14 @@ def _mislabelled(name: str, kind: Kind) -> tuple[Decision, ...]:
 
 def _text(data: bytes, reading: Reading) -> Source:
     decoded = encoding.decode(data)
-    lines = decoded.data.count(b"\n")
-    if lines > limits.ROWS:
-        raise refusals.TooManyRows(lines, limits.ROWS)
     separated = separators.find(decoded.data, reading)
     known = Known(separated.delimiter == ",", reading.decimal)
     first = enumerate(decoded.data[:RAW_BYTES].decode("utf-8", "replace").split("\n")[:RAW])
     raw = tuple(raw_line(index + 1, line) for index, line in first)
     found = Found((*decoded.decisions, separated.decision), known, raw=raw)
     source = delimited.Delimited(separated.data, separated.delimiter, found, separated.declared)
+    if source.lines > limits.ROWS:
+        raise refusals.TooManyRows(source.lines, limits.ROWS)
     part = table_choice.chosen(Sheet(source.loose, Marks(), found), reading)
     return replace(source, found=part.found) if part.values is source.loose else part
 

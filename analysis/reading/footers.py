@@ -15,7 +15,8 @@ from analysis.reading.words import counted
 from analysis.table import Decision, LeftOut
 
 Mask = npt.NDArray[np.bool_]
-_MARGINS = (" ", "\t", "\u00a0")  # what a cell of white space may begin with
+_MARGINS = np.zeros(256, dtype=bool)  # the first bytes that a cell of white space may have
+_MARGINS[[*range(0x21), 0xC2, 0xE1, 0xE2, 0xE3, 0xEF]] = True
 _TAIL = 40  # rows at the end among which totals are looked for
 _TOTAL = re.compile(
     r"(?:(?:grand|overall|general|column|row|sub)[ -]?)?(?:totals?|sums?|means?|averages?|avg|subtotals?|overall|"
@@ -93,10 +94,15 @@ def _all_blank(body: Body, first: int) -> Mask:
 
 def blank_cells(column: pa.StringArray) -> Mask:
     """Which cells of a column hold nothing but white space."""
-    blank: Mask = pc.equal(column, "").to_numpy(zero_copy_only=False).astype(bool)
-    starts = [pc.starts_with(column, mark).to_numpy(zero_copy_only=False) for mark in _MARGINS]
-    spaced = np.flatnonzero(np.logical_or.reduce(starts))
-    blank[[index for index in spaced if spaces.is_blank(column[int(index)].as_py())]] = True
+    if not len(column):
+        return np.zeros(0, dtype=bool)
+    _, places, letters = column.buffers()
+    starts = np.frombuffer(places, dtype=np.int32)[column.offset : column.offset + len(column) + 1]
+    blank: Mask = starts[1:] == starts[:-1]
+    filled = np.flatnonzero(~blank)
+    if filled.size:
+        spaced = filled[_MARGINS[np.frombuffer(letters, dtype=np.uint8)[starts[filled]]]]
+        blank[[index for index in spaced if spaces.is_blank(column[int(index)].as_py())]] = True
     return blank
 
 

@@ -8,7 +8,9 @@ import numpy.typing as npt
 import pyarrow as pa
 
 from analysis.reading import marks, missing
+from analysis.reading.numerals import Shape
 from analysis.reading.odd_cells import Odd
+from analysis.reading.plain_texts import Plain
 from analysis.table import Floats, Rows
 
 
@@ -29,9 +31,11 @@ class HalfRead:
     """A column half read: values so far and why others are missing."""
 
     written: Written
-    plain: npt.NDArray[np.bool_]
+    plain: Plain
+    is_plain: npt.NDArray[np.bool_]
     values: Floats
     odd: Odd
+    shapes: frozenset[Shape] = frozenset()  # of the numbers, as far as they were looked at
     decided: marks.Marks = field(default_factory=marks.Marks)
     grouped: bool = False  # whether plain cells turned out to hold a thousands mark (1.234)
 
@@ -39,6 +43,12 @@ class HalfRead:
     def is_number(self) -> npt.NDArray[np.bool_]:
         """Which of the odd texts are numbers after all."""
         return self.odd.mask([numeral is not None and not numeral.bound for numeral in self.odd.numerals])
+
+    @cached_property
+    def plain_with_unit(self) -> npt.NDArray[np.intp]:
+        """Rows of the table with a plain number whose unit was taken off."""
+        having = self.plain.with_unit
+        return np.empty(0, dtype=np.intp) if having is None else np.flatnonzero(having & self.is_plain)
 
     @cached_property
     def is_limit(self) -> npt.NDArray[np.bool_]:

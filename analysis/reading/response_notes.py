@@ -39,12 +39,12 @@ def _marks(reading: HalfRead) -> Iterator[str]:
             f"Column “{name}”: the {_MARK_NAMES[mark]} with three digits after it was read as a {role} mark; nothing in the "
             f"column tells whether it is a {other} mark."
         )
-    shapes = [numeral.shape for numeral in reading.odd.numerals if numeral is not None]
+    shapes = reading.shapes
     if any(shape.decimal == "," for shape in shapes):
         yield f"Column “{name}”: decimal commas were read."
     for mark, role in ((",", reading.decided.comma), (".", reading.decided.point)):
         grouped = any(shape.thousands == mark or (shape.either == mark and role == "thousands") for shape in shapes)
-        if (grouped or (mark == "." and reading.grouped)) and mark not in reading.decided.assumed:
+        if (grouped or (mark == reading.plain.mark and reading.grouped)) and mark not in reading.decided.assumed:
             yield f"Column “{name}”: the {_MARK_NAMES[mark]} was read as a thousands mark."
 
 
@@ -83,10 +83,10 @@ def _footnotes(reading: HalfRead) -> Iterator[str]:
 def _bare(reading: HalfRead, unit: str | None) -> Iterator[str]:
     """A unit on some numbers and none on the rest is taken for all of them."""
     with_unit = reading.odd.mask([numeral is not None and bool(numeral.unit) for numeral in reading.odd.numerals]) & reading.is_number
-    if unit is None or not with_unit.any():
+    if unit is None or not (with_unit.any() or reading.plain_with_unit.size):
         return
     numbers = int(np.isfinite(reading.values).sum())
-    bare = numbers - reading.odd.rows_of(with_unit).size
+    bare = numbers - reading.odd.rows_of(with_unit).size - reading.plain_with_unit.size
     if bare:
         yield f"Column “{reading.written.name}”: {bare} of {numbers} numbers carry no unit and were taken as {unit} like the rest."
 
