@@ -15,6 +15,7 @@ from analysis import anova, answers, checking, contrasts, design, families, five
 from analysis.answers import Answer
 from analysis.design import Design
 from analysis.doubting import order
+from analysis.doubting.beside import beside
 from analysis.doubting.signs import Signs
 from analysis.estimates import Estimates
 from analysis.evidence import Evidence
@@ -239,7 +240,7 @@ class Findings:
     @cached_property
     def doubts(self) -> pd.DataFrame:
         """What would make a careful reader doubt the answers, most serious first."""
-        found = order.doubts(Signs(self.layout, self.observations, self.checks, self.holds))
+        found = order.doubts(Signs(self.analysed, self.holds, beside(self.study, self.observed)))
         return pd.DataFrame([vars(doubt) for doubt in found], columns=["kind", "level", "sentence", "rows"])
 
     @cached_property

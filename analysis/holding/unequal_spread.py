@@ -55,9 +55,9 @@ def _welch(analysed: Analysed) -> dict[str, Entry]:
     found = {}
     for term in analysed.terms:
         test = welch.welch_james(means, variances, n, tests[term])
-        if test is None:  # a factor with one level
-            continue
         weights = analysed.contrasts[term]
+        if test is None or not weights.any():  # a factor with one level
+            continue
         share = weights**2 * variances / n
         df = float(share.sum() ** 2 / np.sum(share**2 / (n - 1)))
         half = float(tails.t_quantile((1 - analysed.confidence) / 2, df) * np.sqrt(share.sum()))
