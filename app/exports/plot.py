@@ -12,7 +12,7 @@ from analysis.rounding import shortest
 from app import original
 from app.exports import fit
 from app.exports.master import BODY, SMALLEST, Box
-from app.figures import lines, placing
+from app.figures import placing, ticks
 from app.figures.scene import View
 from app.look import SLIDE, Look
 
@@ -149,8 +149,7 @@ def axis_for(low: float, high: float) -> Axis:
 
 def log_axis(low: float, high: float) -> Axis:
     """Return a logarithmic scale between two powers of ten, with round values to name."""
-    ticks = lines.round_ticks((low, high))
-    return Axis(10.0**low, 10.0**high, 1.0, 0, tuple(ticks))
+    return Axis(10.0**low, 10.0**high, 1.0, 0, tuple(ticks.logarithmic((low, high))["tickvals"]))
 
 
 def plan(findings: Findings, look: Look = SLIDE, body: Box = BODY) -> Plot:

@@ -10,7 +10,7 @@ from analysis import verdicts
 from analysis.findings import Findings
 from analysis.rounding import measured, p_value, percent
 from app import original, records, tabled, words
-from app.figures import lettering
+from app.figures import lettering, ticks
 from app.look import Look
 
 MOST_LINES = 24  # a longer figure is no figure; the table holds all of them
@@ -77,12 +77,14 @@ def _ground(findings: Findings, look: Look, frame: pd.DataFrame, names: list[str
     low, high = min(0.0, places["lower"].min()), max(0.0, places["upper"].max())
     air = 0.04 * (high - low) or 1.0
     what = f"ratio of {original.label(findings)}" if ratio else f"difference in {words.response_label(findings)}"
+    reach = (low - air, high + air)
     tall = next(tall for most, tall in LINE_HEIGHTS if len(names) <= most)
     return look.layout(
         xaxis={
-            "range": [low - air, high + air],
+            "range": reach,
             "title": {"text": lettering.plain(what)},
-            **({"type": "log", "tickvals": _round_ratios(low - air, high + air)} if ratio else {"nticks": 9}),
+            **({"type": "log", **ticks.logarithmic(reach)} if ratio else ticks.linear(reach)),
+            "automargin": False,
         },
         yaxis={
             "tickvals": heights,
@@ -91,16 +93,9 @@ def _ground(findings: Findings, look: Look, frame: pd.DataFrame, names: list[str
             "showgrid": False,
             "automargin": False,
         },
-        margin={"l": lettering.widest(names, look.text) + 10},
+        margin={"l": lettering.widest(names, look.text) + 10, "b": ticks.below([], look)},
         height=round(max(len(names), 2) * look.text * tall + 4.5 * look.text + 24),
     )
-
-
-def _round_ratios(low: float, high: float) -> list[float]:
-    """Return round ratios between two powers of ten, the fewer the farther they lie apart."""
-    firsts = (1, 1.2, 1.5, 2, 2.5, 3, 4, 5, 6, 7, 8, 9) if high - low < 1 else (1, 2, 5) if high - low < 3 else (1,)
-    values = [first * 10.0**power for power in range(int(np.floor(low)), int(np.ceil(high)) + 1) for first in firsts]
-    return [value for value in values if low <= np.log10(value) <= high]
 
 
 def _standards(findings: Findings, look: Look) -> list[dict[str, Any]]:

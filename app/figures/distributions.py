@@ -17,6 +17,7 @@ from app.figures.scene import View
 from app.look import Look
 
 FEWEST = 5  # observations behind a box; a cell with fewer is drawn as points
+WIDE = 580  # px between the axes of a figure that fills its place, on a small screen
 MOST_POINTS = 20  # of a cell, up to which every point says more than a box
 
 
@@ -109,10 +110,15 @@ def _medians(scene: Spread, look: Look, index: int, numbers: pd.DataFrame, place
         "x": places + scene.offsets[index],
         "y": numbers["median"].to_numpy(float),
         "mode": "markers",
-        "marker": {"symbol": "line-ew", "size": look.marker * 2.2, "line": {"color": style.hue, "width": look.line * 1.2}},
+        "marker": {"symbol": "line-ew", "size": _stroke(scene, look), "line": {"color": style.hue, "width": look.line * 1.2}},
         "customdata": told,
         "hovertemplate": "%{customdata[0]} · %{customdata[1]}<br>median %{customdata[2]}, n %{customdata[3]}<extra></extra>",
     }
+
+
+def _stroke(scene: Spread, look: Look) -> float:
+    """Return the px of a median's stroke: as wide as the points of its cell at most."""
+    return min(look.marker * 2.2, 0.8 * scene.step * (look.width or WIDE) / (scene.label_place + 0.5))
 
 
 def distributions_caption(findings: Findings, turned: bool = False, boxes: bool = False) -> str:

@@ -9,7 +9,7 @@ import plotly.graph_objects as go
 from analysis.findings import Findings
 from analysis.rounding import measured
 from app import words
-from app.figures import lettering
+from app.figures import lettering, ticks
 from app.look import Look
 
 SHARES = ((0.0, 0.25), (0.29, 0.54), (0.58, 1.0))  # of the width, for α, β and αβ
@@ -114,18 +114,22 @@ def _ground(findings: Findings, look: Look, bars: Sequence[Bar], blocks: Sequenc
     letter = (look.width or WIDE) / (look.small * 0.6)  # letters across the whole width
     turned = any(block.step * letter < UPRIGHT for block in blocks)
     names = [lettering.wrapped(n, 16 if turned else int(block.step * letter), 1 if turned else 3) for block in blocks for n in block.names]
+    title = {"text": lettering.wrapped(f"effect on {words.response_label(findings)}", int(1.3 * look.height / look.text), 2)}
+    axis = {"range": [-reach, reach], **ticks.linear((-reach, reach)), "automargin": False, "title": title}
+    below = lettering.widest(names, look.small) + look.small if turned else ticks.below(names, look, title=False)
     return look.layout(
         xaxis={
             "tickvals": [block.place(k) for block in blocks for k in range(len(block.names))],
             "ticktext": names,
             "tickfont": {"size": look.small},
             "tickangle": -90 if turned else 0,
+            "automargin": False,
             "showgrid": False,
             "showline": False,
             "range": [-0.01, 1.01],
         },
-        yaxis={"range": [-reach, reach], "nticks": 9, "title": {"text": f"effect on {lettering.plain(words.response_label(findings))}"}},
-        margin={"t": 2.2 * look.text},
+        yaxis=axis,
+        margin={"t": 2.2 * look.text, "l": ticks.left(axis, look), "b": below},
         annotations=[_head(look, block) for block in blocks],
         shapes=[{"type": "line", "xref": "paper", "x0": 0, "x1": 1, "y0": 0, "y1": 0, "line": {"color": look.ink, "width": 1}}],
         bargap=0,

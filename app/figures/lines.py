@@ -7,13 +7,12 @@ import pandas as pd
 
 from analysis.findings import Findings
 from app import original, words
-from app.figures import lettering, placing
+from app.figures import lettering, placing, ticks
 from app.figures.scene import Scene, View
 from app.look import Look
 
 ON_LOG_AXIS = " In original units on a logarithmic axis: equal steps are equal ratios."
 ON_OTHER_SCALE = " In original units; analysed on another scale, so that intervals reach farther to one side."
-MOST_TICKS = 11
 LETTERS = 90  # side by side along the axis on a desk, in its type
 MANY_POINTS = 3_000  # beyond this the browser paints points as one picture instead of one element each
 
@@ -23,20 +22,25 @@ def ground(scene: View, look: Look, labels: list[str]) -> dict[str, Any]:
     places, design = scene.axis.places, scene.findings.design
     letters = max(6, int(letters_along(look, lettering.widest(labels, look.text)) / len(places)))
     leads, names = names_of_lines(scene, look, labels)
+    levels = [lettering.wrapped(level, letters) for level in scene.columns]
+    response = response_axis(scene, scene.reach, int(1.3 * look.height / look.text))
     return look.layout(
         xaxis={
             "tickvals": places,
-            "ticktext": [lettering.wrapped(level, letters) for level in scene.columns],
+            "ticktext": levels,
             "range": [-0.5, scene.label_place],
             "showgrid": False,
             "tickangle": 0,
             "title": {"text": lettering.plain(words.factor_in_units(scene.findings, design[f"{scene.along}_factor"]))},
+            "automargin": False,
         },
-        yaxis=response_axis(scene, scene.reach, int(1.3 * look.height / look.text)),
-        margin={"r": lettering.widest(labels, look.text) + 10},
+        yaxis=response,
+        margin={
+            "l": ticks.left(response, look), "r": lettering.widest(labels, look.text) + 10, "b": ticks.below(levels, look),
+        },
         shapes=leads,
         annotations=names,
-    )
+    )  # fmt: skip
 
 
 def letters_along(look: Look, beside: float) -> float:
@@ -49,20 +53,10 @@ def response_axis(scene: View, reach: tuple[float, float], letters: int = LETTER
     return {
         "range": reach,
         "title": {"text": lettering.wrapped(original.label(scene.findings), letters, 2)},
-        **({"type": "log", "tickvals": round_ticks(reach)} if scene.is_log else {"nticks": 10}),
+        **({"type": "log", **ticks.logarithmic(reach)} if scene.is_log else ticks.linear(reach)),
         "showline": False,
+        "automargin": False,
     }
-
-
-def round_ticks(reach: tuple[float, float]) -> list[float]:
-    """Return round values between two powers of ten, the fewer of each decade the more decades there are."""
-    low, high = reach
-    for firsts in ((1, 1.2, 1.4, 1.6, 1.8, 2, 2.5, 3, 3.5, 4, 5, 6, 7, 8, 9), (1, 1.5, 2, 3, 4, 5, 7), (1, 2, 5), (1,)):
-        values = [first * 10.0**power for power in range(int(np.floor(low)), int(np.ceil(high)) + 1) for first in firsts]
-        shown = [value for value in values if low <= np.log10(value) <= high]
-        if len(shown) <= MOST_TICKS:
-            break
-    return shown
 
 
 def points(scene: View, look: Look, index: int, level: str) -> dict[str, Any]:

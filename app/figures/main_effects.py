@@ -8,7 +8,7 @@ import plotly.graph_objects as go
 
 from analysis.findings import Findings
 from app import answer_words, original, records, words
-from app.figures import along, lettering, lines
+from app.figures import along, lettering, lines, ticks
 from app.figures.scene import View
 from app.look import Look
 
@@ -37,24 +37,31 @@ def _ground(views: list[View], look: Look) -> dict[str, Any]:
     places = views[0].places(np.concatenate([*bars, views[0].means["estimate"].to_numpy(float)]))
     low, high = float(np.nanmin(places)), float(np.nanmax(places))
     air = 0.06 * (high - low) or 1.0
-    ground = look.layout(yaxis=lines.response_axis(views[0], (low - air, high + air)))
+    response = lines.response_axis(views[0], (low - air, high + air))
+    names = [name for view in views for name in _names(view)]
+    ground = look.layout(yaxis=response, margin={"l": ticks.left(response, look), "b": ticks.below(names, look)})
     axes = {f"xaxis{'' if panel == 0 else 2}": _axis(view, look, panel, ground["xaxis"]) for panel, view in enumerate(views)}
     return {**ground, **axes}
 
 
 def _axis(view: View, look: Look, panel: int, bare: dict[str, Any]) -> dict[str, Any]:
-    letters = max(6, int(44 / len(view.columns)))
     last = float(view.axis.places[-1])
     return {
         **bare,
         "domain": PANELS[panel],
         "anchor": "y",
         "tickvals": view.axis.places,
-        "ticktext": [lettering.wrapped(level, letters) for level in view.columns],
+        "ticktext": _names(view),
+        "automargin": False,
         "range": [-0.5, last + 0.5],
         "showgrid": False,
         "title": {**bare["title"], "text": lettering.plain(words.factor_in_units(view.findings, _factor(view)))},
     }
+
+
+def _names(view: View) -> list[str]:
+    letters = max(6, int(44 / len(view.columns)))
+    return [lettering.wrapped(level, letters) for level in view.columns]
 
 
 def _cells(view: View, look: Look, panel: int) -> dict[str, Any]:

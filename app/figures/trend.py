@@ -12,7 +12,7 @@ from analysis import trends
 from analysis.findings import Findings
 from analysis.rounding import p_value, significant
 from app import original, records, words
-from app.figures import along, lettering, lines
+from app.figures import along, lettering, lines, ticks
 from app.figures.scene import View
 from app.look import Look
 
@@ -126,21 +126,26 @@ def _ground(seen: Amounts, look: Look, levels: list[str]) -> dict[str, Any]:
             for k, level in enumerate(levels)]  # fmt: skip
     labels = [(float(seen.curve(None)["straight"].iloc[-1]), "on average", look.ink), *((y, name, ink) for y, name, ink in ends)]
     known = [label for label in labels if np.isfinite(label[0])]
-    low, high = _reach(seen)
+    response = lines.response_axis(seen.view, _reach(seen))
+    names = [lettering.wrapped(level, 10, 2) for level in seen.view.columns]
     return look.layout(
         xaxis={
             "range": [float(at[0] - air), float(at[-1] + air)],
             "tickvals": seen.places,
-            "ticktext": [lettering.wrapped(level, 10, 2) for level in seen.view.columns],
+            "ticktext": names,
+            "automargin": False,
             "title": {"text": lettering.plain(words.factor_in_units(seen.findings, seen.factor))},
             "showgrid": False,
             **({"type": "log"} if seen.is_log else {}),
         },
-        yaxis=lines.response_axis(seen.view, (low, high)),
-        margin={"r": lettering.widest([name for _, name, _ in known], look.text) + 12},
-        annotations=lines.names_at(known, (low, high), look, seen.view.is_log),
+        yaxis=response,
+        margin={
+            "l": ticks.left(response, look), "r": lettering.widest([name for _, name, _ in known], look.text) + 12,
+            "b": ticks.below(names, look),
+        },
+        annotations=lines.names_at(known, response["range"], look, seen.view.is_log),
         height=min(look.height, 330) if look.width is None else look.height,
-    )
+    )  # fmt: skip
 
 
 def _reach(seen: Amounts) -> tuple[float, float]:
