@@ -12,7 +12,7 @@ from analysis.doubting.spreads import STRICT, Spread
 from analysis.rounding import p_value, shortest, significant
 
 ENOUGH = 12  # residuals from which a shape can be seen at all
-OWN_SPREAD = 5  # observations in a cell from which residuals can be brought to the cell's own spread
+OWN_SPREAD = 10  # observations in a cell from which residuals brought to the cell's own spread keep their shape
 COARSE = 1.5  # steps between values, in residual standard deviations, from which they hide the spread
 SUSPECTED = 0.05  # p that is enough where more than one observation stands far out
 FLAT, HUMPS = -0.6, -1.3  # excess kurtosis
@@ -20,11 +20,12 @@ FLAT, HUMPS = -0.6, -1.3  # excess kurtosis
 
 def odd_shape(signs: Signs, spread: Spread | None) -> Doubt | None:
     """Doubt normal residuals; unequal spread is taken out first, since a mixture of spreads has heavy tails of its own."""
-    residual = _comparable(signs.rest, spread)
+    uneven = spread is not None and min(spread.between, spread.along) < STRICT
+    residual = _comparable(signs.rest, uneven)
     if residual.size < ENOUGH or np.ptp(residual) == 0 or signs.rest.counts.max() < 3:
         return None
     test = shape.shapiro(residual)
-    flat = float(stats.kurtosistest(residual).pvalue) if residual.size >= 20 else 1.0
+    flat = float(stats.kurtosistest(residual).pvalue) if residual.size >= 20 and not uneven else 1.0
     p = 1.0 if test is None else min(1.0, 2 * min(test.p, flat))
     # Two far values leave a heavy tail open; what else is odd then decides.
     if test is None or p >= (STRICT if len(signs.outlying) < 2 else SUSPECTED):
@@ -37,9 +38,9 @@ def odd_shape(signs: Signs, spread: Spread | None) -> Doubt | None:
     )
 
 
-def _comparable(left: Left, spread: Spread | None) -> Vector:
+def _comparable(left: Left, uneven: bool) -> Vector:
     known = np.isfinite(left.even)
-    if spread is None or min(spread.between, spread.along) >= STRICT:
+    if not uneven:
         return left.even[known]
     own = np.bincount(left.cell, left.residual**2) / np.maximum(left.counts - 1, 1)
     usable = known & (left.counts >= OWN_SPREAD)[left.cell] & (own > 0)[left.cell]
