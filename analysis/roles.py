@@ -15,6 +15,7 @@ from analysis.relabelling import relabelled
 from analysis.table import Codes, Column, Levels, Response, Table
 
 _SAMPLE = 5000  # rows looked at before a long column is read as a whole
+_MOST_CROSSED = 40  # columns tried as factors in pairs, those that look most like one
 MOST_LEVELS = 30  # of a factor; a column with more is a number or an identifier
 _BLOCK = re.compile(
     r"\b(block|blk|replicates?|replication|rep|batch|bench|site|run|day|date|shift|litter|farm|tray|plate|round)\b", re.IGNORECASE
@@ -142,6 +143,7 @@ def _factors(looks: Sequence[Look]) -> list[Look]:
     if len(looks) < 2:
         return list(looks)
     scores = {look.place: _factor_score(look) for look in looks}
+    looks = sorted(sorted(looks, key=lambda look: -scores[look.place])[:_MOST_CROSSED], key=lambda look: look.place)
     best = max(combinations(looks, 2), key=lambda pair: scores[pair[0].place] + scores[pair[1].place] + _crossing(*pair))
     return sorted(best, key=lambda look: look.place)
 

@@ -1,8 +1,10 @@
 """Which levels may be one level written in several ways: case, inner spaces, one letter, look-alike letters."""
 
+from collections import defaultdict
 from collections.abc import Mapping, Sequence
 from itertools import combinations
 
+from analysis.reading import numerals
 from analysis.table import Levels, counts
 
 _CYRILLIC_AND_GREEK = str.maketrans(
@@ -10,15 +12,32 @@ _CYRILLIC_AND_GREEK = str.maketrans(
     "ABESIJKMHOPCTYXabesijkmhopctyxABEZHIKMNOPTYXoavikpux",
 )
 _MOST = 300  # levels compared with each other; more are identifiers rather than levels
+_LONGEST = 60  # letters; in longer text one letter is no typing error worth a look
 _SHORTEST = 4  # letters; shorter words differ by one letter too easily
 
 
 def pairs(labels: Sequence[str]) -> tuple[tuple[str, str, str], ...]:
     """Return pairs of levels that look alike, each with what they differ in."""
-    if len(labels) > _MOST:
+    if len(labels) > _MOST or all(map(_is_number, labels)):
         return ()
-    found = ((left, right, difference(left, right)) for left, right in combinations(labels, 2))
+    found = ((labels[i], labels[j], difference(labels[i], labels[j])) for i, j in _near(labels))
     return tuple((left, right, how) for left, right, how in found if how)
+
+
+def _near(labels: Sequence[str]) -> list[tuple[int, int]]:
+    """The places of labels that may look alike: those that share a spelling, or one with a letter left out."""
+    sharing: defaultdict[str, list[int]] = defaultdict(list)
+    for place, label in enumerate(labels):
+        for spelling in _spellings(label):
+            sharing[spelling].append(place)
+    return sorted({pair for places in sharing.values() for pair in combinations(places, 2)})
+
+
+def _spellings(label: str) -> set[str]:
+    """How a label is spelled without what look-alikes differ in."""
+    folded = label.casefold()
+    shorter = {folded[:place] + folded[place + 1 :] for place in range(len(folded))} if len(folded) <= _LONGEST else set()
+    return {folded, squeezed(label), squeezed(label.translate(_CYRILLIC_AND_GREEK)), *shorter}
 
 
 def notes(name: str, labels: Sequence[str]) -> tuple[str, ...]:
@@ -52,11 +71,16 @@ def difference(left: str, right: str) -> str:
     if left.casefold() == right.casefold():
         return "case"
     if squeezed(left) == squeezed(right):
-        return "spaces or hyphens"
+        return "" if _is_number(left) and _is_number(right) else "spaces or hyphens"
     plain_left, plain_right = left.translate(_CYRILLIC_AND_GREEK), right.translate(_CYRILLIC_AND_GREEK)
     if (plain_left, plain_right) != (left, right) and squeezed(plain_left) == squeezed(plain_right):
         return "look-alike letters of two alphabets"
     return "one letter" if one_letter_apart(left.casefold(), right.casefold()) else ""
+
+
+def _is_number(label: str) -> bool:
+    """Whether a label is a number, whose minus sign is no hyphen."""
+    return numerals.find(label) is not None
 
 
 def squeezed(text: str) -> str:

@@ -15,8 +15,10 @@ from collections.abc import Callable
 import numpy as np
 import pandas as pd
 
+from analysis.reading.choices import NOTHING_ASKED, Reading
 from analysis.reading.entry import read_table
 from analysis.refusals import Refusal
+from analysis.roles import guess_roles
 from analysis.table import Table
 from tests.analysis.reading import files
 
@@ -54,8 +56,11 @@ def samples() -> list[bytes]:
     texts = [files.text(rows), files.text(rows, ";", ","), files.text(rows, "\t", end="\r\n"), files.text(rows, "  "), messy, grid]
     quoted = "".join(",".join(f'"{cell}"' for cell in row) + "\n" for row in rows)
     books = [files.xlsx(rows), files.xls(rows), files.ods(rows), files.parquet(frame), files.parquet(frame.astype({"feed": "category"}))]
+    wide = [[f"c{i}" for i in range(300)], *([f"k{(i + j) % 3}" if j < 5 else i * j % 17 / 8 for j in range(300)] for i in range(12))]
+    two = [*rows, (), ("Oil", "", ""), *rows]
     return [
         *(text.encode() for text in texts),
+        *(files.text(table).encode() for table in (wide, two)),
         quoted.encode(),
         messy.encode("utf-16"),
         "Höhe,y\nKöln,1\nUlm,2\n".encode("windows-1252"),
@@ -99,13 +104,25 @@ def _cut(found: bytearray, chance: random.Random) -> None:
 _CHANGES: list[Callable[[bytearray, random.Random], None]] = [_flip, _flip, _insert, _insert, _delete, _repeat, _cut]
 
 
-def check(data: bytes) -> str:
-    """Read one file and look at everything in it; returns what came of it, raises where that is not allowed."""
+def check(data: bytes, chance: random.Random) -> str:
+    """Read one file, and once more with something else asked for; returns what came of it, raises where that is not allowed."""
+    outcome = check_one(data, NOTHING_ASKED)
+    if isinstance(outcome, str):
+        return outcome
+    offered = [alternative.reading for decision in outcome.decisions for alternative in decision.alternatives]
+    if offered:
+        check_one(data, chance.choice(offered))
+    return "read"
+
+
+def check_one(data: bytes, reading: Reading) -> Table | str:
+    """Read one file and look at everything in it; returns the table, or the kind of the refusal."""
     try:
-        table = read_table(data)
+        table = read_table(data, reading=reading)
     except Refusal as refusal:
         one_line(refusal)
         return f"refused: {type(refusal).__name__}"
+    guess_roles(table)
     for column in table.columns:
         _check_levels(table, column.name)
         try:
@@ -118,7 +135,7 @@ def check(data: bytes) -> str:
         assert finite + len(response.missing) == table.rows, "values and missing entries do not add up"
     assert len(set(table.names)) == len(table.names), "two columns share a name"
     table.preview(5)
-    return "read"
+    return table
 
 
 def _check_levels(table: Table, name: str) -> None:
@@ -143,7 +160,7 @@ def main(count: int, first: int = 0) -> int:
         data = mutated(chance.choice(sound), chance)
         start = time.perf_counter()
         try:
-            outcomes[check(data)] += 1
+            outcomes[check(data, chance)] += 1
         except Exception:
             faults += 1
             print(f"file {number}:\n{traceback.format_exc(limit=-4)}")
