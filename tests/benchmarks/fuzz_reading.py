@@ -1,14 +1,14 @@
 """Damaged files without end: `python -m tests.benchmarks.fuzz_reading 20000` reads so many mutated files and counts what happens.
 
-Every file must become a table whose account adds up, or be refused in one line, within five seconds and one GiB. What breaks
+Every file must become a table whose account adds up, or be refused in one line, within five processor seconds and one GiB. What breaks
 that is printed with the number that makes it again, and the exit status is 1.
 """
 
 import collections
+import os
 import random
 import resource
 import sys
-import time
 import traceback
 from collections.abc import Callable
 
@@ -22,7 +22,7 @@ from analysis.roles import guess_roles
 from analysis.table import Table
 from tests.analysis.reading import files
 
-SLOWEST = 5.0  # seconds for one file
+SLOWEST = 5.0  # processor seconds for one file
 MOST_MEMORY = 2**30  # bytes
 _SNIPPETS = [
     b'"',
@@ -152,19 +152,24 @@ def one_line(refusal: Refusal) -> None:
     assert len(told) <= 1000, f"a refusal of {len(told)} characters"
 
 
+def spent() -> float:
+    """Processor seconds of this process and of those that it waited for, whatever else the machine does."""
+    return sum(os.times()[:4])
+
+
 def main(count: int, first: int = 0) -> int:
     """Read so many files, the first of them made from a number."""
     sound, outcomes, faults, slowest = samples(), collections.Counter[str](), 0, 0.0
     for number in range(first, first + count):
         chance = random.Random(number)
         data = mutated(chance.choice(sound), chance)
-        start = time.perf_counter()
+        start = spent()
         try:
             outcomes[check(data, chance)] += 1
         except Exception:
             faults += 1
             print(f"file {number}:\n{traceback.format_exc(limit=-4)}")
-        seconds = time.perf_counter() - start
+        seconds = spent() - start
         slowest = max(slowest, seconds)
         if seconds > SLOWEST:
             faults += 1
