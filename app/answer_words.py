@@ -8,6 +8,7 @@ from analysis.findings import Findings
 from analysis.rounding import percent, significant
 from app import original, words
 
+MEANS, VARIANCE = "Cell means", "Analysis of variance"
 FIGURE, DRAWN = "Figure", "Drawn as"
 LINES, SPREAD, AVERAGES, EFFECTS = "lines", "spread", "averages", "effects"
 FIGURES: Mapping[str, str] = MappingProxyType({LINES: "Lines", SPREAD: "Every cell", AVERAGES: "Averages", EFFECTS: "Effects"})

@@ -152,6 +152,11 @@ def struck(name: str, aside: str) -> str:
     return f"<p class='text'><s>{safe(name)}</s> <span class='quiet'>{safe(aside)}, left out</span></p>"
 
 
+def side_by_side(parts: Iterable[str]) -> str:
+    """Return parts of a page, made here, beside each other."""
+    return f"<div class='beside'>{''.join(f'<div>{part}</div>' for part in parts)}</div>"
+
+
 def table(sheet: Sheet) -> str:
     """Return a table with headings that a screen reader can follow."""
     head = "".join(f"<th scope='col'{_side(sheet, k)}>{safe(name)}</th>" for k, name in enumerate(sheet.columns))
