@@ -12,8 +12,7 @@ from analysis.findings import VERSION
 from analysis.reading import archives
 from analysis.reading.choices import Reading
 from analysis.reading.entry import read_table
-from analysis.refusals import Refusal
-from analysis.refusals.study_files import StudyFileDamaged, StudyFileNewer, StudyFileTooLarge
+from analysis.refusals import Refusal, StudyFileDamaged, StudyFileNewer, StudyFileTooLarge
 from analysis.shapes import fits
 from analysis.study import ROLES, Study
 from analysis.table import Table

@@ -10,14 +10,15 @@ import sys
 import time
 from collections.abc import Mapping
 from dataclasses import dataclass
+from itertools import accumulate
 from pathlib import Path
 
 from analysis import study_file
-from analysis.refusals.study_files import StudyNotKept
+from analysis.refusals import StudyNotKept
 from analysis.study_file import Saved
 
 HOME = "CROSSGRAIN_HOME"  # the variable that names another folder
-MOST = 20  # studies kept; the oldest go first
+MOST, MOST_BYTES = 20, 2_000_000_000  # studies kept, and the size of their tables together; the oldest go first
 _RECORD, _CONTENT = "study.json", "table"
 _NAME = re.compile(r"[0-9a-f]{12}")
 
@@ -32,6 +33,7 @@ class Earlier:
     steps: int  # studies in its history
     content: str  # digest of the file that was brought
     when: float  # seconds since 1970, of the last change
+    size: int  # bytes of the file that was brought
 
 
 def folder() -> Path:
@@ -96,9 +98,11 @@ def _tidy(place: str) -> None:
     """Remove the oldest studies beyond those kept, and others of the same file that were opened and never changed."""
     found = earlier()
     content = next((one.content for one in found if one.place == place), None)
-    untouched = [one for one in found if one.content == content and one.steps == 1 and one.place != place]
-    for one in {*untouched, *found[MOST:]}:
-        forget(one.place)
+    together = accumulate(one.size for one in found)
+    for rank, (one, size) in enumerate(zip(found, together, strict=True)):
+        untouched = one.content == content and one.steps == 1
+        if one.place != place and (untouched or rank >= MOST or size > MOST_BYTES):
+            forget(one.place)
 
 
 def kept(place: str) -> Saved:
@@ -132,7 +136,10 @@ def _told(home: Path) -> Earlier | None:
         for step in record["studies"][: record["open"] + 1]:
             choices |= step["changes"]
         factors = tuple(str(choices[role]) for role in ("row_factor", "column_factor") if choices.get(role))
-        return Earlier(home.name, str(record["name"]), factors, len(record["studies"]), str(record["content"]), file.stat().st_mtime)
+        return Earlier(
+            home.name, str(record["name"]), factors, len(record["studies"]), str(record["content"]), file.stat().st_mtime,
+            (home / _CONTENT).stat().st_size,
+        )  # fmt: skip
     except (OSError, ValueError, KeyError, TypeError):  # another program's file, or one that another window is removing now
         return None
 

@@ -59,6 +59,7 @@ from analysis.refusals.studies import (
     UnknownScale,
     UnreadableChoice,
 )
+from analysis.refusals.study_files import StudyFileDamaged, StudyFileNewer, StudyFileTooLarge, StudyNotKept
 
 __all__ = [
     "BlockIsFactor",
@@ -97,6 +98,10 @@ __all__ = [
     "SameColumnTwice",
     "SheetOutsideWorkbook",
     "SpanOutOfReach",
+    "StudyFileDamaged",
+    "StudyFileNewer",
+    "StudyFileTooLarge",
+    "StudyNotKept",
     "SummaryTable",
     "TemplateUnusable",
     "TooFewObservations",

@@ -14,7 +14,7 @@ import pytest
 import analysis
 from analysis import level_edits, reread, row_edits, study_file
 from analysis.reading.choices import Reading
-from analysis.refusals.study_files import StudyFileDamaged, StudyFileNewer, StudyFileTooLarge
+from analysis.refusals import StudyFileDamaged, StudyFileNewer, StudyFileTooLarge
 from analysis.roles import guess_roles
 from analysis.story import Kept, Story
 from analysis.study import Study

@@ -8,7 +8,7 @@ from pathlib import Path
 import pytest
 
 from analysis import study_file
-from analysis.refusals.study_files import StudyFileDamaged, StudyNotKept
+from analysis.refusals import StudyFileDamaged, StudyNotKept
 from analysis.study_file import Saved
 from app import keeping
 from tests.app import opening
@@ -115,3 +115,20 @@ def test_how_long_ago() -> None:
 
 def test_the_record_is_the_one_of_a_study_file() -> None:
     assert study_file.record(saved()).startswith(b'{"format": "crossgrain study"')
+
+
+def test_large_tables_make_room_sooner(monkeypatch: pytest.MonkeyPatch) -> None:
+    one = len(saved().content)
+    monkeypatch.setattr(keeping, "MOST_BYTES", 3 * one)
+    places = [keeping.new_place() for _ in range(5)]
+    for k, place in enumerate(places):
+        keeping.keep(place, saved(1.0 + k))
+        os.utime(keeping.folder() / place / "study.json", (k, k))
+    assert {kept.place for kept in keeping.earlier()} == set(places[2:])
+
+
+def test_the_table_just_opened_is_never_removed(monkeypatch: pytest.MonkeyPatch) -> None:
+    monkeypatch.setattr(keeping, "MOST_BYTES", 1)
+    place = keeping.new_place()
+    keeping.keep(place, saved())
+    assert [kept.place for kept in keeping.earlier()] == [place]
