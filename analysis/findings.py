@@ -106,6 +106,11 @@ class Findings:
             "scale": self.study.scale,
         }
 
+    @property
+    def residual_sd(self) -> float:
+        """Standard deviation of the residuals as they are, with n - 1 degrees of freedom."""
+        return float(np.sqrt(self.model.residual_ss / (self.observed.size - 1)))
+
     @cached_property
     def cells(self) -> pd.DataFrame:
         """One row a cell, empty ones included."""
@@ -253,6 +258,12 @@ class Findings:
     def holds(self) -> pd.DataFrame:
         """The defensible analyses, one row for each analysis and question; permutation included."""
         return table.holds(self.analysed)
+
+    def hold(self, progress: table.Progress) -> pd.DataFrame:
+        """Return the defensible analyses, telling the progress where they are not computed yet."""
+        if "holds" not in self.__dict__:
+            self.__dict__["holds"] = table.holds(self.analysed, progress)
+        return self.holds
 
     @property
     def holds_sentence(self) -> str:

@@ -62,6 +62,12 @@ def answer(sentence: str, statistic: str, standing: str, known: Sequence[str] = 
     return f"<section class='answer {standing}'>{told}</section>"
 
 
+def doubt(sentence: str, mark: str, amber: bool) -> str:
+    """Return one open doubt, with the words that say how serious it is."""
+    kind = "amber" if amber else "note"
+    return f"<section class='doubt {kind}'><p><b>{safe(mark)}</b> {safe(sentence)}</p></section>"
+
+
 def notice(sentence: str) -> str:
     """Return a sentence that needs the user."""
     return f"<p class='notice' role='alert'>{safe(sentence)}</p>"

@@ -6,8 +6,10 @@ import numpy as np
 import pandas as pd
 import plotly.graph_objects as go
 
+from analysis import envelope
 from analysis.findings import Findings
 from analysis.normal_scores import normal_scores
+from analysis.rounding import percent
 from app import records, words
 from app.figures import lettering, placing
 from app.figures.lines import MANY_POINTS
@@ -88,9 +90,8 @@ def against_bell(findings: Findings, look: Look) -> go.Figure:
     """Draw the ordered residuals against the values that a bell curve of the model's spread would give on average."""
     ordered = findings.observations.sort_values("residual", kind="stable").reset_index(drop=True)
     scores = normal_scores(len(ordered)) * findings.fit["sigma"]
-    if len(ordered) > placing.MOST_POINTS:
-        kept = np.linspace(0, len(ordered) - 1, placing.MOST_POINTS).round().astype(int)
-        ordered, scores = ordered.iloc[kept], scores[kept]
+    kept = np.unique(np.linspace(0, len(ordered) - 1, placing.MOST_POINTS).round().astype(int))
+    ordered, scores = ordered.iloc[kept], scores[kept]
     figure = go.Figure(
         layout=look.layout(
             xaxis={"title": {"text": "expected of a bell curve"}, "nticks": 8, "showgrid": False},
@@ -99,9 +100,19 @@ def against_bell(findings: Findings, look: Look) -> go.Figure:
         )
     )
     ends = [float(scores[0]), float(scores[-1])]
+    figure.add_trace(_band(findings, look, scores, len(findings.observations), kept))
     figure.add_trace(go.Scatter(x=ends, y=ends, mode="lines", line={"color": look.ink, "width": 1}, hoverinfo="skip"))
     figure.add_trace(_dots(ordered, scores, ordered["residual"], look, 0))
     return figure
+
+
+def _band(findings: Findings, look: Look, scores: np.ndarray, count: int, kept: np.ndarray) -> go.Scatter:
+    """Return the stretch in which all residuals would lie at once if they were normal."""
+    low, high = (end[kept] * findings.residual_sd for end in envelope.envelope(count, findings.study.confidence))
+    return go.Scatter(
+        x=[*scores, *scores[::-1]], y=[*high, *low[::-1]], mode="lines", line={"width": 0}, fill="toself", fillcolor=look.shades[0],
+        hoverinfo="skip",
+    )  # fmt: skip
 
 
 def by_cell_caption(findings: Findings) -> str:
@@ -118,7 +129,8 @@ def along_fitted_caption(findings: Findings) -> str:
 
 def against_bell_caption(findings: Findings) -> str:
     """Say what the line is and what to look for."""
-    return "The line is a bell curve of the model’s spread. Ends that leave it are heavy tails, a bow is skew."
+    inside = f"{percent(findings.study.confidence)} of bell-shaped samples of this size lie wholly inside the shade"
+    return f"The line is a bell curve of the model’s spread; {inside}. Ends that leave it are heavy tails, a bow is skew."
 
 
 def by_cell_alt(findings: Findings) -> str:

@@ -20,7 +20,7 @@ KEYS = {
     "lay_out": ("role_response", "role_row", "role_column", "role_block", "role_unit", "grid"),
     "answer": ("answers", "grid", "interaction", "cell_means", "choice_model", "choice_scale", "choice_confidence", "choice_matters"),
     "compare": ("compare_table", "choice_adjust", "grid"),
-    "doubt": ("by_cell", "along_fitted", "against_bell"),
+    "doubt": ("doubt_table", "doubts", "by_cell", "along_fitted", "against_bell"),
     "tell": ("tell_start", "save_deck", "save_workbook", "save_tables", "save_script", "save_figures", "save_report", "save_study"),
 }
 NAMES = [station.name for station in STATIONS]
