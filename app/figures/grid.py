@@ -16,6 +16,7 @@ from app.look import Look, shade, text_on
 GAP = 0.03  # between fields, as a share of a field
 TALLEST, LOWEST = 66, 20  # px, of a field
 ONE_LINE = 40  # px; a lower field has room for one line only
+READ_OUT = 200  # combinations read out one by one
 LETTERS = 98  # across all fields of a row, where a second line has room
 EMPTY, SINGLE, PLAIN = "empty", "single", "plain"
 
@@ -160,9 +161,10 @@ def _read(findings: Findings, cell: Any) -> str:
 
 def counts_alt(design: Mapping[str, Any]) -> str:
     """Read the counts out, combination by combination, for someone who does not see the grid."""
-    told = "; ".join(
+    told = [
         f"{row} with {column}: {n or words.EMPTY}"
-        for row, line in zip(design["row_levels"][:6], design["counts"], strict=False)
-        for column, n in zip(design["column_levels"][:6], line, strict=False)
-    )
-    return f"Grid of counts, {design['row_factor']} by {design['column_factor']}. {told}."
+        for row, line in zip(design["row_levels"], design["counts"], strict=True)
+        for column, n in zip(design["column_levels"], line, strict=True)
+    ]
+    rest = f"; and {len(told) - READ_OUT} more combinations" if len(told) > READ_OUT else ""
+    return f"Grid of counts, {design['row_factor']} by {design['column_factor']}. {'; '.join(told[:READ_OUT])}{rest}."

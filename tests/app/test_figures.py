@@ -205,3 +205,13 @@ def test_captions_and_descriptions_tell_n_and_names() -> None:
     assert "n = 6 in each cell" in interaction.interaction_caption(found)
     assert "95\u202f% confidence intervals" in interaction.interaction_caption(found)
     assert "6 comparisons" in differences.differences_caption(found, "feed")
+
+
+def test_every_count_of_the_grid_is_read_out() -> None:
+    found = opening.findings_of(random_frame(3, 9, 2))
+    told = grid.counts_alt(found.design)
+    for row in found.design["row_levels"]:
+        for column in found.design["column_levels"]:
+            assert f"{row} with {column}: " in told
+    assert "more combinations" not in told
+    assert "; and 25 more combinations." in grid.counts_alt(opening.findings_of(random_frame(15, 15, 2)).design)
