@@ -164,7 +164,7 @@ def test_residuals_are_the_engines(findings: Findings) -> None:
 
 
 def test_quantiles_rise_with_the_ordered_residuals(findings: Findings) -> None:
-    line, points = residuals.against_bell(findings, DESK).data
+    _, line, points = residuals.against_bell(findings, DESK).data
     np.testing.assert_array_equal(points.y, np.sort(findings.observations["residual"]))
     assert np.all(np.diff(points.x) > 0)
     assert points.x[0] == pytest.approx(-points.x[-1])
