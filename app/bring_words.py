@@ -8,6 +8,7 @@ from app.keeping import Earlier
 
 DROP = "Drop a file here or browse for one"
 DROP_HELP = "A table (csv, tsv, txt, xlsx, xls, ods, Parquet), or a study saved at Tell (.crossgrain)."
+KEPT = "Nothing leaves this machine. What you open is kept in a folder of your own until you forget it here, the latest 20 studies."
 AS_IT_STANDS, AS_UNDERSTOOD = "The file as it stands", "As understood"
 DECIDED = "What was decided, and what it could be instead"
 ALSO = "Also seen on the way"

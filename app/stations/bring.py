@@ -24,6 +24,7 @@ def show() -> None:
         stage.complaint(desk.TABLE)
         st.text_area(words.PASTE, height=90, placeholder=words.PASTE_EXAMPLE, **desk.bind_taken("bring_paste", bringing.paste))
         _earlier()
+        st.html(paper.caption(bring_words.KEPT))
         st.radio(
             words.SAMPLE, [sample.file for sample in samples.SAMPLES], index=None, format_func=samples.question_of,
             captions=[words.literal(sample.sentence) for sample in samples.SAMPLES],
