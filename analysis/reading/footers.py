@@ -50,12 +50,13 @@ def is_spread(text: str) -> bool:
     return _SPREAD.fullmatch(text) is not None
 
 
-def clean(body: Body) -> Cleaned:
-    """Take out the rows that hold no observation."""
+def clean(body: Body, first_row: int) -> Cleaned:
+    """Take out the rows that hold no observation; first_row is that of the file below the header, some blank ones may be gone already."""
     blanks = blank_rows(body)
     kept, left_out, decisions = ~blanks, [], []
-    if blanks.any():
-        decisions.append(Decision("blanks", f"{counted(int(blanks.sum()), 'blank row')} passed over."))
+    gone = int(body.rows[-1]) - first_row + 1 - body.rows.size if body.rows.size else 0
+    if blanks.any() or gone > 0:
+        decisions.append(Decision("blanks", f"{counted(int(blanks.sum()) + gone, 'blank row')} passed over."))
     remarks = _remarks(body, blanks)
     left_out += [LeftOut(int(row), "text in its first cell alone: a remark, not an observation") for row in body.rows[remarks]]
     kept &= ~remarks

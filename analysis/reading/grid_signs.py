@@ -113,6 +113,8 @@ class Signs:
         single = self.labels == 1 or (self.labels == 2 and NUMBERED_THING.fullmatch(self.heading.cells[1]) is not None)
         if not single or not self.is_possible():
             return False
+        if len(set(self.over) - {""}) > 1 and not self.spans_repeats:
+            return False  # several measurements or levels under each of several others: names of two rows
         kept = [level for level, total in zip(self.levels, self.totals, strict=True) if not total]
         if self.spans_repeats or self.spanned_by_name or any(_CORNER.fullmatch(cell) for cell in self.corner):
             return True

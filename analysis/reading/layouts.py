@@ -41,7 +41,7 @@ def read(source: Source, account: Table) -> Table:
     cell_lengths.check(heading.cells, heading.row, body)
     heading, body, places = _without_blank_columns(heading, body)
     body, hidden = _without_hidden(body, source.found.hidden)
-    cleaned = footers.clean(body)
+    cleaned = footers.clean(body, source.head[0].row + heading.start)
     body = cleaned.body
     if not body.rows.size:
         raise refusals.HeaderWithoutRows(heading.joined())
