@@ -54,7 +54,7 @@ def _change(signs: Signs, at: int) -> str:
     if without is None:
         return ""
     now = _p_now(signs)
-    told = [f"{_asked(term)} {p_value(now[term])} with it and {p_value(float(answer.p[at]))} without" for term, answer in without.items()]
+    told = [f"{_asked(term)} {p_value(now[term])} with it and {p_value(float(without[term].p[at]))} without" for term in now]
     return f"What hangs on it: {'; '.join(told)}."
 
 

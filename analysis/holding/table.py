@@ -18,6 +18,7 @@ from analysis.scales import scale_named
 COLUMNS = ("analysis", "term", "p", "effect", "lower", "upper", "same", "note")
 AS_ANALYSED = "as analysed"
 LOG, MEASURED = "log scale", "scale as measured"
+LARGEST_POWER = 2.0  # beyond it nobody would analyse
 MOST_BLOCKS = 50  # blocks left out one at a time
 TYPES_TOLD = {
     "type_1": "Type I, the row factor first",
@@ -87,16 +88,24 @@ def _other_types(analysed: Analysed) -> Analyses:
 
 def _scales(analysed: Analysed) -> Analyses:
     names = {LOG: "log", MEASURED: "none"}
-    best = analysed.checks["box_cox"]
-    rounded = None if best is None else round(2 * best["lambda"]) / 2
-    if rounded is not None and rounded not in (0.0, 1.0):
-        names[f"power {fixed(rounded, int(rounded % 1 > 0))}, the best one rounded"] = f"power={rounded:g}"
+    rounded = _best_power(analysed)
+    if rounded is not None:
+        names[f"power {fixed(rounded, int(rounded % 1 > 0))} (best, rounded)"] = f"power={rounded:g}"
     for told, name in names.items():
         if name == analysed.scale.name:
             continue
         other = refits.on_scale(analysed.layout, scale_named(name))
         if other is not None:
             yield told, partial(fits.entries, analysed, other, analysed.used)
+
+
+def _best_power(analysed: Analysed) -> float | None:
+    """Return the best power rounded to halves; None where the scale as measured or the logarithm suits as well, or none in use does."""
+    best = analysed.checks["box_cox"]
+    if best is None or any(best["lower"] <= power <= best["upper"] for power in (0.0, 1.0)):
+        return None
+    rounded = round(2 * best["lambda"]) / 2
+    return rounded if rounded not in (0.0, 1.0) and abs(rounded) <= LARGEST_POWER else None
 
 
 def _other_rows(analysed: Analysed) -> Analyses:
