@@ -137,7 +137,7 @@ def _end(scene: View, level: str) -> tuple[float, float]:
 def points_told(scene: Scene) -> str:
     """Return what the points are: every observation, or how they were thinned."""
     several = words.units_word(scene.findings)
-    some = f"{several}, of a cell with more than {placing.MOST_POINTS} only so many, evenly by size"
+    some = f"{several}, of a cell with more than {scene.most} only so many, evenly by size"
     return some if scene.is_thinned else f"every {words.unit_word(scene.findings)}"
 
 

@@ -6,6 +6,7 @@ from numpy.typing import NDArray
 
 Positions = NDArray[np.float64]
 MOST_POINTS = 2_000  # of one cell; more hide each other and slow the page
+MOST_DRAWN = 12_000  # of all cells together, once a cell holds more than can be drawn
 GOLDEN = 0.6180339887498949  # steps of this share of a turn never bunch, and need no random numbers
 
 
@@ -26,11 +27,16 @@ def spread(count: int, half_width: float) -> Positions:
     return offsets
 
 
-def thinned(points: pd.DataFrame) -> pd.DataFrame:
-    """Return at most MOST_POINTS rows of one cell's observations, evenly along their order of size, both ends kept."""
-    if len(points) <= MOST_POINTS:
+def most_of_a_cell(largest: int, cells: int) -> int:
+    """Return how many observations of a cell are drawn at most, given the largest count and the number of filled cells."""
+    return MOST_POINTS if largest <= MOST_POINTS else max(2, min(MOST_POINTS, MOST_DRAWN // cells))
+
+
+def thinned(points: pd.DataFrame, most: int) -> pd.DataFrame:
+    """Return at most so many rows of one cell's observations, evenly along their order of size, both ends kept."""
+    if len(points) <= most:
         return points
-    places = np.linspace(0, len(points) - 1, MOST_POINTS).round().astype(np.intp)
+    places = np.linspace(0, len(points) - 1, most).round().astype(np.intp)
     kept = np.sort(np.argsort(points["value"].to_numpy(), kind="stable")[places])
     return points.iloc[kept]
 

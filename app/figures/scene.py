@@ -40,7 +40,13 @@ class Scene:
     def observations(self) -> pd.DataFrame:
         """The observations drawn, thinned where a cell holds very many."""
         cells = self.findings.observations.groupby(["row", "column"], sort=False, observed=True)
-        return pd.concat([placing.thinned(points) for _, points in cells])
+        return pd.concat([placing.thinned(points, self.most) for _, points in cells])
+
+    @cached_property
+    def most(self) -> int:
+        """How many observations of a cell are drawn at most."""
+        n = self.findings.cells["n"]
+        return placing.most_of_a_cell(int(n.max()), int((n > 0).sum()))
 
     @property
     def is_thinned(self) -> bool:

@@ -94,6 +94,14 @@ def test_very_many_points_are_thinned_and_the_caption_says_so() -> None:
     assert "every observation" in interaction.interaction_caption(opening.findings(opening.sample()))
 
 
+def test_many_cells_share_the_points_that_a_figure_can_hold() -> None:
+    found = opening.findings_of(random_frame(3, 4, 2_100))
+    figure = interaction.interaction(found, DESK)
+    assert sum(len(points.y) for points in figure.data[:3]) == placing.MOST_DRAWN
+    assert "1000 only so many" in interaction.interaction_caption(found)
+    assert placing.most_of_a_cell(2_000, 12) == placing.MOST_POINTS  # nothing is thinned up to 2,000 in a cell
+
+
 def test_an_empty_cell_leaves_a_gap() -> None:
     frame = random_frame(3, 3, 4)
     found = opening.findings_of(frame[~((frame["a"] == "a1") & (frame["b"] == "b2"))])
