@@ -49,7 +49,7 @@ def classical(layout: Design) -> float:
 def hc3(layout: Design) -> float:
     """Return the p-value of the HC3 test."""
     found = checking.robust_tests(layout, checking.Residuals(layout, stratum_of(layout.observed, layout.strata)))
-    return float(found.set_index("term").loc[INTERACTION, "p"])
+    return float(found["p"].to_numpy(float)[found["term"].tolist().index(INTERACTION)])
 
 
 def welch(layout: Design) -> float:
