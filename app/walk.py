@@ -5,6 +5,7 @@ from dataclasses import replace
 from pathlib import Path
 
 import pandas as pd
+import plotly.graph_objects as go
 import streamlit as st
 
 from app import following, paper, stage, tell_words, words
@@ -69,24 +70,32 @@ def _is_hidden(place: int) -> bool:
 
 
 def show(told: Sequence[Board]) -> None:
-    """Show the board that the address names, the nearest one where there is none of that number."""
-    asked = st.query_params[PLACE]
+    """Show the board that the address names, and the key that leaves."""
+    st.html(GROUND)
+    _turn(told)
+    with st.container(key="walk_leave"):
+        st.button(words.LEAVE, key="tell_leave", shortcut="Escape", on_click=leave, type="tertiary")
+
+
+def _turn(told: Sequence[Board]) -> None:
+    """Show one board, the nearest one where there is none of the number asked for."""
+    asked = st.query_params.get(PLACE, "1")
     place = min(max(int(asked) if asked.isdecimal() else 1, 1), len(told))
     board, hidden = told[place - 1], _is_hidden(place)
     following.follow(name() or _named(told), told, place, hidden)
-    st.html(GROUND)
     with st.container(key="tell_claim"):
-        size = "long" if len(board.claim) > LONG else ""
-        st.html(
-            paper.claim(
-                tell_words.LOOK_FIRST if hidden else board.claim, "waits" if hidden else "longest" if len(board.claim) > LONGEST else size
-            )
-        )
+        size = "longest" if len(board.claim) > LONGEST else "long" if len(board.claim) > LONG else ""
+        st.html(paper.claim(tell_words.LOOK_FIRST if hidden else board.claim, "waits" if hidden else size))
     with st.container(key="walk_board"):
-        _board(board)
+        _board(board, place)
     drawn = f" · {board.drawn}" if board.figure is not None and board.drawn else ""
     st.html(paper.evidence("" if hidden else board.evidence + drawn, words.place_of(place, len(told))))
     _keys(place, len(told))
+
+
+@st.cache_resource(max_entries=64, show_spinner=False)
+def _drawn(walk: str | None, place: int, look_name: str, _board: Board, _look: Look) -> go.Figure:
+    return _board.figure(_look).update_layout(height=None, autosize=True) if _board.figure is not None else go.Figure()
 
 
 def _named(told: Sequence[Board]) -> str:
@@ -95,10 +104,11 @@ def _named(told: Sequence[Board]) -> str:
     return st.query_params[WALK]
 
 
-def _board(board: Board) -> None:
+def _board(board: Board, place: int) -> None:
     if board.figure is not None:
-        drawn = board.figure(far_away()).update_layout(height=None, autosize=True)
-        st.plotly_chart(drawn, key=f"walk_{board.kind}", theme=None, width="stretch", height="stretch", config=stage.PLAIN, alt=board.alt)
+        look = far_away()
+        drawn = _drawn(name(), place, look.paper, board, look)
+        st.plotly_chart(drawn, key="walk_figure", theme=None, width="stretch", height="stretch", config=stage.PLAIN, alt=board.alt)
     elif board.table is not None:
         shown = board.table.head(rows_that_fit(board.table))
         numeric = numbers_in(board.table)
@@ -140,7 +150,6 @@ def _keys(place: int, last: int) -> None:
         st.button(words.NEXT, key="tell_next", shortcut=FORWARD[0], on_click=go_to, args=(on,), type="tertiary")
         st.button(tell_words.HIDE, key="tell_hide", shortcut=HIDES, on_click=hide, args=(place,), type="tertiary")
         st.link_button(tell_words.SPEAKER, f"?{SPEAKER}={name()}", type="tertiary")
-        st.button(words.LEAVE, key="tell_leave", shortcut="Escape", on_click=leave, type="tertiary")
     with st.container(key="walk_more_keys"):
         for key, goal in (("Home", 1), ("End", last), *((k, on) for k in FORWARD[1:]), *((k, back) for k in BACKWARD[1:])):
             st.button(key, key=f"tell_{key.lower()}", shortcut=key, on_click=go_to, args=(goal,))

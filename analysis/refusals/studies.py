@@ -203,8 +203,8 @@ class NoBrowser(Refusal):
 
     def __init__(self) -> None:
         super().__init__(
-            "A picture needs a browser of the Chromium family (Chrome, Edge, Chromium, Brave) and none was found: install one, or take the "
-            "figure with the camera above it or from the slides, which hold it as a chart of their own."
+            "A picture needs a browser of the Chromium family (Chrome, Edge, Chromium, Brave) and none was found: let the set-up fetch one "
+            "(python app --fetch-browser), or take figures with the camera above them, which is set to the same size and resolution."
         )
 
 

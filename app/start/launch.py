@@ -12,6 +12,8 @@ from app.start.problems import SetupProblem
 HOST = "127.0.0.1"
 FIRST_PORT = 8600
 PORTS_TRIED = 50
+# What the renderer of pictures brings along to fetch a browser of its own, which it then finds by itself.
+FETCH = "from choreographer.cli._cli_utils import get_chrome_cli; get_chrome_cli()"
 
 
 def main(arguments: Sequence[str]) -> int:
@@ -26,15 +28,20 @@ def main(arguments: Sequence[str]) -> int:
     except KeyboardInterrupt:
         sys.stderr.write("\nStopped; the next start sets up afresh.\n")
         return 130
+    if options.fetch:
+        return environment.become(python, "-c", FETCH)
     wish = [] if options.browser else ["--no-browser"]
     return environment.become(python, "-m", "app.start.serve", "--port", str(port), *wish)
 
 
 def parse(arguments: Sequence[str]) -> argparse.Namespace:
-    """Return the options `port` (None for a free one) and `browser`."""
+    """Return the options `port` (None for a free one), `browser` and `fetch`."""
     parser = argparse.ArgumentParser(prog="python app", description="Set up what is missing and open Crossgrain in the browser.")
     parser.add_argument("--port", type=int, metavar="N", help=f"the port to serve at (default: the first free one from {FIRST_PORT} on)")
     parser.add_argument("--no-browser", dest="browser", action="store_false", help="serve without opening the browser")
+    parser.add_argument(
+        "--fetch-browser", dest="fetch", action="store_true", help="fetch a browser that draws pictures, and do nothing else"
+    )
     return parser.parse_args(arguments)
 
 

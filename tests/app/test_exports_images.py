@@ -28,7 +28,7 @@ def test_png_and_svg_of_a_figure() -> None:
 def test_without_a_browser_there_are_two_ways_out(monkeypatch: pytest.MonkeyPatch) -> None:
     monkeypatch.setattr(images.Chromium, "find_browser", lambda **_: None)
     monkeypatch.delenv("BROWSER_PATH", raising=False)
-    with pytest.raises(NoBrowser, match="install one, or take the figure with the camera above it or from the slides"):
+    with pytest.raises(NoBrowser, match=r"let the set-up fetch one .*, or take figures with the camera above them"):
         images.png(go.Figure())
 
 

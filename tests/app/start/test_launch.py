@@ -1,7 +1,10 @@
 """The options of `python app`, and the port that it takes."""
 
+import ast
+import importlib
 import socket
 from collections.abc import Iterator
+from pathlib import Path
 
 import pytest
 
@@ -45,3 +48,13 @@ def test_a_long_run_of_taken_ports_is_told(taken: int, monkeypatch: pytest.Monke
 def test_nothing_else_is_passed_on() -> None:
     with pytest.raises(SystemExit):
         launch.parse(["--server.address", "0.0.0.0"])
+
+
+def test_a_browser_is_fetched_into_the_environment_and_nothing_is_served(monkeypatch: pytest.MonkeyPatch) -> None:
+    became: list[str] = []
+    monkeypatch.setattr(launch.environment, "prepare", lambda pins: Path("python"))
+    monkeypatch.setattr(launch.environment, "become", lambda python, *words: became.extend(words) or 0)
+    assert launch.main(["--fetch-browser"]) == 0
+    assert became == ["-c", launch.FETCH]
+    names = [node for node in ast.walk(ast.parse(launch.FETCH)) if isinstance(node, ast.ImportFrom)]
+    assert all(hasattr(importlib.import_module(str(node.module)), name.name) for node in names for name in node.names)
