@@ -18,7 +18,9 @@ _SAMPLE = 5000  # rows looked at before a long column is read as a whole
 _MOST_CROSSED = 40  # columns tried as factors in pairs, those that look most like one
 MOST_LEVELS = 30  # of a factor; a column with more is a number or an identifier
 _BLOCK = re.compile(
-    r"\b(block|blk|replicates?|replication|rep|batch|bench|site|run|day|date|shift|litter|farm|tray|plate|round)\b", re.IGNORECASE
+    r"\b(block|blk|replicates?|replication|rep|batch|bench|site|run|day|date|shift|litter|farm|tray|plate|round|chamber|lot|sampled|"
+    r"bloc|bloque|blocco|blok|wiederholung|wdh|répétition|repetición|charge|lote|lotto|datum|fecha|data|jour|tag)\b",
+    re.IGNORECASE,
 )
 _UNIT = re.compile(
     r"\b(unit|plot|pot|plant|animal|subject|patient|cage|pen|tank|tree|vine|mouse|rat|sample|id|dish|vessel)s?\b", re.IGNORECASE
@@ -28,7 +30,16 @@ _ORDER = re.compile(
 )
 
 
-_PERSON = re.compile(r"\b(\w+ by|operator|observer|technician|person|reader|assessor|scorer|initials|who)\b", re.IGNORECASE)
+_PERSON = re.compile(
+    r"\b(\w+ by|op|operator|observer|technician|person|reader|assessor|scorer|initials|who|opérateur|operateur|operador|operatore|"
+    r"bearbeiter(in)?|prüfer|technicien|técnico|tecnico|waarnemer)\b",
+    re.IGNORECASE,
+)
+_REMARK = re.compile(
+    r"\b(remarks?|notes?|comments?|bemerkung(en)?|anmerkung|kommentar|remarques?|commentaires?|observaciones|nota|comentarios?|osservazioni|"
+    r"opmerking(en)?)\b",
+    re.IGNORECASE,
+)
 
 
 @dataclass(frozen=True)
@@ -91,6 +102,11 @@ class Look:
         return bool(counts.min() >= 0.8 * counts.max())
 
     @cached_property
+    def has_blanks(self) -> bool:
+        """Whether any row is blank, which a factor of an experiment hardly ever is."""
+        return bool((self.levels.codes < 0).any())
+
+    @cached_property
     def has_decimals(self) -> bool:
         """Whether any of the first numbers is not whole."""
         if self.response is None:
@@ -151,15 +167,16 @@ def _factors(looks: Sequence[Look]) -> list[Look]:
 def _factor_score(look: Look) -> float:
     """How much a column looks like a factor: words or few numbers, balanced, not named like a block, a person, a unit or a run order."""
     score = 1.0 * (not look.column.looks_numeric) + 0.5 * look.is_balanced + 0.5 * (look.count <= 8) - 0.05 * look.place
-    score -= 3.0 * (look.named(_BLOCK) or look.named(_PERSON))
+    score -= 3.0 * (look.named(_BLOCK) or look.named(_PERSON) or look.named(_REMARK)) + 1.0 * look.has_blanks
     return score - 3.0 * (look.named(_UNIT) or look.named(_ORDER)) - 1.0 * look.has_decimals
 
 
 def _crossing(left: Look, right: Look) -> float:
-    """How fully two columns are crossed, and whether combinations are repeated."""
-    filled = len(np.unique(_joint(left.levels.codes, right.levels.codes)))
-    share = filled / (left.count * right.count)
-    return 3.0 * share + 0.5 * (filled <= left.rows / 2)
+    """How fully two columns are crossed, whether combinations are repeated, and whether equally often, as chance hardly makes them."""
+    counts = np.unique(_joint(left.levels.codes, right.levels.codes), return_counts=True)[1]
+    share = counts.size / (left.count * right.count)
+    equal = counts.size > 1 and counts.min() == counts.max() > 1
+    return 3.0 * share + 0.5 * (counts.size <= left.rows / 2) + 1.0 * equal
 
 
 def _joint(left: Codes, right: Codes) -> Codes:
