@@ -77,7 +77,8 @@ def out_of_sight(page: Page) -> list[str]:
             };
             const scrolled = [document.documentElement, document.querySelector('[data-testid=stMain]')]
                 .map(part => part.scrollHeight - part.clientHeight).filter(more => more > 1).map(more => `scrolls ${more}`);
-            return [...of('h1.claim', '.st-key-tell_claim'), ...of('.evidence p', '.evidence'), ...of('.evidence', '[data-testid=stMain]'), ...scrolled,
+            return [...scrolled, ...of('h1.claim', '.st-key-tell_claim'),
+                ...of('.evidence p', '.evidence'), ...of('.evidence', '[data-testid=stMain]'),
                 ...of('.st-key-walk_board table, .st-key-walk_board .js-plotly-plot', '.st-key-walk_board')];
         }"""
     )
