@@ -37,12 +37,13 @@ def belief(findings: Findings) -> Board:
     table = analyses(findings)
     doubts = list(findings.doubts["sentence"])
     otherwise = f"“{OTHERWISE.strip()}”: an analysis that answers otherwise"
+    answers = [f"{answer.sentence} {answer.statistic}" for answer in findings.answers]
     return Board(
         "belief",
         "belief",
         belief_claim(findings),
         f"{doubts_line(findings)} · p for each question",
-        speaker.notes(findings, [findings.holds_sentence, otherwise, *(f"Doubt: {sentence}" for sentence in doubts)]),
+        speaker.notes(findings, [*answers, findings.holds_sentence, otherwise, *(f"Doubt: {sentence}" for sentence in doubts)]),
         f"Table of {len(table)} analyses with their p-values on {tabled.factors_with_levels(findings)}; {tabled.numbers(findings)}. "
         f"{findings.holds_sentence}",
         table=table,

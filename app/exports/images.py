@@ -1,28 +1,23 @@
 """Pictures of figures as files: PNG, TIFF, SVG and PDF, drawn by an installed browser without touching the network."""
 
-import asyncio
 import io
-import json
 import os
 from collections.abc import Sequence
-from concurrent.futures import ThreadPoolExecutor
 from dataclasses import dataclass
 from functools import lru_cache
 from pathlib import Path
 
-import kaleido
 import plotly.graph_objects as go
 from choreographer.browsers.chromium import Chromium
 from PIL import Image
 
 from analysis.refusals import NoBrowser
+from app.exports import renderer
+from app.exports.renderer import Asked
 
 WIDE, TALL = 1152, 648  # px, where the figure names no size of its own
-NOWHERE = "http://127.0.0.1:9"  # the discard port of this machine: whatever the browser asks of the network ends here
 PX_TO_THE_INCH = 96  # as browsers count them
 KEPT = 16  # sets of files that are kept, so that the same slides are built without the browser the second time
-
-Asked = tuple[str, tuple[tuple[str, str | float], ...]]
 
 
 @dataclass(frozen=True)
@@ -52,7 +47,7 @@ def browser() -> str:
 
 def png(figure: go.Figure, dpi: int = 300) -> bytes:
     """Return a PNG at a resolution in dots per inch, which the file names; raises NoBrowser."""
-    return pngs_and_svgs([figure], dpi)[0][0]
+    return _tagged(_drawn([Drawing(figure, "png", dpi / PX_TO_THE_INCH)])[0], dpi)
 
 
 def svg(figure: go.Figure) -> bytes:
@@ -61,14 +56,14 @@ def svg(figure: go.Figure) -> bytes:
 
 
 def pngs_and_svgs(figures: Sequence[go.Figure], dpi: int = 300) -> tuple[tuple[bytes, bytes], ...]:
-    """Return each figure as PNG and as SVG, all drawn by one start of the browser; raises NoBrowser."""
+    """Return each figure as PNG and as SVG; raises NoBrowser."""
     drawings = [drawing for figure in figures for drawing in (Drawing(figure, "png", dpi / PX_TO_THE_INCH), Drawing(figure, "svg"))]
     files = _drawn(drawings)
     return tuple((_tagged(png_file, dpi), svg_file) for png_file, svg_file in zip(files[::2], files[1::2], strict=True))
 
 
 def in_every_format(figures: Sequence[go.Figure], dpi: int, transparent: bool = False) -> tuple[dict[str, bytes], ...]:
-    """Return each figure as PNG, TIFF, SVG and PDF by the endings of these formats, all drawn by one start of the browser.
+    """Return each figure as PNG, TIFF, SVG and PDF by the endings of these formats.
 
     PNG and TIFF name their resolution; the TIFF is flat, without transparency, and packed by LZW. Raises NoBrowser.
     """
@@ -104,12 +99,4 @@ def _drawn(drawings: Sequence[Drawing]) -> list[bytes]:
 
 @lru_cache(maxsize=KEPT)
 def _files(asked: tuple[Asked, ...], path: str) -> tuple[bytes, ...]:
-    """Draw in a thread of its own, since the caller's may already run a loop of events."""
-    with ThreadPoolExecutor(1) as thread:
-        return thread.submit(asyncio.run, _draw(asked, path)).result()
-
-
-async def _draw(asked: Sequence[Asked], path: str) -> tuple[bytes, ...]:
-    # Neither formulas nor fonts come from elsewhere: no MathJax, and a proxy that leads nowhere.
-    async with kaleido.Kaleido(path=path, mathjax=False, proxy_server=NOWHERE) as renderer:
-        return tuple([await renderer.calc_fig(json.loads(figure), dict(options)) for figure, options in asked])
+    return renderer.draw(asked, path)

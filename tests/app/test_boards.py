@@ -114,7 +114,9 @@ def test_belief_shows_every_analysis_with_its_p(name: str) -> None:
 
 
 def test_open_doubts_come_first_in_what_is_next() -> None:
-    findings = designs.design("logarithm")
+    table = designs.frame(designs.LIGHT, designs.FEED, lambda i, j: designs.MEANS[i, j], lambda i, j: 6, 1.5)
+    table.loc[0, "yield"] += 40.0  # a slip of the hand
+    findings = designs.findings_of(table)
     assert (findings.doubts["level"] == "amber").any()
     told = boards.story(findings)[-1]
     assert told.claim == "Next: settle what is in doubt before this is told any further."

@@ -132,6 +132,7 @@ def test_keys_move_hide_and_leave_and_the_speaker_follows(running: Browser, addr
     expect(speaker.locator(".speaker .place")).to_contain_text(f"3 of {last}")
     page.reload()
     page.locator(".evidence .place").get_by_text(f"3 of {last}").wait_for()
+    driving.settle(page)
     page.keyboard.press("h")
     page.locator("h1.claim:not(.waits)").wait_for()
     page.keyboard.press("Escape")
