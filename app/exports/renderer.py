@@ -3,8 +3,8 @@
 import asyncio
 import atexit
 import json
-import logging
 from collections.abc import Coroutine, Sequence
+from concurrent.futures import wait
 from functools import lru_cache
 from threading import Lock, Thread
 from typing import Any
@@ -36,18 +36,18 @@ class Renderer:
     async def _draw(self, asked: Sequence[Asked]) -> tuple[bytes, ...]:
         return tuple([await self._browser.calc_fig(json.loads(figure), dict(options)) for figure, options in asked])
 
-    def _done(self, work: Coroutine[Any, Any, Any], patience: float | None = None) -> Any:
-        return asyncio.run_coroutine_threadsafe(work, self._loop).result(patience)
+    def _done(self, work: Coroutine[Any, Any, Any]) -> Any:
+        return asyncio.run_coroutine_threadsafe(work, self._loop).result()
+
+    @property
+    def alive(self) -> bool:
+        """Whether the browser still runs."""
+        return bool(self._browser.subprocess.poll() is None)
 
     def close(self) -> None:
-        """Close the browser; one that is gone already, or will not go, is left to the system."""
-        atexit.unregister(self.close)
-        try:
-            self._done(self._browser.close(), PARTING)
-        except Exception:  # whatever closing fails with, the browser is not needed any longer, and nobody waits for it
-            logging.getLogger(__name__).info("The browser for pictures did not close by itself.", exc_info=True)
-        finally:
-            self._loop.call_soon_threadsafe(self._loop.stop)
+        """Close the browser; one that will not go within a few seconds is left to the system."""
+        wait([asyncio.run_coroutine_threadsafe(self._browser.close(), self._loop)], PARTING)
+        self._loop.call_soon_threadsafe(self._loop.stop)
 
 
 _one_at_a_time = Lock()
@@ -59,14 +59,8 @@ def _kept(path: str) -> Renderer:
 
 
 def draw(asked: Sequence[Asked], path: str) -> tuple[bytes, ...]:
-    """Draw figures by the browser at this path, in a new one where the one that was kept has gone since."""
+    """Draw figures by the browser at this path, by a new one where the one that was kept has gone since."""
     with _one_at_a_time:
-        fresh = not _kept.cache_info().currsize
-        try:
-            return _kept(path).draw(asked)
-        except Exception:
-            if fresh:
-                raise
-            _kept(path).close()
+        if not _kept(path).alive:
             _kept.cache_clear()
-            return _kept(path).draw(asked)
+        return _kept(path).draw(asked)

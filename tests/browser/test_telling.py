@@ -9,7 +9,7 @@ from playwright.sync_api import Browser, Page, expect
 from tests.app import designs
 from tests.browser import driving
 
-SIZES = [(1280, 720), (1366, 768), (1920, 1080)]
+SHOWINGS = [((1280, 720), "light"), ((1366, 768), "dark"), ((1920, 1080), "light")]  # window and theme
 SMALLEST = 1 / 40  # of the height of the screen, for every letter
 
 
@@ -96,8 +96,7 @@ def look_through(page: Page, boards: int) -> None:
 
 
 @pytest.mark.browser
-@pytest.mark.parametrize("scheme", ["light", "dark"])
-@pytest.mark.parametrize("size", SIZES, ids=lambda size: f"{size[0]}x{size[1]}")
+@pytest.mark.parametrize(("size", "scheme"), SHOWINGS, ids=str)
 def test_every_board_is_legible_from_afar(running: Browser, address: str, size: tuple[int, int], scheme: str) -> None:
     page = driving.open_page(running, address, *size, scheme)
     driving.open_sample(page)
