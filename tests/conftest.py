@@ -19,11 +19,11 @@ hypothesis.settings.load_profile("crossgrain")
 
 
 def pytest_collection_modifyitems(items: list[pytest.Item]) -> None:
-    """Mark what lies in tests/browser and let it start first, so that two run to the end; skip what needs a browser where there is none."""
+    """Mark what lies in tests/browser, let long files start first, and skip what needs a browser where there is none."""
     for item in items:
         if ROOT / "tests" / "browser" in item.path.parents:
             item.add_marker(pytest.mark.browser)
-    items.sort(key=lambda item: item.get_closest_marker("browser") is None)
+    items.sort(key=lambda item: (item.get_closest_marker("browser") is None, item.path.stem != "test_linters"))
     wanting = [item for item in items if item.get_closest_marker("browser")]
     if wanting and browser_path() is None:
         for item in wanting:

@@ -1,5 +1,6 @@
 """How a real browser is driven through the dashboard: the server started on a free port, the page opened, a station reached."""
 
+import itertools
 import socket
 import subprocess
 import sys
@@ -16,6 +17,7 @@ ROOT = Path(__file__).resolve().parents[2]
 PATIENCE = 60  # seconds before something counts as never coming
 ARGUMENTS = ["--no-sandbox", "--disable-gpu", "--disable-dev-shm-usage"]
 READY = "h1.station"
+ASKED = itertools.count()  # which wait a moment of stillness belongs to
 
 
 def free_port() -> int:
@@ -85,15 +87,18 @@ def go(page: Page, title: str) -> None:
 
 
 def settle(page: Page) -> None:
-    """Wait until no script runs, nothing is stale and every figure is drawn."""
+    """Wait until no script has run for a moment, nothing is stale and every figure is drawn; a click takes a moment to reach the server."""
     page.wait_for_function(
-        """() => {
+        """asked => {
             const app = document.querySelector('[data-testid="stApp"]');
             const waiting = '[data-testid="stSkeleton"], [data-stale="true"], [data-testid="stStatusWidget"]';
             const figures = [...document.querySelectorAll('[data-testid="stPlotlyChart"]')];
-            return app && app.dataset.testScriptState === 'notRunning' && !document.querySelector(waiting)
+            const still = app && app.dataset.testScriptState === 'notRunning' && !document.querySelector(waiting)
                 && figures.every(figure => figure.querySelector('.main-svg'));
-        }"""
+            if (!still || window.stillFor?.asked !== asked) window.stillFor = {asked, since: performance.now()};
+            return still && performance.now() - window.stillFor.since > 250;
+        }""",
+        arg=next(ASKED),
     )
 
 

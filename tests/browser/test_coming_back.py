@@ -42,10 +42,10 @@ def test_a_study_outlives_reload_restart_and_goes_along_as_a_file(chromium: str,
             page.goto(there)
             assert answers(page) == told
             page.locator(".st-key-undo button").click()
+            page.wait_for_function("told => document.querySelector('.st-key-answers')?.innerText !== told", arg=told)
             driving.settle(page)
             page.locator(".st-key-redo button").click()
-            driving.settle(page)
-            assert answers(page) == told
+            page.wait_for_function("told => document.querySelector('.st-key-answers')?.innerText === told", arg=told)
             other = driving.open_page(running, address)
             expect(other.locator(".st-key-earlier")).to_contain_text("seeds.csv, light by feed")
             driving.drop(other, study)

@@ -83,10 +83,10 @@ def test_from_a_dropped_file_to_slides_and_workbook(page: Page, pots: Path, tmp_
     driving.choose(page, "role_row", "light")
     expect(page.locator(".st-key-role_column input")).to_have_value("feed")
     driving.go(page, "Answer")
-    told = page.locator(".st-key-answers").inner_text()
+    told = page.locator(".st-key-answers")
     for answer in found.answers:
-        assert answer.sentence in told
-        assert answer.statistic in told
+        expect(told).to_contain_text(answer.sentence, timeout=driving.PATIENCE * 1000)
+        expect(told).to_contain_text(answer.statistic)
     driving.go(page, "Compare")
     asked = words.family("feed", found.study.factors)
     driving.choose(page, "compare_family", asked)
