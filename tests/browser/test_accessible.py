@@ -1,7 +1,5 @@
 """Whoever works with a screen reader or the keyboard finds every control named, every text legible and the focus in sight."""
 
-from collections.abc import Iterator
-
 import pytest
 from axe_playwright_python.sync_playwright import Axe
 from playwright.sync_api import Browser, Page
@@ -29,18 +27,6 @@ UNSEEN = """() => {
         || (parseFloat(style.borderTopWidth) > 0 && style.borderTopColor === colour));
     return seen ? null : at.outerHTML.slice(0, 200);
 }"""
-
-
-@pytest.fixture(scope="module")
-def address() -> Iterator[str]:
-    with driving.dashboard() as told:
-        yield told
-
-
-@pytest.fixture(scope="module")
-def running(chromium: str) -> Iterator[Browser]:
-    with driving.browser(chromium) as started:
-        yield started
 
 
 def grave(page: Page) -> list[str]:

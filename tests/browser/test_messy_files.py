@@ -1,32 +1,12 @@
 """Six untidy files dropped in a real browser: a decision of the reader, a level and a row mended in each, and the right grid read."""
 
-from collections.abc import Iterator
 from pathlib import Path
 
 import pytest
-from playwright.sync_api import Browser, Page, expect
+from playwright.sync_api import Page, expect
 
 from tests.browser import driving
 from tests.browser.messy_files import MESSES, Mess
-
-
-@pytest.fixture(scope="module")
-def address() -> Iterator[str]:
-    with driving.dashboard() as told:
-        yield told
-
-
-@pytest.fixture(scope="module")
-def running(chromium: str) -> Iterator[Browser]:
-    with driving.browser(chromium) as started:
-        yield started
-
-
-@pytest.fixture
-def page(running: Browser, address: str) -> Iterator[Page]:
-    opened = driving.open_page(running, address)
-    yield opened
-    opened.context.close()
 
 
 def counts_read_out(page: Page) -> str:

@@ -1,7 +1,6 @@
 """The whole road in a real browser: drop a file, read the answers, compare, take the files away, and find the engine's numbers in them."""
 
 import io
-from collections.abc import Iterator
 from pathlib import Path
 
 import openpyxl
@@ -17,25 +16,6 @@ from tests.app import opening
 from tests.browser import driving
 
 SIZES = [(1366, 768), (1920, 1080)]
-
-
-@pytest.fixture(scope="module")
-def address() -> Iterator[str]:
-    with driving.dashboard() as told:
-        yield told
-
-
-@pytest.fixture(scope="module")
-def running(chromium: str) -> Iterator[Browser]:
-    with driving.browser(chromium) as started:
-        yield started
-
-
-@pytest.fixture
-def page(running: Browser, address: str) -> Iterator[Page]:
-    opened = driving.open_page(running, address)
-    yield opened
-    opened.context.close()
 
 
 @pytest.fixture

@@ -1,6 +1,5 @@
 """The walk-through in a real browser: legible from afar on every size and theme, without scroll, moved by keys, followed by the speaker."""
 
-from collections.abc import Iterator
 from pathlib import Path
 
 import pytest
@@ -11,18 +10,6 @@ from tests.browser import driving
 
 SHOWINGS = [((1280, 720), "light"), ((1366, 768), "dark"), ((1920, 1080), "light")]  # window and theme
 SMALLEST = 1 / 40  # of the height of the screen, for every letter
-
-
-@pytest.fixture(scope="module")
-def address() -> Iterator[str]:
-    with driving.dashboard() as told:
-        yield told
-
-
-@pytest.fixture(scope="module")
-def running(chromium: str) -> Iterator[Browser]:
-    with driving.browser(chromium) as started:
-        yield started
 
 
 @pytest.fixture
